@@ -1,0 +1,6 @@
+import './app/core/http/plain-zod';
+import { bootstrapApplication } from '@angular/platform-browser';
+import { App } from './app/app';
+import { appConfig } from './app/app.config';
+
+void bootstrapApplication(App, appConfig);
