@@ -1,0 +1,13 @@
+/** The driver's code of a failed statement, such as `ER_DUP_ENTRY`; Drizzle keeps it in `cause`. */
+export function driverCodeOf(error: unknown): string | null {
+  for (let at = error; at instanceof Error; at = at.cause) {
+    const code = (at as { code?: unknown }).code;
+    if (typeof code === 'string') return code;
+  }
+  return null;
+}
+
+/** Whether a statement failed because a unique value is there already. */
+export function isDuplicate(error: unknown): boolean {
+  return driverCodeOf(error) === 'ER_DUP_ENTRY';
+}
