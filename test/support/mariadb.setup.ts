@@ -1,0 +1,27 @@
+import { existsSync, mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import type { TestProject } from 'vitest/node';
+import { startMariadb } from '../../server/bin/mariadb.mjs';
+
+declare module 'vitest' {
+  export interface ProvidedContext {
+    /** Address of the throw-away MariaDB; `createTestDatabase` makes a database in it. */
+    mariadbUrl: string;
+  }
+}
+
+/** A MariaDB of the tests' own, in memory where the machine has /dev/shm, gone afterwards. */
+export default async function setup(project: TestProject): Promise<() => Promise<void>> {
+  const folder = mkdtempSync(join(existsSync('/dev/shm') ? '/dev/shm' : tmpdir(), 'sw-test-'));
+  const mariadb = await startMariadb({
+    dataDir: join(folder, 'mariadb'),
+    database: 'seamwright_test',
+    throwAway: true,
+  });
+  project.provide('mariadbUrl', mariadb.urlOf('seamwright_test'));
+  return async () => {
+    await mariadb.stop();
+    rmSync(folder, { recursive: true, force: true });
+  };
+}
