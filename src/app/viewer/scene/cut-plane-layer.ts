@@ -1,0 +1,121 @@
+import {
+  BackSide,
+  type Box3,
+  BufferAttribute,
+  BufferGeometry,
+  DoubleSide,
+  Group,
+  LineBasicMaterial,
+  LineLoop,
+  Mesh,
+  MeshBasicMaterial,
+  MeshLambertMaterial,
+  Plane,
+  PlaneGeometry,
+  Quaternion,
+  Vector3,
+} from 'three';
+import { disposeTree } from './disposal';
+import { type PieceStage } from './piece-stage';
+import { pieceTint, type SceneTheme } from './scene-theme';
+import { type Triple } from './view-parts';
+
+/** Points p with normal·p = offsetMm; the normal has length 1. */
+export interface CutPlane {
+  readonly normal: Triple;
+  readonly offsetMm: number;
+}
+
+/** Room between the model and the rim of the drawn plane, as a share of the model's diagonal. */
+const RIM_SHARE = 0.58;
+const SIDE_COLOURS = [0, 1] as const;
+
+/**
+ * A plane through the model while it is being moved: both sides in their own tint, the inside of
+ * what is cut in the colour of seams. Only clipped on the screen; nothing is cut yet.
+ */
+export class CutPlaneLayer {
+  readonly root = new Group();
+  private readonly sheet = new Mesh(
+    new PlaneGeometry(1, 1),
+    new MeshBasicMaterial({
+      transparent: true,
+      opacity: 0.14,
+      side: DoubleSide,
+      depthWrite: false,
+    }),
+  );
+  private readonly rim = new LineLoop(squareRim(), new LineBasicMaterial());
+  private readonly inside = new MeshBasicMaterial({ side: BackSide });
+  private readonly above = new Plane();
+  private readonly below = new Plane();
+  private readonly sides = [this.above, this.below].map(
+    (plane) => new MeshLambertMaterial({ clippingPlanes: [plane] }),
+  );
+  private readonly sections = [this.above, this.below].map((plane) => {
+    const section = this.inside.clone();
+    section.clippingPlanes = [plane];
+    return section;
+  });
+  private readonly copies = new Group();
+  private plane: CutPlane | null = null;
+
+  constructor(private readonly stage: PieceStage) {
+    this.root.add(this.copies, this.sheet, this.rim);
+    this.root.visible = false;
+    this.rim.renderOrder = 1;
+  }
+
+  setPlane(plane: CutPlane | null): void {
+    this.plane = plane;
+    this.refresh();
+  }
+
+  /** Takes over the bodies on the stage; call when they have changed. */
+  refresh(): void {
+    this.copies.clear();
+    const { plane } = this;
+    this.root.visible = plane !== null && this.stage.bodies.length > 0;
+    this.stage.setBodiesDrawn(!this.root.visible);
+    if (!plane || !this.root.visible) return;
+    const normal = new Vector3(...plane.normal);
+    // A clipping plane keeps the side its normal points to.
+    this.above.set(normal, -plane.offsetMm);
+    this.below.set(normal.clone().negate(), plane.offsetMm);
+    for (const body of this.stage.bodies)
+      for (const material of [...this.sides, ...this.sections])
+        this.copies.add(new Mesh(body.mesh.geometry, material));
+    this.placeSheet(this.stage.shownBox(), normal, plane.offsetMm);
+  }
+
+  setTheme(theme: SceneTheme): void {
+    this.sides.forEach((side, at) => side.color.set(pieceTint(SIDE_COLOURS[at]!, theme.isDark)));
+    for (const section of this.sections) section.color.set(theme.copper);
+    this.sheet.material.color.set(theme.copper);
+    this.rim.material.color.set(theme.copper);
+  }
+
+  dispose(): void {
+    // The copies' geometries belong to the bodies on the stage.
+    this.copies.clear();
+    for (const material of [...this.sides, ...this.sections, this.inside]) material.dispose();
+    disposeTree(this.root);
+  }
+
+  private placeSheet(box: Box3, normal: Vector3, offsetMm: number): void {
+    const size = box.getSize(new Vector3()).length() * 2 * RIM_SHARE;
+    const centre = box.getCenter(new Vector3());
+    centre.addScaledVector(normal, offsetMm - centre.dot(normal));
+    const turn = new Quaternion().setFromUnitVectors(new Vector3(0, 0, 1), normal);
+    for (const object of [this.sheet, this.rim]) {
+      object.position.copy(centre);
+      object.quaternion.copy(turn);
+      object.scale.setScalar(size);
+    }
+  }
+}
+
+function squareRim(): BufferGeometry {
+  const corners = new Float32Array([-0.5, -0.5, 0, 0.5, -0.5, 0, 0.5, 0.5, 0, -0.5, 0.5, 0]);
+  return new BufferGeometry().setAttribute('position', new BufferAttribute(corners, 3));
+}
