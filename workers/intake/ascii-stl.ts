@@ -1,0 +1,137 @@
+import { AsciiCursor, lettersOf } from './ascii-cursor.js';
+import { largestCoordinate, refuseCoordinates } from './coordinate-limits.js';
+import { countOf, refuseFile } from './refusal-words.js';
+
+const solid = lettersOf('solid');
+const endsolid = lettersOf('endsolid');
+const facet = lettersOf('facet');
+const endfacet = lettersOf('endfacet');
+const outer = lettersOf('outer');
+const loop = lettersOf('loop');
+const endloop = lettersOf('endloop');
+const vertex = lettersOf('vertex');
+
+/** The shortest facet that can be written, bytes: bounds how many a file can hold. */
+const shortestFacetBytes = 72;
+const reportEvery = 1 << 14;
+
+/**
+ * Reads an ASCII STL from its bytes, in any case, with any line ends, with several `solid` blocks.
+ * Names and normals are passed over. Refuses what is not three numbers a corner and three corners a
+ * facet, and a file that ends inside a facet; says in which line.
+ */
+export function readAsciiStl(
+  bytes: Uint8Array,
+  from: number,
+  fileName: string,
+  onProgress: (fraction: number) => void,
+): { soup: Float32Array; facetsRead: number; notes: string[] } {
+  const cursor = new AsciiCursor(bytes, from);
+  const soup = new Float32Array(9 * (Math.floor(bytes.length / shortestFacetBytes) + 1));
+  const unusable = { notNumbers: 0, tooLarge: 0, firstFacet: 0 };
+  let facets = 0;
+  let solids = 0;
+  let isOpen = false;
+
+  while (cursor.next()) {
+    if (cursor.isAt(facet)) {
+      readFacet(cursor, soup, facets, fileName, unusable);
+      facets++;
+      if ((facets & (reportEvery - 1)) === 0) onProgress(cursor.end / bytes.length);
+    } else if (cursor.isAt(solid)) {
+      cursor.skipLine();
+      solids++;
+      isOpen = true;
+    } else if (cursor.isAt(endsolid)) {
+      cursor.skipLine();
+      isOpen = false;
+    } else throw refuseWord(cursor, fileName, 'a facet');
+  }
+  if (facets === 0) throw refuseFile(fileName, 'is an STL file without a single facet.');
+  if (unusable.firstFacet > 0) throw refuseCoordinates(fileName, unusable);
+
+  const notes: string[] = [];
+  if (solids > 1)
+    notes.push(`The file holds ${countOf(solids, 'solid')}. They were read as one model.`);
+  if (isOpen) notes.push('The closing line of the file is missing. It may have been cut off.');
+  return { soup: soup.subarray(0, 9 * facets), facetsRead: facets, notes };
+}
+
+function readFacet(
+  cursor: AsciiCursor,
+  soup: Float32Array,
+  index: number,
+  fileName: string,
+  unusable: { notNumbers: number; tooLarge: number; firstFacet: number },
+): void {
+  // The normal is recomputed from the corners, so it may say anything: "normal", up to three words.
+  let passed = 0;
+  for (;;) {
+    if (!cursor.next()) throw refuseEnd(fileName, index);
+    if (cursor.isAt(outer)) break;
+    if (++passed > 4) throw refuseWord(cursor, fileName, '“outer loop”');
+  }
+  expect(cursor, loop, '“loop”', fileName, index);
+  let corners = 0;
+  for (;;) {
+    if (!cursor.next()) throw refuseEnd(fileName, index);
+    if (cursor.isAt(endloop)) break;
+    if (!cursor.isAt(vertex)) throw refuseWord(cursor, fileName, '“vertex” or “endloop”');
+    for (let axis = 0; axis < 3; axis++) {
+      if (!cursor.next()) throw refuseEnd(fileName, index);
+      const value = cursor.number();
+      if (value === undefined) throw refuseNumber(cursor, fileName);
+      if (!(Math.abs(value) <= largestCoordinate)) {
+        if (Number.isFinite(value)) unusable.tooLarge++;
+        else unusable.notNumbers++;
+        unusable.firstFacet ||= index + 1;
+      }
+      if (corners < 3) soup[9 * index + 3 * corners + axis] = value;
+    }
+    corners++;
+  }
+  if (corners !== 3)
+    throw refuseFile(
+      fileName,
+      `has a facet of ${countOf(corners, 'corner')} in line ${cursor.line()}. STL knows triangles only; export the model as triangles.`,
+    );
+  expect(cursor, endfacet, '“endfacet”', fileName, index);
+}
+
+function expect(
+  cursor: AsciiCursor,
+  letters: Uint8Array,
+  wanted: string,
+  fileName: string,
+  index: number,
+): void {
+  if (!cursor.next()) throw refuseEnd(fileName, index);
+  if (!cursor.isAt(letters)) throw refuseWord(cursor, fileName, wanted);
+}
+
+function refuseEnd(fileName: string, index: number) {
+  return refuseFile(
+    fileName,
+    `ends in the middle of facet ${index + 1}. It was cut off while being saved or sent.`,
+  );
+}
+
+function refuseWord(cursor: AsciiCursor, fileName: string, wanted: string) {
+  return refuseFile(
+    fileName,
+    `has “${cursor.word(24)}” in line ${cursor.line()} where ${wanted} should stand. It is damaged or not an STL file.`,
+  );
+}
+
+function refuseNumber(cursor: AsciiCursor, fileName: string) {
+  const word = cursor.word(24);
+  if (/^[-+]?\d*,\d+(?:e[-+]?\d+)?$/i.test(word))
+    return refuseFile(
+      fileName,
+      `writes numbers with a decimal comma (“${word}” in line ${cursor.line()}). Export it again with decimal points.`,
+    );
+  return refuseFile(
+    fileName,
+    `has “${word}” in line ${cursor.line()} where a number should stand. It is damaged or was cut off.`,
+  );
+}

@@ -1,0 +1,151 @@
+import { largestCoordinate, refuseCoordinates } from './coordinate-limits.js';
+import { countOf, refuseFile, spelledCount } from './refusal-words.js';
+
+/**
+ * Binary STL: 80-byte header, uint32 count, 50 bytes a facet, little-endian (3D Systems,
+ * StereoLithography Interface Specification, 1989). Facet: normal 12 bytes, three corners of
+ * 12 bytes, 2 bytes that nobody agrees on.
+ */
+const headerBytes = 84;
+const facetBytes = 50;
+const normalBytes = 12;
+const reportEvery = 1 << 16;
+
+const magnitudeMask = 0x7fffffff;
+const infinityBits = 0x7f800000;
+const largestCoordinateBits = new Int32Array(new Float32Array([largestCoordinate]).buffer)[0];
+
+/** The count a binary header states, or null when the file is shorter than a header. */
+export function statedFacets(bytes: Uint8Array): number | null {
+  if (bytes.length < headerBytes) return null;
+  return new DataView(bytes.buffer, bytes.byteOffset + 80, 4).getUint32(0, true);
+}
+
+/** Whether the size is exactly that of a binary STL with the count it states. */
+export function hasExactSize(bytes: Uint8Array): boolean {
+  const stated = statedFacets(bytes);
+  return stated !== null && bytes.length === headerBytes + facetBytes * stated;
+}
+
+/**
+ * Reads a binary STL. Trailing bytes are left alone and noted; a count that the file does not hold,
+ * or whole facets beyond the count, are refused, because nobody can tell which of the two is wrong.
+ */
+export function readBinaryStl(
+  bytes: Uint8Array,
+  fileName: string,
+  onProgress: (fraction: number) => void,
+): { soup: Float32Array; facetsRead: number; notes: string[] } {
+  const stated = statedFacets(bytes) ?? 0;
+  const held = Math.floor((bytes.length - headerBytes) / facetBytes);
+  if (stated > held) throw refuseMissing(bytes, fileName, stated, held);
+  if (stated === 0) throw refuseFile(fileName, 'is an STL file without a single facet.');
+  const notes: string[] = [];
+  const left = bytes.length - headerBytes - facetBytes * stated;
+  if (left > 0) {
+    if (left % facetBytes === 0 && !isPadding(bytes, headerBytes + facetBytes * stated))
+      throw refuseFile(
+        fileName,
+        `says that it holds ${countOf(stated, 'facet')} but holds ${spelledCount(held)}. Its count or its content is wrong; export the model again.`,
+      );
+    notes.push(
+      `${countOf(left, 'byte')} after the last facet belong to nothing and were not read.`,
+    );
+  }
+  const soup = copyCorners(bytes, stated, onProgress);
+  const words = new Int32Array(soup.buffer);
+  let unusable = countUnusable(words);
+  if (unusable !== null && isSoundWhenSwapped(words)) {
+    swapByteOrder(words);
+    unusable = null;
+    notes.push(
+      'The numbers in the file stand in reversed byte order. They were turned round while reading.',
+    );
+  }
+  if (unusable !== null) throw refuseCoordinates(fileName, unusable);
+  return { soup, facetsRead: stated, notes };
+}
+
+/** Copies the nine coordinates of every facet bit by bit: no float is decoded, so this runs at memory speed. */
+function copyCorners(
+  bytes: Uint8Array,
+  facets: number,
+  onProgress: (fraction: number) => void,
+): Float32Array {
+  const aligned = bytes.byteOffset % 4 === 0 ? bytes : bytes.slice();
+  const words = new Int32Array(aligned.buffer, aligned.byteOffset, aligned.length >> 2);
+  const halves = new Uint16Array(aligned.buffer, aligned.byteOffset, aligned.length >> 1);
+  const soup = new Float32Array(9 * facets);
+  const target = new Int32Array(soup.buffer);
+  for (let facet = 0, to = 0; facet < facets; facet++, to += 9) {
+    const from = headerBytes + normalBytes + facetBytes * facet;
+    // 50 bytes a facet: every other one starts on a 4-byte border, the rest on a 2-byte border.
+    if ((facet & 1) === 0) {
+      const w = from >> 2;
+      for (let k = 0; k < 9; k++) target[to + k] = words[w + k];
+    } else {
+      const h = from >> 1;
+      for (let k = 0; k < 9; k++)
+        target[to + k] = halves[h + 2 * k] | (halves[h + 2 * k + 1] << 16);
+    }
+    if ((facet & (reportEvery - 1)) === 0) onProgress(facet / facets);
+  }
+  return soup;
+}
+
+/** Counts coordinates that are not finite or beyond the limit, by their bits; null when there are none. */
+function countUnusable(
+  words: Int32Array,
+): { notNumbers: number; tooLarge: number; firstFacet: number } | null {
+  let notNumbers = 0;
+  let tooLarge = 0;
+  let first = -1;
+  for (let i = 0; i < words.length; i++) {
+    const magnitude = words[i] & magnitudeMask;
+    if (magnitude <= largestCoordinateBits) continue;
+    if (magnitude >= infinityBits) notNumbers++;
+    else tooLarge++;
+    if (first < 0) first = i;
+  }
+  return first < 0 ? null : { notNumbers, tooLarge, firstFacet: Math.floor(first / 9) + 1 };
+}
+
+function reversed(word: number): number {
+  return (word >>> 24) | ((word >>> 8) & 0xff00) | ((word << 8) & 0xff0000) | ((word & 0xff) << 24);
+}
+
+/** Smallest magnitude that a designer's file holds beside zero; a wrong byte order is full of smaller ones. */
+const smallestPlausibleBits = new Int32Array(new Float32Array([1e-20]).buffer)[0];
+
+function isSoundWhenSwapped(words: Int32Array): boolean {
+  for (let i = 0; i < words.length; i++) {
+    const magnitude = reversed(words[i]) & magnitudeMask;
+    if (magnitude > largestCoordinateBits) return false;
+    if (magnitude !== 0 && magnitude < smallestPlausibleBits) return false;
+  }
+  return true;
+}
+
+function swapByteOrder(words: Int32Array): void {
+  for (let i = 0; i < words.length; i++) words[i] = reversed(words[i]);
+}
+
+function isPadding(bytes: Uint8Array, from: number): boolean {
+  for (let i = from; i < bytes.length; i++) if (bytes[i] !== 0) return false;
+  return true;
+}
+
+/** Fewer facets than stated: cut off, or no STL at all. What the file does hold decides which is said. */
+function refuseMissing(bytes: Uint8Array, fileName: string, stated: number, held: number) {
+  const sample = Math.min(held, 200);
+  if (sample > 0) {
+    const unusable = countUnusable(new Int32Array(copyCorners(bytes, sample, () => {}).buffer));
+    const share = unusable ? (unusable.notNumbers + unusable.tooLarge) / (9 * sample) : 0;
+    // A count and corners that make no sense together: other bytes under an STL's name.
+    if (share > 0.05) return refuseFile(fileName, 'is not an STL file, neither binary nor text.');
+  }
+  return refuseFile(
+    fileName,
+    `says that it holds ${countOf(stated, 'facet')} but ends after ${spelledCount(held)}. It was cut off while being saved or sent, or its count is wrong.`,
+  );
+}
