@@ -32,16 +32,19 @@ export function readAsciiStl(
   let facets = 0;
   let solids = 0;
   let isOpen = false;
+  let isEmpty = true;
 
   while (cursor.next()) {
     if (cursor.isAt(facet)) {
       readFacet(cursor, soup, facets, fileName, unusable);
       facets++;
+      if (isEmpty) solids++;
+      isEmpty = false;
       if ((facets & (reportEvery - 1)) === 0) onProgress(cursor.end / bytes.length);
     } else if (cursor.isAt(solid)) {
       cursor.skipLine();
-      solids++;
       isOpen = true;
+      isEmpty = true;
     } else if (cursor.isAt(endsolid)) {
       cursor.skipLine();
       isOpen = false;

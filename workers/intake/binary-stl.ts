@@ -16,27 +16,34 @@ const infinityBits = 0x7f800000;
 const largestCoordinateBits = new Int32Array(new Float32Array([largestCoordinate]).buffer)[0];
 
 /** The count a binary header states, or null when the file is shorter than a header. */
-export function statedFacets(bytes: Uint8Array): number | null {
+function statedFacets(bytes: Uint8Array, littleEndian: boolean): number | null {
   if (bytes.length < headerBytes) return null;
-  return new DataView(bytes.buffer, bytes.byteOffset + 80, 4).getUint32(0, true);
+  return new DataView(bytes.buffer, bytes.byteOffset + 80, 4).getUint32(0, littleEndian);
 }
 
 /** Whether the size is exactly that of a binary STL with the count it states. */
-export function hasExactSize(bytes: Uint8Array): boolean {
-  const stated = statedFacets(bytes);
+function hasExactSize(bytes: Uint8Array, littleEndian: boolean): boolean {
+  const stated = statedFacets(bytes, littleEndian);
   return stated !== null && bytes.length === headerBytes + facetBytes * stated;
+}
+
+/** Whether the size alone proves a binary STL, also one written in the other byte order. */
+export function isProvenBinary(bytes: Uint8Array): boolean {
+  return hasExactSize(bytes, true) || hasExactSize(bytes, false);
 }
 
 /**
  * Reads a binary STL. Trailing bytes are left alone and noted; a count that the file does not hold,
  * or whole facets beyond the count, are refused, because nobody can tell which of the two is wrong.
+ * A file in the other byte order is known by its count, and noted.
  */
 export function readBinaryStl(
   bytes: Uint8Array,
   fileName: string,
   onProgress: (fraction: number) => void,
 ): { soup: Float32Array; facetsRead: number; notes: string[] } {
-  const stated = statedFacets(bytes) ?? 0;
+  const isReversed = !hasExactSize(bytes, true) && hasExactSize(bytes, false);
+  const stated = statedFacets(bytes, !isReversed) ?? 0;
   const held = Math.floor((bytes.length - headerBytes) / facetBytes);
   if (stated > held) throw refuseMissing(bytes, fileName, stated, held);
   if (stated === 0) throw refuseFile(fileName, 'is an STL file without a single facet.');
@@ -49,19 +56,16 @@ export function readBinaryStl(
         `says that it holds ${countOf(stated, 'facet')} but holds ${spelledCount(held)}. Its count or its content is wrong; export the model again.`,
       );
     notes.push(
-      `${countOf(left, 'byte')} after the last facet belong to nothing and were not read.`,
+      `The file goes on for ${countOf(left, 'byte')} after its last facet. They were not read.`,
     );
   }
   const soup = copyCorners(bytes, stated, onProgress);
   const words = new Int32Array(soup.buffer);
-  let unusable = countUnusable(words);
-  if (unusable !== null && isSoundWhenSwapped(words)) {
-    swapByteOrder(words);
-    unusable = null;
-    notes.push(
-      'The numbers in the file stand in reversed byte order. They were turned round while reading.',
-    );
+  if (isReversed) {
+    for (let i = 0; i < words.length; i++) words[i] = reversed(words[i]);
+    notes.push('The numbers in the file stand in reversed byte order. They were turned round.');
   }
+  const unusable = countUnusable(words);
   if (unusable !== null) throw refuseCoordinates(fileName, unusable);
   return { soup, facetsRead: stated, notes };
 }
@@ -114,22 +118,6 @@ function reversed(word: number): number {
   return (word >>> 24) | ((word >>> 8) & 0xff00) | ((word << 8) & 0xff0000) | ((word & 0xff) << 24);
 }
 
-/** Smallest magnitude that a designer's file holds beside zero; a wrong byte order is full of smaller ones. */
-const smallestPlausibleBits = new Int32Array(new Float32Array([1e-20]).buffer)[0];
-
-function isSoundWhenSwapped(words: Int32Array): boolean {
-  for (let i = 0; i < words.length; i++) {
-    const magnitude = reversed(words[i]) & magnitudeMask;
-    if (magnitude > largestCoordinateBits) return false;
-    if (magnitude !== 0 && magnitude < smallestPlausibleBits) return false;
-  }
-  return true;
-}
-
-function swapByteOrder(words: Int32Array): void {
-  for (let i = 0; i < words.length; i++) words[i] = reversed(words[i]);
-}
-
 function isPadding(bytes: Uint8Array, from: number): boolean {
   for (let i = from; i < bytes.length; i++) if (bytes[i] !== 0) return false;
   return true;
@@ -146,6 +134,6 @@ function refuseMissing(bytes: Uint8Array, fileName: string, stated: number, held
   }
   return refuseFile(
     fileName,
-    `says that it holds ${countOf(stated, 'facet')} but ends after ${spelledCount(held)}. It was cut off while being saved or sent, or its count is wrong.`,
+    `says that it holds ${countOf(stated, 'facet')} but ${held === 0 ? 'holds none' : `ends after ${spelledCount(held)}`}. It was cut off while being saved or sent, or its count is wrong.`,
   );
 }

@@ -1,6 +1,6 @@
 import { readAsciiStl } from './ascii-stl.js';
 import { lettersOf } from './ascii-cursor.js';
-import { hasExactSize, readBinaryStl } from './binary-stl.js';
+import { isProvenBinary, readBinaryStl } from './binary-stl.js';
 import { countOf, refuseFile } from './refusal-words.js';
 
 export interface StlReading {
@@ -29,7 +29,7 @@ export function readStl(
   onProgress: (fraction: number) => void = () => {},
 ): StlReading {
   if (bytes.length === 0) throw refuseFile(fileName, 'is empty.');
-  if (hasExactSize(bytes))
+  if (isProvenBinary(bytes))
     return { format: 'stl-binary', ...readBinaryStl(bytes, fileName, onProgress) };
   const foreign = nameOfOtherFormat(bytes);
   if (foreign) throw refuseFile(fileName, foreign);
