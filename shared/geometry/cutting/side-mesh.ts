@@ -1,0 +1,168 @@
+import { type TriangleMesh } from '../mesh/triangle-mesh.js';
+import { ABOVE, BELOW, ON, type Sides } from './plane-sides.js';
+import { type SectionNodes } from './section-nodes.js';
+
+/** The cut's data as both sides need it. */
+export interface CutParts {
+  readonly mesh: TriangleMesh;
+  readonly sides: Sides;
+  readonly nodes: SectionNodes;
+  /** Node triples, counter-clockwise seen from above. */
+  readonly cap: Uint32Array;
+  readonly capTag: number;
+}
+
+/** Corners of the part of a crossing triangle on one side: at most four. */
+const corners = new Int32Array(4);
+
+/**
+ * Collects one side of a cut: its own triangles in their order, the parts of crossing triangles in
+ * the place of the whole ones, then the cap. Vertices keep their order; those of the section
+ * follow in order of use. O(vertices + triangles).
+ */
+export function collectSide(parts: CutParts, side: typeof ABOVE | typeof BELOW): TriangleMesh {
+  const { mesh, sides, nodes, cap, capTag } = parts;
+  const { indices, tags } = mesh;
+  const own = numberOwnVertices(sides.vertices, side);
+  const section = new SectionNumbers(nodes, own.count);
+  const codes = sides.triangles;
+  const triangles = countTriangles(parts, side) + cap.length / 3;
+  const newIndices = new Uint32Array(3 * triangles);
+  const newTags = new Int32Array(triangles);
+  const touching = side | ON;
+  let filled = 0;
+  let crossing = 0;
+  for (let triangle = 0; triangle < codes.length; triangle++) {
+    const code = codes[triangle];
+    const at = 3 * triangle;
+    if (code === side) {
+      newIndices[filled] = own.numberOf[indices[at]];
+      newIndices[filled + 1] = own.numberOf[indices[at + 1]];
+      newIndices[filled + 2] = own.numberOf[indices[at + 2]];
+      if (tags !== undefined) newTags[filled / 3] = tags[triangle];
+      filled += 3;
+    } else if (code === touching || (code & (ABOVE | BELOW)) === (ABOVE | BELOW)) {
+      const isCrossing = code !== touching;
+      const found = findCorners(parts, triangle, side, isCrossing ? crossing : -1, own, section);
+      if (isCrossing) crossing++;
+      for (let corner = 2; corner < found; corner++) {
+        newIndices[filled] = corners[0];
+        newIndices[filled + 1] = corners[corner - 1];
+        newIndices[filled + 2] = corners[corner];
+        if (tags !== undefined) newTags[filled / 3] = tags[triangle];
+        filled += 3;
+      }
+    }
+  }
+  for (let i = 0; i < cap.length; i += 3) {
+    newTags[filled / 3] = capTag;
+    newIndices[filled++] = section.numberOf(cap[i]);
+    newIndices[filled++] = section.numberOf(cap[side === BELOW ? i + 1 : i + 2]);
+    newIndices[filled++] = section.numberOf(cap[side === BELOW ? i + 2 : i + 1]);
+  }
+  const positions = new Float64Array(3 * section.end);
+  copyOwnPositions(mesh.positions, sides.vertices, side, positions);
+  section.copyPositions(positions);
+  return { positions, indices: newIndices, tags: newTags };
+}
+
+interface OwnVertices {
+  readonly numberOf: Int32Array;
+  readonly count: number;
+}
+
+function numberOwnVertices(vertexSides: Uint8Array, side: number): OwnVertices {
+  const numberOf = new Int32Array(vertexSides.length);
+  let count = 0;
+  for (let vertex = 0; vertex < vertexSides.length; vertex++) {
+    if (vertexSides[vertex] === side) numberOf[vertex] = count++;
+  }
+  return { numberOf, count };
+}
+
+function copyOwnPositions(
+  from: Float64Array,
+  vertexSides: Uint8Array,
+  side: number,
+  to: Float64Array,
+): void {
+  let filled = 0;
+  for (let vertex = 0, i = 0; vertex < vertexSides.length; vertex++, i += 3) {
+    if (vertexSides[vertex] !== side) continue;
+    to[filled] = from[i];
+    to[filled + 1] = from[i + 1];
+    to[filled + 2] = from[i + 2];
+    filled += 3;
+  }
+}
+
+/** Triangles of a side without the cap: a crossing one leaves one per own vertex, see findCorners. */
+function countTriangles({ mesh, sides, nodes }: CutParts, side: number): number {
+  let count = sides.counts[side] + sides.counts[side | ON];
+  for (let k = 0; k < nodes.crossing.length; k++) {
+    const first = 3 * nodes.crossing[k];
+    for (let corner = 0; corner < 3; corner++) {
+      if (sides.vertices[mesh.indices[first + corner]] === side) count++;
+    }
+  }
+  return count;
+}
+
+/**
+ * Puts the numbers of a triangle's corners on one side into `corners`, in its winding, and returns
+ * how many there are: one own vertex and two nodes, or two own vertices and two nodes.
+ * @param crossing place in the list of crossing triangles; -1 for one that only touches the plane
+ */
+function findCorners(
+  { mesh, sides, nodes }: CutParts,
+  triangle: number,
+  side: number,
+  crossing: number,
+  own: OwnVertices,
+  section: SectionNumbers,
+): number {
+  let found = 0;
+  for (let corner = 0; corner < 3; corner++) {
+    const vertex = mesh.indices[3 * triangle + corner];
+    const vertexSide = sides.vertices[vertex];
+    if (vertexSide === side) corners[found++] = own.numberOf[vertex];
+    else if (vertexSide === ON && nodes.nodeOfVertex !== null) {
+      corners[found++] = section.numberOf(nodes.nodeOfVertex[vertex]);
+    }
+    if (crossing < 0) continue;
+    const node = nodes.edgeNodes[3 * crossing + corner];
+    if (node >= 0) corners[found++] = section.numberOf(node);
+  }
+  return found;
+}
+
+/** Numbers the section's nodes on one side as they are first used. */
+class SectionNumbers {
+  /** One past the last vertex number given. */
+  end: number;
+  private readonly numbers: Int32Array;
+
+  constructor(
+    private readonly nodes: SectionNodes,
+    first: number,
+  ) {
+    this.end = first;
+    this.numbers = new Int32Array(nodes.count).fill(-1);
+  }
+
+  numberOf(node: number): number {
+    const number = this.numbers[node];
+    return number >= 0 ? number : (this.numbers[node] = this.end++);
+  }
+
+  copyPositions(to: Float64Array): void {
+    const from = this.nodes.positions;
+    for (let node = 0; node < this.numbers.length; node++) {
+      const at = 3 * this.numbers[node];
+      if (at < 0) continue;
+      to[at] = from[3 * node];
+      to[at + 1] = from[3 * node + 1];
+      to[at + 2] = from[3 * node + 2];
+    }
+  }
+}
