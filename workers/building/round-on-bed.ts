@@ -75,11 +75,9 @@ function faultOf({ report, indices }: RoundedMesh, shells: number): string {
     const count = report.openEdges + report.nonManifoldEdges + report.misorientedEdges;
     return `${count} edges do not close`;
   }
-  const { count } = connectedShells({ indices, positions: EMPTY });
+  const { count } = connectedShells({ indices });
   return count > shells ? `its surface falls into ${count} parts` : '';
 }
-
-const EMPTY = new Float64Array(0);
 
 function roundedVolume({ positions, indices }: RoundedMesh): number {
   return signedVolume({ positions: Float64Array.from(positions), indices });

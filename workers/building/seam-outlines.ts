@@ -2,14 +2,16 @@ import { fromPlane, type SeamPlane } from './seam-plane.js';
 
 /**
  * Line pairs (flat xyz of both ends, mm) along closed contours given in plane coordinates. Contours
- * that enclose less than `leastMm2` are crumbs of the overlap's rounding and are left out.
+ * that enclose less than `leastMm2` are crumbs of the overlap's rounding and are left
+ * out, unless there is nothing else.
  */
 export function outlinePairs(
   contours: readonly (readonly (readonly [number, number])[])[],
   plane: SeamPlane,
   leastMm2: number,
 ): Float32Array {
-  const shown = contours.filter((contour) => Math.abs(enclosed(contour)) >= leastMm2);
+  const large = contours.filter((contour) => Math.abs(enclosed(contour)) >= leastMm2);
+  const shown = large.length > 0 ? large : contours;
   const pairs = new Float32Array(6 * shown.reduce((sum, contour) => sum + contour.length, 0));
   let at = 0;
   for (const contour of shown) {

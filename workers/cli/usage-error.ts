@@ -1,0 +1,7 @@
+/** The command was not given right; `message` is one sentence for the person. */
+export class UsageError extends Error {
+  constructor(message: string) {
+    super(message);
+    this.name = 'UsageError';
+  }
+}
