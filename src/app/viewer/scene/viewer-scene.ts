@@ -11,6 +11,7 @@ import { type BuildSpace } from '../../../../shared/geometry/fitting/build-space
 import { Balloons } from './balloons';
 import { CameraRig, type CameraMove, type Framing } from './camera-rig';
 import { CutPlaneLayer, type CutPlane } from './cut-plane-layer';
+import { DimensionOverlay, boxDimensions } from './dimension-overlay';
 import { Glide } from './glide';
 import { PieceStage, type SceneView } from './piece-stage';
 import { PressDetector } from './press-detector';
@@ -54,6 +55,7 @@ export class ViewerScene {
   private readonly outline = new SelectionOutline();
   private readonly cutLayer: CutPlaneLayer;
   private readonly balloons: Balloons;
+  private readonly dimensions: DimensionOverlay;
   private readonly press: PressDetector;
   private readonly glide: Glide;
   private readonly light = new DirectionalLight('#ffffff', 1.9);
@@ -66,6 +68,7 @@ export class ViewerScene {
   private pendingFrame = 0;
   /** Whether pieces or camera have moved since balloons last looked for visible points. */
   private isUnsettled = true;
+  private hasDimensions = false;
   private isDisposed = false;
 
   constructor(private readonly host: SceneHost) {
@@ -73,6 +76,7 @@ export class ViewerScene {
     this.glide = new Glide(host.prefersReducedMotion);
     this.rig = new CameraRig(host.canvas, this.requestRender, this.settle);
     this.balloons = new Balloons(host.overlay, host.onPicked);
+    this.dimensions = new DimensionOverlay(host.overlay);
     this.cutLayer = new CutPlaneLayer(this.stage);
     this.press = new PressDetector(host.canvas, (x, y) => host.onPicked(this.pick(x, y)));
     this.raycaster.firstHitOnly = true;
@@ -121,6 +125,12 @@ export class ViewerScene {
     this.stage.setTheme(theme);
     this.cutLayer.setTheme(theme);
     this.outline.setColour(theme.ink);
+    this.requestRender();
+  }
+
+  /** Whether the size of the whole is written along its sides. */
+  setDimensions(hasDimensions: boolean): void {
+    this.hasDimensions = hasDimensions;
     this.requestRender();
   }
 
@@ -194,6 +204,7 @@ export class ViewerScene {
     this.stage.dispose();
     this.outline.dispose();
     this.balloons.dispose();
+    this.dimensions.dispose();
     this.light.dispose();
     this.rig.dispose();
     this.renderer.dispose();
@@ -240,6 +251,7 @@ export class ViewerScene {
     const selected = this.stage.isOneBody ? null : this.stage.selectedMesh();
     if (selected) this.outline.draw(this.renderer, camera, selected);
     this.drawBalloons();
+    this.drawDimensions();
     const bar = scaleBarFor(this.rig.pixelsPerMm, SCALE_BAR_PX);
     this.host.onMeasured({ bar, gridMm: this.stage.gridMm });
     this.host.onDrawn(++this.frames);
@@ -253,5 +265,11 @@ export class ViewerScene {
       this.isUnsettled = false;
     }
     this.balloons.draw(camera, this.size, this.selected);
+  }
+
+  private drawDimensions(): void {
+    const box = this.stage.shownBox();
+    const isDrawn = this.hasDimensions && !box.isEmpty();
+    this.dimensions.draw(isDrawn ? boxDimensions(box, this.rig.camera, this.size) : []);
   }
 }

@@ -1,0 +1,52 @@
+import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
+import { type Seam } from '../../../../shared/jobs/plan-make.js';
+import { writeArea } from '../../ui/format/quantities';
+
+/** Where pieces meet, which cut made the seam and how much of it there is to glue. */
+@Component({
+  selector: 'sw-seams-list',
+  template: `
+    <table class="sw-table" role="table">
+      <caption>
+        Seams: where two pieces meet.
+      </caption>
+      <thead role="rowgroup">
+        <tr role="row">
+          <th role="columnheader" scope="col">Between</th>
+          <th role="columnheader" scope="col" class="sw-number">Area</th>
+          <th role="columnheader" scope="col" class="sw-number">Cut</th>
+        </tr>
+      </thead>
+      <tbody role="rowgroup">
+        @for (row of rows(); track $index) {
+          <tr role="row" [class.selected]="row.isOfSelected">
+            <td role="cell">{{ row.between }}</td>
+            <td role="cell" class="sw-number">{{ row.area }}</td>
+            <td role="cell" class="sw-number">{{ row.cut }}</td>
+          </tr>
+        }
+      </tbody>
+    </table>
+  `,
+  styles: `
+    .selected td {
+      font-weight: 500;
+      box-shadow: inset 0 -1px 0 var(--sw-seam);
+    }
+  `,
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class SeamsList {
+  readonly seams = input.required<readonly Seam[]>();
+  /** The piece whose seams stand out. */
+  readonly selected = input<string | null>(null);
+
+  protected readonly rows = computed(() =>
+    this.seams().map((seam) => ({
+      between: seam.between.join(' and '),
+      area: writeArea(seam.areaMm2),
+      cut: seam.cut,
+      isOfSelected: seam.between.some((name) => name === this.selected()),
+    })),
+  );
+}

@@ -1,0 +1,63 @@
+import {
+  type ScenePiece,
+  type SurfacePart,
+  type Triple,
+  type ViewParts,
+} from '../scene/view-parts';
+
+/** The box of some surfaces, in their own unit. Zeros when there is no vertex. */
+export function boxOf(surfaces: readonly SurfacePart[]): { min: Triple; size: Triple } {
+  const min = [Infinity, Infinity, Infinity] as [number, number, number];
+  const max = [-Infinity, -Infinity, -Infinity] as [number, number, number];
+  for (const { positions } of surfaces)
+    for (let at = 0; at < positions.length; at++) {
+      const axis = at % 3;
+      const value = positions[at]!;
+      if (value < min[axis]!) min[axis] = value;
+      if (value > max[axis]!) max[axis] = value;
+    }
+  if (min[0] > max[0]) return { min: [0, 0, 0], size: [0, 0, 0] };
+  return { min, size: [max[0] - min[0], max[1] - min[1], max[2] - min[2]] };
+}
+
+/**
+ * The model as one piece in millimetres. Its picture comes in the unit of its file; the factor is
+ * taken from the size it is to have, along the longest side.
+ */
+export function wholeModel(parts: ViewParts, sizeMm: Triple): ScenePiece | null {
+  const { min, size } = boxOf(parts.surfaces);
+  const longest = size.indexOf(Math.max(...size));
+  if (parts.surfaces.length === 0 || size[longest] === 0) return null;
+  const factor = sizeMm[longest]! / size[longest]!;
+  const surface = scaled(joined(parts.surfaces), factor);
+  const centreMm = min.map((low, axis) => (low + size[axis]! / 2) * factor);
+  return {
+    item: 1,
+    name: surface.name,
+    surface,
+    centreMm: centreMm as unknown as Triple,
+    placement: null,
+  };
+}
+
+function scaled(surface: SurfacePart, factor: number): SurfacePart {
+  return { ...surface, positions: surface.positions.map((value) => value * factor) };
+}
+
+/** Several surfaces as one. */
+function joined(surfaces: readonly SurfacePart[]): SurfacePart {
+  const [first] = surfaces;
+  if (surfaces.length === 1 && first) return first;
+  const total = (pick: (surface: SurfacePart) => number) =>
+    surfaces.reduce((sum, surface) => sum + pick(surface), 0);
+  const positions = new Float32Array(total((surface) => surface.positions.length));
+  const indices = new Uint32Array(total((surface) => surface.indices.length));
+  let vertexAt = 0;
+  let indexAt = 0;
+  for (const surface of surfaces) {
+    positions.set(surface.positions, vertexAt * 3);
+    for (const index of surface.indices) indices[indexAt++] = index + vertexAt;
+    vertexAt += surface.positions.length / 3;
+  }
+  return { name: first?.name ?? 'model', positions, indices };
+}
