@@ -9,6 +9,7 @@ import {
   takeWhile,
   tap,
   throwError,
+  timeout,
   timer,
 } from 'rxjs';
 import { jobResponse, type JobResponse } from '../../../../shared/api/jobs.contract.js';
@@ -19,6 +20,9 @@ import { JobsApi } from './jobs-api';
 
 /** Pause before the stream is tried again, ms; the job is asked for once before every pause. */
 export const pausesMs: readonly number[] = [500, 1_000, 2_000, 3_000];
+
+/** A stream that says nothing for so long is held back or lost somewhere on the way, ms. */
+export const silenceMs = { first: 5_000, each: 30_000 } as const;
 
 /** Follows a job until it is over. */
 @Injectable({ providedIn: 'root' })
@@ -35,6 +39,7 @@ export class JobWatcher {
     return defer(() => {
       let losses = 0;
       return this.stream(jobId).pipe(
+        timeout(silenceMs),
         tap(() => (losses = 0)),
         catchError(() =>
           concat(

@@ -46,11 +46,11 @@ export function writeArea(areaMm2: number): string {
   return `${grouped(areaMm2 / 100, areaMm2 < 1e5 ? 1 : 0)}${thinSpace}cm²`;
 }
 
-/** A file's size in kB or MB of 1000 and 1 000 000 bytes. */
+/** A file's size in kB of 1024 bytes or MB of 1024 kB, as the upload limit counts them. */
 export function writeBytes(bytes: number): string {
-  if (bytes < 1_000) return `${bytes}${thinSpace}bytes`;
-  if (bytes < 1e6) return `${grouped(bytes / 1e3, 0)}${thinSpace}kB`;
-  return `${grouped(bytes / 1e6, 1)}${thinSpace}MB`;
+  if (bytes < 1024) return `${bytes}${thinSpace}bytes`;
+  if (bytes < 1024 ** 2) return `${grouped(bytes / 1024, 0)}${thinSpace}kB`;
+  return `${grouped(bytes / 1024 ** 2, 1)}${thinSpace}MB`;
 }
 
 /** A moment as date and time of this computer's clock, for example "4 Mar 2031, 14:05". */

@@ -1,0 +1,162 @@
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  effect,
+  inject,
+  input,
+  signal,
+  untracked,
+} from '@angular/core';
+import { MatButton } from '@angular/material/button';
+import { MatIcon } from '@angular/material/icon';
+import { MatProgressBar } from '@angular/material/progress-bar';
+import { Router, RouterLink } from '@angular/router';
+import { type ModelScale } from '../../../../shared/api/model-scale.js';
+import { SessionStore } from '../../core/auth/session-store';
+import { FailureNotes } from '../../core/errors/failure-notes';
+import { PageTitle } from '../../core/layout/page-title';
+import { Confirmations } from '../../ui/confirm-dialog/confirmations';
+import { EmptyState } from '../../ui/empty-state/empty-state';
+import {
+  writeArea,
+  writeCount,
+  writeMoment,
+  writeSizeMm,
+  writeVolume,
+} from '../../ui/format/quantities';
+import { JobProgress } from '../../ui/job-progress/job-progress';
+import { Notice } from '../../ui/notice/notice';
+import { ModelView } from '../../viewer/model-view/model-view';
+import { MeshNote } from '../mesh-note/mesh-note';
+import { ModelPlans } from '../model-plans/model-plans';
+import { modelState } from '../model-state';
+import { ModelStore } from '../model-store';
+import { PlanDesk } from '../plan-desk';
+import { PlanStarter, type PlanOrder } from '../plan-starter/plan-starter';
+import { removalQuestion } from '../removal-question';
+import { RenameField } from '../rename-field/rename-field';
+import { ScaleForm } from '../scale-form/scale-form';
+
+/** One model: what its file holds, how large it is to be, and the plans made from it. */
+@Component({
+  selector: 'sw-model-page',
+  imports: [
+    EmptyState,
+    JobProgress,
+    MatButton,
+    MatIcon,
+    MatProgressBar,
+    MeshNote,
+    ModelPlans,
+    ModelView,
+    Notice,
+    PlanStarter,
+    RenameField,
+    RouterLink,
+    ScaleForm,
+  ],
+  providers: [ModelStore, PlanDesk],
+  templateUrl: './model-page.html',
+  styleUrl: './model-page.scss',
+  changeDetection: ChangeDetectionStrategy.OnPush,
+})
+export class ModelPage {
+  private readonly store = inject(ModelStore);
+  private readonly desk = inject(PlanDesk);
+  private readonly sessions = inject(SessionStore);
+  private readonly router = inject(Router);
+  private readonly confirmations = inject(Confirmations);
+  private readonly notes = inject(FailureNotes);
+  private readonly title = inject(PageTitle);
+
+  readonly modelId = input.required<string>();
+
+  protected readonly model = this.store.model;
+  protected readonly problem = this.store.problem;
+  protected readonly isInspecting = this.store.isInspecting;
+  protected readonly isCancelling = this.store.isCancelling;
+  protected readonly plans = this.desk.plans;
+  protected readonly envelopes = this.desk.envelopes;
+  protected readonly suggestedEnvelopeId = this.desk.suggestedEnvelopeId;
+  protected readonly planProblem = this.desk.problem;
+  protected readonly isOrdering = this.desk.isOrdering;
+  protected readonly mayWrite = computed(() => this.sessions.can('model.write'));
+  protected readonly mayPlan = computed(() => this.sessions.can('plan.write'));
+  protected readonly mayCancel = computed(() => this.sessions.can('job.cancel'));
+  protected readonly mayEditEnvelopes = computed(() => this.sessions.can('envelope.write'));
+  protected readonly isSavingScale = signal(false);
+  protected readonly state = computed(() => {
+    const model = this.model();
+    return model && modelState(model);
+  });
+  protected readonly facts = computed(() => {
+    const model = this.model();
+    if (!model) return [];
+    const { sizeMm, volumeMm3, areaMm2, number, fileName, report, viewTriangles } = model.revision;
+    const isThinned = report !== null && viewTriangles > 0 && viewTriangles < report.triangles;
+    return [
+      { name: 'File', value: fileName },
+      { name: 'Revision', value: `${number}, ${writeMoment(model.createdAt)}, ${model.createdBy}` },
+      { name: 'Size', value: sizeMm ? writeSizeMm(sizeMm) : '' },
+      { name: 'Volume', value: volumeMm3 === null ? '' : writeVolume(volumeMm3) },
+      { name: 'Surface', value: areaMm2 === null ? '' : writeArea(areaMm2) },
+      {
+        name: 'Picture',
+        value: isThinned
+          ? `drawn with ${writeCount(viewTriangles)} of ${writeCount(report.triangles)} triangles`
+          : '',
+      },
+    ].filter((fact) => fact.value !== '');
+  });
+
+  constructor() {
+    effect(() => {
+      const id = this.modelId();
+      untracked(() => this.store.open(id));
+      untracked(() => void this.desk.load(id));
+    });
+    effect(() => {
+      const model = this.model();
+      if (model) this.title.set(model.name);
+    });
+  }
+
+  protected async rename(name: string): Promise<void> {
+    await this.tell(() => this.store.change({ name }));
+  }
+
+  protected async saveScale(scale: ModelScale): Promise<void> {
+    this.isSavingScale.set(true);
+    await this.tell(() => this.store.change({ scale }));
+    this.isSavingScale.set(false);
+  }
+
+  protected async cancelInspection(): Promise<void> {
+    await this.tell(() => this.store.cancelInspection());
+  }
+
+  protected async orderPlan(order: PlanOrder): Promise<void> {
+    const planId = await this.desk.order({ modelId: this.modelId(), ...order });
+    if (planId) await this.router.navigate(['/plans', planId]);
+  }
+
+  protected async remove(): Promise<void> {
+    const model = this.model();
+    if (!model || !(await this.confirmations.ask(removalQuestion(model)))) return;
+    const isRemoved = await this.tell(() => this.store.remove());
+    if (isRemoved) await this.router.navigateByUrl('/models');
+  }
+
+  /** Runs a write; a refusal is shown and the page stays as it is. Whether it went through. */
+  private async tell(write: () => Promise<void>): Promise<boolean> {
+    try {
+      await write();
+      return true;
+    } catch (failure) {
+      // Expected: the record changed elsewhere, the role changed, no server.
+      this.notes.show(failure);
+      return false;
+    }
+  }
+}
