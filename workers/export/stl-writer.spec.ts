@@ -1,8 +1,9 @@
 import { describe, expect, it } from 'vitest';
-import { box, torusKnot } from '../building/spec-shapes.js';
+import { box, torusKnot } from '../../test/support/shapes.js';
+import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { writeStl } from './stl-writer.js';
 
-const asFloat32 = (mesh: ReturnType<typeof box>) => ({
+const asFloat32 = (mesh: TriangleMesh) => ({
   positions: Float32Array.from(mesh.positions),
   indices: mesh.indices,
 });
@@ -10,7 +11,7 @@ const asFloat32 = (mesh: ReturnType<typeof box>) => ({
 describe('writeStl', () => {
   it('writes 84 + 50 bytes a triangle, the count little-endian and the corners exactly as given', () => {
     // More facets than one batch, and not a multiple of it.
-    const mesh = asFloat32(torusKnot(123.456, 17.1, 401, 25));
+    const mesh = asFloat32(torusKnot(60.123, 17.1, 401, 25));
     const bytes = writeStl(mesh, 'knot');
     const facets = mesh.indices.length / 3;
     expect(facets).toBeGreaterThan(2 * 8192);
@@ -28,7 +29,7 @@ describe('writeStl', () => {
   });
 
   it('writes the outward unit normal of each facet, and zero for a facet without area', () => {
-    const cube = asFloat32(box(10, 10, 10));
+    const cube = asFloat32(box([0, 0, 0], [10, 10, 10]).mesh);
     const flat = { positions: cube.positions, indices: Uint32Array.of(0, 1, 1) };
     const view = new DataView(writeStl(cube, 'cube').buffer);
     for (let facet = 0; facet < 12; facet++) {
@@ -42,7 +43,7 @@ describe('writeStl', () => {
   });
 
   it('keeps the header printable and never lets it begin like an ASCII file', () => {
-    const mesh = asFloat32(box(1, 1, 1));
+    const mesh = asFloat32(box([0, 0, 0], [1, 1, 1]).mesh);
     const header = (title: string) =>
       new TextDecoder().decode(writeStl(mesh, title).subarray(0, 80));
     expect(header('solid cube')).not.toMatch(/^\s*solid/i);
