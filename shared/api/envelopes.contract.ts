@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { recordId } from './ids.js';
 
 const lengthMm = (name: string) =>

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** Every code the server answers with; a client switches on these, never on the message. */
 export const errorCodes = [

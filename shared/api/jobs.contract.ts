@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { jobErrorSchema, jobNames, jobStates } from '../jobs/job-map.js';
 import { recordId } from './ids.js';
 

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** How file units become millimetres. STL files carry no unit, so a person decides. */
 export const modelScale = z.object({

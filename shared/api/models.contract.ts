@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { meshReport } from '../jobs/model-inspect.js';
 import { recordId } from './ids.js';
 import { jobResponse } from './jobs.contract.js';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { planOutput } from '../jobs/plan-make.js';
 import { envelopeResponse } from './envelopes.contract.js';
 import { recordId } from './ids.js';

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 export const roles = ['owner', 'shopLead', 'designer', 'maker'] as const;
 export const roleSchema = z.enum(roles);

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { inspectInput, inspectOutput } from './model-inspect.js';
 import { planInput, planOutput } from './plan-make.js';
 

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 import { buildSpaceSchema, recipeSchema, vector3 } from './recipe.js';
 
 export const planInput = z.object({

@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import * as z from 'zod';
 
 /** Millimetres, right-handed, z up, in the frame of the scaled model. */
 export const vector3 = z.tuple([z.number(), z.number(), z.number()]);

@@ -1,5 +1,5 @@
 import { map, type OperatorFunction } from 'rxjs';
-import { type z } from 'zod';
+import type * as z from 'zod';
 import { ApiFailure } from './api-failure';
 
 /** Checks an answer against its contract at the door, so that everything inside may trust its types. */
