@@ -14,7 +14,31 @@ import { disposeTree } from './disposal';
 import { type Pose, identityPose, mixPoses } from './placement';
 import { type SceneTheme } from './scene-theme';
 import { shadeSurface } from './surface-shading';
-import { type ScenePiece } from './view-parts';
+import { type ScenePiece, type SurfacePart } from './view-parts';
+
+interface Prepared {
+  readonly surface: BufferGeometry;
+  readonly lines: BufferGeometry;
+}
+
+/** Surfaces come and go on the screen; what was computed for one is kept as long as the surface. */
+const prepared = new WeakMap<SurfacePart, Prepared>();
+
+function prepare(part: SurfacePart): Prepared {
+  const known = prepared.get(part);
+  if (known) return known;
+  const shaded = shadeSurface(part.positions, part.indices);
+  const surface = new BufferGeometry();
+  surface.setAttribute('position', new BufferAttribute(shaded.positions, 3));
+  surface.setAttribute('normal', new BufferAttribute(shaded.normals, 3));
+  surface.computeBoundingBox();
+  surface.computeBoundingSphere();
+  surface.boundsTree = new MeshBVH(surface, { indirect: true });
+  const lines = new BufferGeometry();
+  lines.setAttribute('position', new BufferAttribute(shaded.featureEdges, 3));
+  prepared.set(part, { surface, lines });
+  return { surface, lines };
+}
 
 /** A piece in the scene: its surface, its edges as thin lines, its place and where it is going. */
 export class PieceBody {
@@ -29,13 +53,7 @@ export class PieceBody {
     readonly piece: ScenePiece,
     readonly colour: number,
   ) {
-    const shaded = shadeSurface(piece.surface.positions, piece.surface.indices);
-    const surface = new BufferGeometry();
-    surface.setAttribute('position', new BufferAttribute(shaded.positions, 3));
-    surface.setAttribute('normal', new BufferAttribute(shaded.normals, 3));
-    surface.computeBoundingBox();
-    surface.computeBoundingSphere();
-    surface.boundsTree = new MeshBVH(surface, { indirect: true });
+    const { surface, lines } = prepare(piece.surface);
     this.mesh = new Mesh(
       surface,
       // Pushed back a little so that lines on the surface win.
@@ -48,8 +66,6 @@ export class PieceBody {
     );
     this.mesh.raycast = acceleratedRaycast;
     this.mesh.name = piece.name;
-    const lines = new BufferGeometry();
-    lines.setAttribute('position', new BufferAttribute(shaded.featureEdges, 3));
     this.edges = new LineSegments(lines, new LineBasicMaterial({ transparent: true }));
     this.group.add(this.mesh, this.edges);
     this.pose = { position: this.group.position, rotation: this.group.quaternion };
@@ -88,7 +104,6 @@ export class PieceBody {
   }
 
   dispose(): void {
-    this.mesh.geometry.boundsTree = undefined;
     disposeTree(this.group);
   }
 }

@@ -29,6 +29,7 @@ export class PieceStage {
   private selected: string | null = null;
   private view: SceneView = 'whole';
   private spread = 0;
+  private areBodiesDrawn = true;
   private readonly poses = new Map<PieceBody, Pose>();
 
   constructor() {
@@ -99,11 +100,11 @@ export class PieceStage {
     const bed = this.bedOrigin();
     const offsets = this.offsets();
     this._bodies.forEach((body, index) => {
-      body.group.visible = !isOnBed || body.piece.name === this.selected;
       const pose = isOnBed ? bedPose(body, bed) : offsetPose(offsets[index]!);
       this.poses.set(body, pose);
       body.aim(pose);
     });
+    this.setBodiesDrawn(this.areBodiesDrawn);
     if (this.envelope) {
       this.envelope.group.visible = isOnBed;
       this.envelope.group.position.copy(bed);
@@ -114,13 +115,21 @@ export class PieceStage {
 
   /** Hides the bodies without taking them off the stage, while something else stands for them. */
   setBodiesDrawn(areDrawn: boolean): void {
-    for (const body of this._bodies) body.group.visible = areDrawn;
+    this.areBodiesDrawn = areDrawn;
+    const isOnBed = this.isOnBed();
+    for (const body of this._bodies)
+      body.group.visible = areDrawn && (!isOnBed || body.piece.name === this.selected);
   }
 
   /** Takes every piece a fraction of its way. */
   advance(fraction: number): void {
     for (const body of this._bodies) body.advance(fraction);
     this.root.updateMatrixWorld(true);
+  }
+
+  /** The box of everything as it stands assembled. */
+  assembledBox(): Box3 {
+    return this.modelBox.clone();
   }
 
   /** The box of everything that is shown, where it belongs after the move. */

@@ -1,5 +1,6 @@
 import {
   AmbientLight,
+  Box3,
   DirectionalLight,
   Raycaster,
   Scene,
@@ -62,6 +63,7 @@ export class ViewerScene {
   private readonly raycaster = new Raycaster();
   private readonly size = { widthPx: 0, heightPx: 0 };
   private framings: { from: Framing; to: Framing } | null = null;
+  private framedBox = new Box3();
   private selected: string | null = null;
   private view: SceneView = 'whole';
   private frames = 0;
@@ -85,13 +87,19 @@ export class ViewerScene {
     host.canvas.addEventListener('webglcontextrestored', this.requestRender);
   }
 
-  /** Replaces everything shown and frames it. One piece alone is drawn plain, without a number. */
+  /**
+   * Replaces everything shown. Frames it anew unless it stands where the last one stood, so that
+   * looking at a model whole and in halves keeps the view. One piece alone is drawn plain.
+   */
   setPieces(pieces: readonly ScenePiece[], seams: readonly SceneSeam[] = []): void {
     this.stage.setPieces(pieces, seams);
     this.stage.resize(this.size.widthPx, this.size.heightPx);
     this.balloons.setBodies(this.stage.bodies);
     this.cutLayer.refresh();
-    this.fit(false);
+    const box = this.stage.assembledBox();
+    if (isSameBox(box, this.framedBox)) this.place();
+    else this.fit(false);
+    this.framedBox = box;
   }
 
   /** @param fraction 0 assembled … 1 as far apart as it goes */
@@ -272,4 +280,11 @@ export class ViewerScene {
     const isDrawn = this.hasDimensions && !box.isEmpty();
     this.dimensions.draw(isDrawn ? boxDimensions(box, this.rig.camera, this.size) : []);
   }
+}
+
+/** Whether two boxes differ by less than a hundredth of their size. */
+function isSameBox(a: Box3, b: Box3): boolean {
+  if (a.isEmpty() || b.isEmpty()) return false;
+  const slackMm = 0.01 * a.getSize(new Vector3()).length();
+  return a.min.distanceTo(b.min) < slackMm && a.max.distanceTo(b.max) < slackMm;
 }
