@@ -89,6 +89,8 @@ export class AsciiCursor {
     }
     if (digits === 0) return this.wordForNoNumber(i);
     if (i < end) {
+      // An old C library writes 1.#QNAN, 1.#INF.
+      if (bytes[i] === 35) return NaN;
       if ((bytes[i] | 0x20) !== 101) return undefined;
       let e = i + 1;
       const exponentSign = e < end ? bytes[e] : 0;
@@ -112,7 +114,7 @@ export class AsciiCursor {
     const word = this.word(20)
       .slice(from - this.start)
       .toLowerCase();
-    if (/^(?:1\.#)?(?:nan|qnan|snan|ind)/.test(word)) return NaN;
+    if (/^(?:nan|qnan|snan|ind)/.test(word)) return NaN;
     return /^inf(?:inity)?$/.test(word) ? Infinity : undefined;
   }
 

@@ -119,7 +119,17 @@ function refuseEnd(fileName: string, index: number) {
   );
 }
 
+/** A word that nothing follows was most likely cut short itself. */
+function isLastWord(cursor: AsciiCursor): boolean {
+  return cursor.end === cursor.bytes.length;
+}
+
 function refuseWord(cursor: AsciiCursor, fileName: string, wanted: string) {
+  if (isLastWord(cursor))
+    return refuseFile(
+      fileName,
+      `ends in line ${cursor.line()} where ${wanted} should stand. It was cut off while being saved or sent.`,
+    );
   return refuseFile(
     fileName,
     `has “${cursor.word(24)}” in line ${cursor.line()} where ${wanted} should stand. It is damaged or not an STL file.`,
@@ -127,6 +137,11 @@ function refuseWord(cursor: AsciiCursor, fileName: string, wanted: string) {
 }
 
 function refuseNumber(cursor: AsciiCursor, fileName: string) {
+  if (isLastWord(cursor))
+    return refuseFile(
+      fileName,
+      `ends in the middle of a number in line ${cursor.line()}. It was cut off while being saved or sent.`,
+    );
   const word = cursor.word(24);
   if (/^[-+]?\d*,\d+(?:e[-+]?\d+)?$/i.test(word))
     return refuseFile(

@@ -56,7 +56,7 @@ export function readBinaryStl(
         `says that it holds ${countOf(stated, 'facet')} but holds ${spelledCount(held)}. Its count or its content is wrong; export the model again.`,
       );
     notes.push(
-      `The file goes on for ${countOf(left, 'byte')} after its last facet. They were not read.`,
+      `The file goes on for ${countOf(left, 'byte')} after its last facet. Nothing there was read.`,
     );
   }
   const soup = copyCorners(bytes, stated, onProgress);

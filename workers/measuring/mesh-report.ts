@@ -158,7 +158,7 @@ function notesOf(found: {
 
 function shellNote(shells: number, { cavities }: Orientation): string {
   const solids = shells - cavities;
-  if (cavities === 0) return `The model is made of ${countOf(solids, 'separate solid')}.`;
+  if (cavities === 0) return `The model is made of ${countOf(solids, 'solid')}.`;
   return `The model is made of ${countOf(solids, 'solid')} with ${countOf(cavities, 'closed hollow')} inside.`;
 }
 

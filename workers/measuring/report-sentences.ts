@@ -15,7 +15,10 @@ export function openSurfaceRefusal(edges: EdgeReport, duplicates: number): strin
     duplicates > 0
       ? ` ${countOf(duplicates, 'facet')} ${duplicates === 1 ? 'repeats another' : 'repeat others'}.`
       : '';
-  return `The surface is not closed: ${listOf(found)}.${repeated} A plan needs a closed surface, because only that says what is inside.`;
+  const isOpen = edges.openEdges + edges.nonManifoldEdges > 0;
+  return isOpen
+    ? `The surface is not closed: ${listOf(found)}.${repeated} A plan needs a closed surface, because only that says what is inside.`
+    : `The facets do not agree on which side is outside: ${listOf(found)}.${repeated} A plan needs to know what is inside.`;
 }
 
 /** Why a closed surface whose shells contradict each other cannot be planned. */
