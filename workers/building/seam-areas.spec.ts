@@ -7,7 +7,12 @@ import { loadSolids } from '../solids/solid-kernel.js';
 import { findSeams } from './seam-areas.js';
 
 const leaf: PlaneTree = { kind: 'leaf' };
-const cut = (normal: Vector3, offset: number, above = leaf, below = leaf): PlaneTree => ({
+const cut = (
+  normal: Vector3,
+  offset: number,
+  above: PlaneTree = leaf,
+  below: PlaneTree = leaf,
+): PlaneTree => ({
   kind: 'cut',
   plane: { normal, offset },
   above,

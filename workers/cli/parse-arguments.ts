@@ -47,15 +47,18 @@ export function parseArguments(words: readonly string[]): Command {
   });
 }
 
-/** Gives what goes wrong with a file's arguments the file's name, and a full stop. */
-export function naming<R>(modelPath: string, parse: () => R): R {
+function naming<R>(modelPath: string, parse: () => R): R {
   try {
     return parse();
   } catch (error) {
-    // Only our own sentences are completed; anything else is a fault of the program.
-    if (!(error instanceof UsageError)) throw error;
-    throw new UsageError(`Cannot plan “${modelPath}”: ${error.message}.`);
+    throw nameFile(modelPath, error);
   }
+}
+
+/** Completes what went wrong with a file's arguments to a sentence; other errors stay as they are. */
+export function nameFile(modelPath: string, error: unknown): unknown {
+  if (!(error instanceof UsageError)) return error;
+  return new UsageError(`Cannot plan “${modelPath}”: ${error.message}.`);
 }
 
 function sortWords(words: readonly string[]) {

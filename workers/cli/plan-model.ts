@@ -1,0 +1,155 @@
+import { readFile, stat } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
+import { basename, join } from 'node:path';
+import { scaleMesh, signedVolume } from '../../shared/geometry/mesh/measure.js';
+import { makePieces } from '../building/make-pieces.js';
+import { readStl } from '../intake/stl-reader.js';
+import { type Inspection, inspectMesh } from '../measuring/mesh-report.js';
+import { type JobContext, portionOf } from '../runtime/job-context.js';
+import { JobRefusal } from '../runtime/job-refusal.js';
+import { loadSolids } from '../solids/solid-kernel.js';
+import {
+  checkOutputFolder,
+  openOutputFolder,
+  openTemporaryFolder,
+  type PieceFolder,
+} from './output-folder.js';
+import { nameFile, type PlanCommand } from './parse-arguments.js';
+import { type PlanReport } from './plan-report.js';
+import { UsageError } from './usage-error.js';
+
+/** The same limit as for uploads. */
+const LARGEST_FILE_BYTES = 512 * 1024 * 1024;
+
+/**
+ * Inspects, plans, cuts, writes and proves one file: what the server's jobs do, from a shell. Nothing
+ * is written before the pieces exist, and nothing is left when anything fails.
+ * Throws a UsageError or a JobRefusal with sentences that name the file.
+ */
+export async function planModel(
+  command: Omit<PlanCommand, 'kind' | 'json'>,
+  context: JobContext,
+): Promise<PlanReport> {
+  const { modelPath, outFolder } = command;
+  const bytes = await readModel(modelPath);
+  if (outFolder !== null)
+    await checkOutputFolder(outFolder).catch((error) => {
+      throw nameFile(modelPath, error);
+    });
+  const fileName = basename(modelPath);
+  // WebAssembly compiles beside the reading.
+  const loading = loadSolids();
+  const { inspection, parseMs } = inspect(bytes, fileName, portionOf(context, 0, 0.15));
+  const { report, solid, timingsMs } = inspection;
+  if (!solid)
+    throw new JobRefusal(namedRefusal(fileName, report.refusal ?? 'It cannot be planned.'));
+  const { millimetresPerUnit, space, seed } = command;
+  const mesh = millimetresPerUnit === 1 ? solid : scaleMesh(solid, millimetresPerUnit);
+
+  const folder = createLazyFolder(() =>
+    outFolder === null ? openTemporaryFolder() : openOutputFolder(outFolder),
+  );
+  try {
+    const made = await makePieces(
+      { mesh, modelName: fileName, millimetresPerUnit, space, seed },
+      { solids: await loading, files: folder.files, context: portionOf(context, 0.15, 1) },
+    );
+    await folder.keep();
+    return {
+      model: {
+        triangles: report.triangles,
+        volumeMm3: signedVolume(mesh),
+        sizeMm: scaled(report.size, millimetresPerUnit),
+        closed: report.closed,
+      },
+      pieces: made.plan.pieces.map(({ name, triangles, volumeMm3, sizeMm, fits, file }) => ({
+        name,
+        triangles,
+        volumeMm3,
+        sizeMm,
+        fits,
+        file: outFolder === null ? basename(file) : join(outFolder, file),
+      })),
+      seams: made.plan.seams.map(({ between, areaMm2 }) => ({ between, areaMm2 })),
+      bounds: { pieces: made.plan.bounds.pieces },
+      proof: made.plan.proof,
+      timingsMs: { parse: parseMs, ...timingsMs, ...made.timingsMs },
+      // Linux counts the peak in kilobytes; Node passes it on as it is.
+      peakMemoryMb: process.resourceUsage().maxRSS / 1024,
+    };
+  } catch (error) {
+    if (isFileSystemError(error))
+      throw new UsageError(
+        `The pieces of “${modelPath}” could not be written to “${outFolder ?? tmpdir()}” (${error.code}).`,
+      );
+    // A refusal of the search knows the shape, not the file.
+    if (error instanceof JobRefusal) throw new JobRefusal(namedRefusal(fileName, error.message));
+    throw nameFile(modelPath, error);
+  } finally {
+    await folder.discard();
+  }
+}
+
+async function readModel(modelPath: string): Promise<Uint8Array> {
+  const refuse = (what: string) => new UsageError(`“${modelPath}” ${what}.`);
+  try {
+    const found = await stat(modelPath);
+    if (found.isDirectory()) throw refuse('is a folder, not an STL file');
+    if (!found.isFile()) throw refuse('is not a regular file');
+    if (found.size > LARGEST_FILE_BYTES)
+      throw refuse(
+        `has ${Math.round(found.size / 1024 / 1024)} MB, and the largest that is read is ${LARGEST_FILE_BYTES / 1024 / 1024} MB`,
+      );
+    return await readFile(modelPath);
+  } catch (error) {
+    if (error instanceof UsageError) throw error;
+    // What the file system says, in words.
+    const { code } = error as NodeJS.ErrnoException;
+    if (code === 'ENOENT' || code === 'ENOTDIR') throw refuse('does not exist');
+    if (code === 'EACCES' || code === 'EPERM') throw refuse('may not be read by this user');
+    if (code === 'ENAMETOOLONG') throw refuse('is too long a name for a file');
+    throw refuse(`cannot be read (${code ?? String(error)})`);
+  }
+}
+
+function inspect(
+  bytes: Uint8Array,
+  fileName: string,
+  context: JobContext,
+): { inspection: Inspection; parseMs: number } {
+  const start = performance.now();
+  const reading = readStl(bytes, fileName, (fraction) =>
+    portionOf(context, 0, 0.4).progress('Reading', fraction),
+  );
+  const parseMs = performance.now() - start;
+  const file = { reading, fileName, fileBytes: bytes.byteLength };
+  return { inspection: inspectMesh(file, portionOf(context, 0.4, 1)), parseMs };
+}
+
+/** A refusal that begins with the file's name. */
+function namedRefusal(fileName: string, message: string): string {
+  return message.includes(fileName) ? message : `“${fileName}” cannot be planned: ${message}`;
+}
+
+function scaled(size: readonly [number, number, number], factor: number): [number, number, number] {
+  return [size[0] * factor, size[1] * factor, size[2] * factor];
+}
+
+/** A full disk, missing rights and the like while writing; everything is read before. */
+function isFileSystemError(error: unknown): error is NodeJS.ErrnoException {
+  return error instanceof Error && 'syscall' in error && 'code' in error;
+}
+
+/** A folder that is opened when the first file is written: a refusal then leaves the disk alone. */
+function createLazyFolder(open: () => Promise<PieceFolder>): PieceFolder {
+  let opening: Promise<PieceFolder> | undefined;
+  const opened = () => (opening ??= open());
+  return {
+    files: {
+      write: async (name, bytes) => (await opened()).files.write(name, bytes),
+      read: async (name) => (await opened()).files.read(name),
+    },
+    keep: async () => (await opened()).keep(),
+    discard: async () => (await opening)?.discard(),
+  };
+}
