@@ -11,3 +11,21 @@ export function driverCodeOf(error: unknown): string | null {
 export function isDuplicate(error: unknown): boolean {
   return driverCodeOf(error) === 'ER_DUP_ENTRY';
 }
+
+const PASSING = [
+  'ECONNREFUSED',
+  'ECONNRESET',
+  'ENOTFOUND',
+  'EPIPE',
+  'ETIMEDOUT',
+  'PROTOCOL_CONNECTION_LOST',
+  'ER_CON_COUNT_ERROR',
+  'ER_LOCK_DEADLOCK',
+  'ER_LOCK_WAIT_TIMEOUT',
+  'ER_SERVER_SHUTDOWN',
+];
+
+/** Whether the same statement may succeed a little later: no connection, or others in the way. */
+export function isPassing(error: unknown): boolean {
+  return PASSING.includes(driverCodeOf(error) ?? '');
+}

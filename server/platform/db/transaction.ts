@@ -7,3 +7,6 @@ import type { Db } from './client.js';
 export function inTransaction<T>(db: Db, work: (tx: Db) => Promise<T>): Promise<T> {
   return db.transaction((tx) => work(tx));
 }
+
+/** The same for services, which know repositories and no database. */
+export type Transact<Repositories> = <T>(work: (repos: Repositories) => Promise<T>) => Promise<T>;

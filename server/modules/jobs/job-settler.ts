@@ -1,0 +1,69 @@
+import type { JobName } from '../../../shared/jobs/job-map.js';
+import type { Transact } from '../../platform/db/transaction.js';
+import { isPassing } from '../../platform/db/driver-errors.js';
+import type { Logger } from '../../platform/logging/logger.js';
+import type { FinalJob, JobsRepository } from './jobs.repository.js';
+
+/**
+ * Stores what a final job brought with the record that waits for it. Runs in the transaction that
+ * also marks the job as settled, so it happens exactly once.
+ * @returns `orphaned` when the record was deleted meanwhile; its files are removed then
+ * @throws UnusableResult when the worker's output is not what the contract says
+ */
+export type Settlement<R> = (job: FinalJob, repos: R) => Promise<'stored' | 'orphaned'>;
+
+/** The worker's output does not hold what the contract promises. */
+export class UnusableResult extends Error {
+  override readonly name = 'UnusableResult';
+}
+
+export type JobSettler = ReturnType<typeof createJobSettler>;
+
+const AT_ONCE = 20;
+
+export function createJobSettler<R extends { jobs: JobsRepository }>(deps: {
+  jobs: JobsRepository;
+  transact: Transact<R>;
+  settlements: Record<JobName, Settlement<R>>;
+  /** Removes what an orphaned job left in the file storage. */
+  removeFilesOf: (job: FinalJob) => Promise<void>;
+  logger: Logger;
+}) {
+  const { transact, settlements, logger } = deps;
+
+  async function settle(id: string): Promise<void> {
+    const orphan = await transact(async (repos) => {
+      const job = await repos.jobs.lockUnsettled(id);
+      if (!job) return null;
+      const outcome = await settlements[job.kind](job, repos);
+      if (outcome === 'orphaned') await repos.jobs.remove(id);
+      else await repos.jobs.markSettled(id);
+      return outcome === 'orphaned' ? job : null;
+    });
+    if (orphan) await deps.removeFilesOf(orphan);
+  }
+
+  async function settleOrFail(id: string): Promise<void> {
+    try {
+      await settle(id);
+    } catch (error) {
+      // The database is away or busy: the next look tries again.
+      if (isPassing(error)) throw error;
+      // Anything else would fail for ever and keep the person waiting.
+      logger.error({ err: error, jobId: id }, 'the result of a job could not be stored');
+      await deps.jobs.markFailed(id, {
+        code: 'failed',
+        message: 'The result of this job could not be stored. Please start it again.',
+      });
+    }
+  }
+
+  return {
+    /** Settles what is final. @returns how many jobs it looked at */
+    async settleAll(): Promise<number> {
+      const ids = await deps.jobs.listUnsettled(AT_ONCE);
+      for (const id of ids) await settleOrFail(id);
+      return ids.length;
+    },
+  };
+}

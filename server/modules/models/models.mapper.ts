@@ -1,0 +1,49 @@
+import { millimetresPerUnit } from '../../../shared/api/model-scale.js';
+import type { ModelResponse } from '../../../shared/api/models.contract.js';
+import { toJobResponse } from '../jobs/jobs.mapper.js';
+import type { ModelView } from './models.service.js';
+
+export function toModelResponse({
+  model,
+  job,
+  createdByName,
+  planCount,
+}: ModelView): ModelResponse {
+  const { revision } = model;
+  return {
+    id: model.id,
+    name: model.name,
+    createdAt: model.createdAt.toISOString(),
+    createdBy: createdByName,
+    planCount,
+    revision: {
+      id: revision.id,
+      number: revision.number,
+      fileName: revision.fileName,
+      fileBytes: revision.fileBytes,
+      report: revision.report,
+      scaleConfirmed: revision.scaleConfirmed,
+      scale: revision.scale,
+      scaleReason: revision.scaleReason,
+      ...scaledMeasures(revision),
+      hasThumbnail: revision.thumbnailKey !== null,
+      hasView: revision.viewKey !== null,
+      viewTriangles: revision.viewTriangles,
+      job: toJobResponse(job),
+    },
+  };
+}
+
+type Scaled = Pick<ModelResponse['revision'], 'sizeMm' | 'volumeMm3' | 'areaMm2'>;
+
+/** Length, area and volume in millimetres: the factor, its square and its cube. */
+function scaledMeasures({ report, scale }: ModelView['model']['revision']): Scaled {
+  if (!report) return { sizeMm: null, volumeMm3: null, areaMm2: null };
+  const factor = millimetresPerUnit(scale, report.size);
+  const [x, y, z] = report.size;
+  return {
+    sizeMm: [x * factor, y * factor, z * factor],
+    volumeMm3: report.volume * factor ** 3,
+    areaMm2: report.area * factor ** 2,
+  };
+}

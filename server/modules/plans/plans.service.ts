@@ -1,0 +1,155 @@
+import { millimetresPerUnit } from '../../../shared/api/model-scale.js';
+import type { Transact } from '../../platform/db/transaction.js';
+import type { CreateId } from '../../platform/ids/create-id.js';
+import type { FileStorage } from '../../platform/storage/disk-storage.js';
+import { planFolder } from '../../platform/storage/storage-keys.js';
+import { toEnvelopeResponse } from '../envelopes/envelopes.mapper.js';
+import type { Envelope } from '../envelopes/envelopes.model.js';
+import type { JobRow, JobsRepository } from '../jobs/jobs.repository.js';
+import {
+  createModelNotFound,
+  createModelNotPlannable,
+  createModelNotReady,
+} from '../models/models.errors.js';
+import type { ModelRow, ModelsRepository } from '../models/models.repository.js';
+import { createPlanNotFound, createPlanNotReady } from './plans.errors.js';
+import type { PlanRow, PlansRepository } from './plans.repository.js';
+import { usableSpace } from './usable-space.js';
+
+export type PlansService = ReturnType<typeof createPlansService>;
+
+/** A plan with what other modules know about it. */
+export interface PlanView {
+  readonly plan: PlanRow;
+  readonly job: JobRow;
+  readonly modelName: string;
+  readonly revisionNumber: number;
+  readonly createdByName: string;
+}
+
+interface Key {
+  readonly id: string;
+  readonly workshopId: string;
+}
+
+export function createPlansService(deps: {
+  plans: PlansRepository;
+  jobs: JobsRepository;
+  models: Pick<ModelsRepository, 'describeRevisions'>;
+  findModel: (key: Key) => Promise<ModelRow>;
+  findEnvelope: (key: Key) => Promise<Envelope>;
+  namesOf: (userIds: readonly string[]) => Promise<Map<string, string>>;
+  transact: Transact<{ plans: PlansRepository; models: ModelsRepository; jobs: JobsRepository }>;
+  storage: FileStorage;
+  clock: () => Date;
+  createId: CreateId;
+}) {
+  const { plans, jobs, storage, transact, clock, createId } = deps;
+
+  async function withContext<P extends PlanRow>(rows: readonly P[]) {
+    const found = await jobs.findMany(rows.map((row) => row.jobId));
+    const jobOf = new Map(found.map((job) => [job.id, job]));
+    const names = await deps.namesOf(rows.map((row) => row.createdBy));
+    const revisions = await deps.models.describeRevisions(rows.map((row) => row.revisionId));
+    return rows.flatMap((plan) => {
+      const job = jobOf.get(plan.jobId);
+      const revision = revisions.get(plan.revisionId);
+      if (!job || !revision) return []; // Deleted between two queries.
+      const createdByName = names.get(plan.createdBy) ?? '';
+      return [
+        { plan, job, modelName: revision.name, revisionNumber: revision.number, createdByName },
+      ];
+    });
+  }
+
+  async function get(key: Key) {
+    const plan = await plans.find(key);
+    const [view] = plan ? await withContext([plan]) : [];
+    if (!view) throw createPlanNotFound();
+    return view;
+  }
+
+  return {
+    list: async (filter: { workshopId: string; modelId?: string | undefined }) =>
+      withContext(await plans.list(filter)),
+
+    get,
+
+    /** A plan that has its result. @throws plan.notFound, plan.notReady */
+    async getFinished(key: Key) {
+      const view = await get(key);
+      const { result } = view.plan;
+      if (!result) throw createPlanNotReady();
+      return { ...view, result };
+    },
+
+    /**
+     * Queues a plan of a model for an envelope, both as they are now.
+     * @throws model.notFound, envelope.notFound, model.notReady, model.notPlannable
+     */
+    async create(order: {
+      workshopId: string;
+      userId: string;
+      modelId: string;
+      envelopeId: string;
+      seed: number;
+    }): Promise<Key> {
+      const { workshopId, userId, modelId, seed } = order;
+      const model = await deps.findModel({ id: modelId, workshopId });
+      const envelope = await deps.findEnvelope({ id: order.envelopeId, workshopId });
+      const { solidKey, factor } = plannable(model);
+      const [id, jobId] = [createId(), createId()];
+      await transact(async (repos) => {
+        const number = await repos.models.nextPlanNumber({ id: modelId, workshopId });
+        if (number === null) throw createModelNotFound();
+        await repos.plans.add({
+          id,
+          workshopId,
+          modelId,
+          revisionId: model.revision.id,
+          number,
+          seed,
+          envelope: toEnvelopeResponse(envelope),
+          millimetresPerUnit: factor,
+          jobId,
+          createdAt: clock(),
+          createdBy: userId,
+        });
+        await repos.jobs.add({
+          id: jobId,
+          workshopId,
+          kind: 'plan.make',
+          subjectId: id,
+          input: {
+            solidKey,
+            modelName: model.name,
+            millimetresPerUnit: factor,
+            space: usableSpace(envelope),
+            seed,
+            outputPrefix: planFolder({ workshopId, planId: id }),
+          },
+        });
+      });
+      return { id, workshopId };
+    },
+
+    /** Removes a plan with its files; a job that still runs is told to stop. */
+    async remove(key: Key): Promise<void> {
+      const plan = await plans.find(key);
+      if (!plan) throw createPlanNotFound();
+      await transact(async (repos) => {
+        await repos.plans.remove(key);
+        await repos.jobs.removeOrCancel({ id: plan.jobId, workshopId: key.workshopId });
+      });
+      await storage.remove(planFolder({ workshopId: key.workshopId, planId: key.id }));
+    },
+  };
+}
+
+function plannable({ revision }: ModelRow): { solidKey: string; factor: number } {
+  const { report, solidKey, scale } = revision;
+  if (!report) throw createModelNotReady();
+  if (!report.plannable || !solidKey)
+    throw createModelNotPlannable(report.refusal ?? 'No plan can be made of this model.');
+  return { solidKey, factor: millimetresPerUnit(scale, report.size) };
+}
