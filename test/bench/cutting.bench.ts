@@ -1,0 +1,33 @@
+import { loadManifold } from '../support/triangulator.js';
+import { atMost, type BenchTable } from './support/bench-table.js';
+import { cutWithKernel, cutWithManifold } from './support/engines.js';
+import { benchKnot, benchTree } from './support/knot-case.js';
+import { timeRuns } from './support/stopwatch.js';
+
+const RUNS = 3;
+const LIMIT = 0.1;
+
+/** Cutting a torus knot of 1,000,000 triangles on 4 levels: 15 cuts. */
+export async function bench(): Promise<BenchTable> {
+  const module = await loadManifold();
+  const mesh = benchKnot(2500, 200);
+  const tree = benchTree();
+  const ours = await timeRuns(2 * RUNS - 1, () => cutWithKernel(module, mesh, tree));
+  const positions = Float32Array.from(mesh.positions);
+  const theirs = await timeRuns(RUNS, () => {
+    const leaves = cutWithManifold(module, positions, mesh.indices, tree);
+    const pieces = leaves.length;
+    leaves.forEach((leaf) => leaf.delete());
+    return pieces;
+  });
+  const ratio = ours.medianMs / theirs.medianMs;
+  return {
+    title: 'Cutting: torus knot, 1,000,000 triangles, 15 cuts on 4 levels',
+    columns: ['engine', 'median ms', 'of manifold-3d', 'pieces'],
+    rows: [
+      ['kernel: place, cut, take apart', ours.medianMs, ratio, ours.result.length],
+      ['manifold-3d: import, cut', theirs.medianMs, 1, `${theirs.result} parts`],
+    ],
+    targets: [atMost('kernel against manifold-3d', ratio, LIMIT)],
+  };
+}
