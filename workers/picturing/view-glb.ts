@@ -2,7 +2,7 @@ import {
   Document,
   Logger,
   NodeIO,
-  Primitive,
+  type Primitive,
   type Accessor,
   type Buffer,
 } from '@gltf-transform/core';

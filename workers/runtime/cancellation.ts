@@ -1,4 +1,4 @@
-/** Ends a job that was cancelled. Recognised across threads by `isAbortError`, never by class. */
+/** Ends a job that was cancelled. Recognised by `isAbortError`, never by class. */
 export class AbortError extends Error {
   constructor() {
     super('The job was cancelled.');
@@ -6,7 +6,7 @@ export class AbortError extends Error {
   }
 }
 
-/** Whether an error means "cancelled", also after it crossed a thread as data. */
+/** Whether an error means "cancelled". */
 export function isAbortError(error: unknown): boolean {
   return error instanceof Error && error.name === 'AbortError';
 }
