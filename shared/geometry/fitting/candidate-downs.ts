@@ -40,29 +40,34 @@ export const cubeDirections: readonly Vector3[] = (() => {
  * @returns unit vectors that point at the bed, in the mesh's own frame; −z alone for an empty mesh
  */
 export function candidateDowns(mesh: TriangleMesh, limit = 80): Vector3[] {
-  const standing = new DirectionSet();
-  for (const down of capDowns(mesh)) standing.add(down);
-  for (const down of hullDowns(mesh.positions)) standing.add(down);
-  const axes = cubeDirections.slice(0, 6);
-  for (const down of axes) standing.add(down);
-  const first = byOverhang(mesh, standing.directions);
-  const others = new DirectionSet(first);
-  const start = others.directions.length;
-  for (const down of cubeDirections) others.add(down);
+  const { standing, others } = restingDirections(mesh);
+  return [...byOverhang(mesh, standing), ...byOverhang(mesh, others)].slice(0, Math.max(1, limit));
+}
+
+/**
+ * The same directions without an order of preference: enough to ask whether a piece fits at all.
+ * `standing`: cut faces, large hull faces, coordinate axes; `others`: the rest.
+ */
+export function restingDirections(mesh: TriangleMesh): {
+  standing: Vector3[];
+  others: Vector3[];
+} {
+  const found = new DirectionSet();
+  for (const down of capDowns(mesh)) found.add(down);
+  for (const down of hullDowns(mesh.positions)) found.add(down);
+  for (const down of cubeDirections.slice(0, 6)) found.add(down);
+  const start = found.directions.length;
+  for (const down of cubeDirections) found.add(down);
   for (const axis of principalAxes(supportPoints(mesh.positions))) {
-    others.add(axis);
-    others.add([0 - axis[0], 0 - axis[1], 0 - axis[2]]);
+    found.add(axis);
+    found.add([0 - axis[0], 0 - axis[1], 0 - axis[2]]);
   }
-  const rest = byOverhang(mesh, others.directions.slice(start));
-  return [...first, ...rest].slice(0, Math.max(1, limit));
+  return { standing: found.directions.slice(0, start), others: found.directions.slice(start) };
 }
 
 /** Directions without near-duplicates, in the order of their adding. */
 class DirectionSet {
-  readonly directions: Vector3[];
-  constructor(start: readonly Vector3[] = []) {
-    this.directions = [...start];
-  }
+  readonly directions: Vector3[] = [];
   add(direction: Vector3): void {
     const [x, y, z] = direction;
     for (const d of this.directions) if (d[0] * x + d[1] * y + d[2] * z > SAME_DIRECTION) return;

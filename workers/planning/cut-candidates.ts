@@ -1,0 +1,158 @@
+import { surfaceArea } from '../../shared/geometry/mesh/measure.js';
+import { type Plane } from '../../shared/geometry/vectors/plane.js';
+import { type BodyNodes, bodyNodes } from './body-nodes.js';
+import { cellsInFrames, roomInFrames } from './fit-frames.js';
+import { type CutFigures, type CutWeights, expectedPieces, qualityCost } from './objectives.js';
+import { type PlanBody, type PlanPart } from './plan-part.js';
+import { type SearchSpace } from './search-space.js';
+import { sweepDirections } from './sweep-directions.js';
+import { sweepOffsets } from './sweep-offsets.js';
+import { rangeAlong, type SweepTables, sweepTables } from './sweep-tables.js';
+
+/** What a cut does: leaves two fitting sides, takes one fitting side off, or divides the work. */
+export type CutKind = 'halves' | 'takesAbove' | 'takesBelow' | 'divides';
+
+export interface CutCandidate {
+  readonly plane: Plane;
+  readonly kind: CutKind;
+  /** Expected pieces plus quality, in pieces: lower is better. */
+  readonly score: number;
+  readonly quality: number;
+  /** How far the offset may be drawn back towards the fitting side's end, mm. */
+  readonly stepMm: number;
+}
+
+/** Nodes on long edges lie this share of the space's smallest side apart. */
+const NODE_SPACING = 0.1;
+/** Dividing cuts kept per direction. */
+const DIVIDING_CUTS = 3;
+
+/** Sweeps one body of a part along all its directions; returns cuts, the most promising first. */
+export function cutCandidates(
+  part: PlanPart,
+  body: PlanBody,
+  space: SearchSpace,
+  weights: CutWeights,
+  random: () => number,
+): CutCandidate[] {
+  const fit = space.aimFrames;
+  const nodes = bodyNodes(body.mesh, fit, NODE_SPACING * Math.min(...space.cell));
+  const surfaceMm2 = surfaceArea(body.mesh);
+  const found: CutCandidate[] = [];
+  for (const normal of sweepDirections(body.mesh, random)) {
+    const [low, high] = rangeAlong(body.mesh.positions, normal);
+    const offsets = sweepOffsets(low, high, space.cell);
+    if (offsets.length === 0) continue;
+    const tables = sweepTables(body.mesh, nodes, fit, normal, offsets);
+    found.push(...judgeSweep(tables, { part, body, space, weights, nodes, surfaceMm2 }));
+  }
+  return found.sort((a, b) => a.score - b.score);
+}
+
+interface Judging {
+  readonly part: PlanPart;
+  readonly body: PlanBody;
+  readonly space: SearchSpace;
+  readonly weights: CutWeights;
+  readonly nodes: BodyNodes;
+  readonly surfaceMm2: number;
+}
+
+function judgeSweep(tables: SweepTables, judging: Judging): CutCandidate[] {
+  const { space } = judging;
+  const fit = space.aimFrames;
+  const rows = tables.offsets.length;
+  const fitsAbove = (j: number) =>
+    roomInFrames(fit, tables.aboveLow, tables.aboveHigh, j * fit.axisCount) >= 0;
+  const fitsBelow = (j: number) =>
+    roomInFrames(fit, tables.belowLow, tables.belowHigh, j * fit.axisCount) >= 0;
+  // A side only shrinks as the cut moves towards it, so what fits is one run from either end.
+  const firstAbove = firstWhere(rows, fitsAbove);
+  const lastBelow = firstWhere(rows, (j) => !fitsBelow(j)) - 1;
+  const others = otherRanges(judging, tables);
+  const figures = Array.from({ length: rows }, (_, j) =>
+    figuresAt(tables, judging, j, j >= firstAbove, j <= lastBelow, others),
+  );
+  const candidateAt = (j: number, kind: CutKind): CutCandidate => {
+    const quality = qualityCost(figures[j], judging.weights);
+    return {
+      plane: { normal: tables.normal, offset: tables.offsets[j] },
+      kind,
+      quality,
+      score: expectedPieces(figures[j]) + quality,
+      stepMm: (tables.high - tables.low) / rows,
+    };
+  };
+  const found: CutCandidate[] = [];
+  if (firstAbove <= lastBelow) {
+    const options: CutCandidate[] = [];
+    for (let j = firstAbove; j <= lastBelow; j++) options.push(candidateAt(j, 'halves'));
+    found.push(best(options));
+    return found;
+  }
+  if (firstAbove < rows) found.push(candidateAt(firstAbove, 'takesAbove'));
+  if (lastBelow >= 0) found.push(candidateAt(lastBelow, 'takesBelow'));
+  const dividing: CutCandidate[] = [];
+  for (let j = 0; j < rows; j++) {
+    const kind = j >= firstAbove ? 'takesAbove' : j <= lastBelow ? 'takesBelow' : 'divides';
+    if (j !== firstAbove && j !== lastBelow) dividing.push(candidateAt(j, kind));
+  }
+  dividing.sort((a, b) => a.score - b.score);
+  found.push(...dividing.slice(0, DIVIDING_CUTS));
+  return found;
+}
+
+function best(options: readonly CutCandidate[]): CutCandidate {
+  return options.reduce((a, b) => (b.score < a.score ? b : a));
+}
+
+/** The first number in [0, count) from which on a monotone test holds; count when it never does. */
+function firstWhere(count: number, test: (k: number) => boolean): number {
+  let low = 0;
+  let high = count;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (test(middle)) high = middle;
+    else low = middle + 1;
+  }
+  return low;
+}
+
+/** Where the part's other bodies lie along the sweep. */
+function otherRanges({ part, body }: Judging, { normal }: SweepTables): [number, number][] {
+  return part.bodies
+    .filter((other) => other !== body)
+    .map((other) => rangeAlong(other.mesh.positions, normal));
+}
+
+function figuresAt(
+  tables: SweepTables,
+  { body, space, surfaceMm2 }: Judging,
+  j: number,
+  aboveFits: boolean,
+  belowFits: boolean,
+  others: readonly [number, number][],
+): CutFigures {
+  const fit = space.aimFrames;
+  const at = j * fit.axisCount;
+  const offset = tables.offsets[j];
+  const volumeAboveMm3 = tables.volumeAboveMm3[j];
+  const volumeBelowMm3 = Math.max(0, body.volumeMm3 - volumeAboveMm3);
+  const [width, depth, height] = space.cell;
+  const cells = (low: Float32Array, high: Float32Array, volume: number) =>
+    Math.max(1.9, volume / space.volumeMm3, cellsInFrames(fit, space.cell, low, high, at));
+  let alsoCut = 0;
+  for (const [low, high] of others) if (low < offset && offset < high) alsoCut++;
+  return {
+    cellsAbove: aboveFits ? 1 : cells(tables.aboveLow, tables.aboveHigh, volumeAboveMm3),
+    cellsBelow: belowFits ? 1 : cells(tables.belowLow, tables.belowHigh, volumeBelowMm3),
+    alsoCut,
+    seamMm2: tables.seamMm2[j],
+    faceMm2: Math.min(width * depth, width * height, depth * height),
+    overhangMm2: tables.overhangAboveMm2[j] + tables.overhangBelowMm2[j],
+    surfaceMm2,
+    thinMm: Math.min(offset - tables.low, tables.high - offset),
+    volumeAboveMm3,
+    volumeBelowMm3,
+  };
+}

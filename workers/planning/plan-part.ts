@@ -1,0 +1,144 @@
+import { restingDirections } from '../../shared/geometry/fitting/candidate-downs.js';
+import { layOnBed } from '../../shared/geometry/fitting/lay-on-bed.js';
+import { boundingBox, signedVolume } from '../../shared/geometry/mesh/measure.js';
+import { splitIntoSolids } from '../../shared/geometry/mesh/solids.js';
+import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
+import { cutMesh } from '../../shared/geometry/cutting/cut-mesh.js';
+import { type Plane } from '../../shared/geometry/vectors/plane.js';
+import { cellsInFrames, extentsOf, roomInFrames } from './fit-frames.js';
+import { type SearchSpace } from './search-space.js';
+import { signedFan } from './signed-fan.js';
+
+/** One loose solid of the trial model. */
+export interface PlanBody {
+  readonly mesh: TriangleMesh;
+  readonly volumeMm3: number;
+  /** Whether it fits the space, laid in its best orientation. */
+  readonly fits: boolean;
+  /** Rough number of spaces it fills; 1 when it fits. */
+  readonly cells: number;
+}
+
+/** What lies in one leaf of a growing tree: every further plane cuts all of its bodies. */
+export interface PlanPart {
+  readonly bodies: readonly PlanBody[];
+}
+
+/** Cut area that a plane leaves on a part, and the two parts. */
+export interface PartSplit {
+  readonly above: PlanPart;
+  readonly below: PlanPart;
+  readonly seamMm2: number;
+}
+
+export function partOf(mesh: TriangleMesh, space: SearchSpace): PlanPart {
+  return { bodies: bodiesOf(mesh, space) };
+}
+
+export function fitsWhole(part: PlanPart): boolean {
+  return part.bodies.every((body) => body.fits);
+}
+
+/** Cuts every body of a part that the plane crosses. Tags of new caps are `capTag`. */
+export function splitPart(
+  part: PlanPart,
+  plane: Plane,
+  capTag: number,
+  space: SearchSpace,
+): PartSplit {
+  const above: PlanBody[] = [];
+  const below: PlanBody[] = [];
+  let seamMm2 = 0;
+  for (const body of part.bodies) {
+    const cut = cutMesh(body.mesh, plane, { triangulate: signedFan, capTag });
+    if (cut.below === body.mesh) below.push(body);
+    else if (cut.above === body.mesh) above.push(body);
+    else {
+      seamMm2 += cut.sectionAreaMm2;
+      above.push(...bodiesOf(cut.above, space));
+      below.push(...bodiesOf(cut.below, space));
+    }
+  }
+  return { above: { bodies: above }, below: { bodies: below }, seamMm2 };
+}
+
+function bodiesOf(mesh: TriangleMesh, space: SearchSpace): PlanBody[] {
+  if (mesh.indices.length === 0) return [];
+  return joinStrayCavities(splitIntoSolids(mesh)).map((solid) => measureBody(solid, space));
+}
+
+/**
+ * Fans of dented loops can hide from the kernel which solid a cavity belongs to (its cap lies in
+ * its owner's cap). A stray cavity goes to the smallest solid whose box holds it; without one it
+ * bounds nothing and is dropped.
+ */
+function joinStrayCavities(solids: readonly TriangleMesh[]): TriangleMesh[] {
+  if (solids.length === 1) return [...solids];
+  const hulls: { mesh: TriangleMesh; parts: TriangleMesh[] }[] = [];
+  const strays: TriangleMesh[] = [];
+  for (const mesh of solids) {
+    if (signedVolume(mesh) > 0) hulls.push({ mesh, parts: [mesh] });
+    else strays.push(mesh);
+  }
+  if (strays.length === 0) return [...solids];
+  for (const stray of strays) {
+    const inner = boundingBox(stray.positions);
+    const owner = hulls.findLast(({ mesh }) => {
+      const outer = boundingBox(mesh.positions);
+      return [0, 1, 2].every(
+        (axis) => outer.min[axis] <= inner.min[axis] && outer.max[axis] >= inner.max[axis],
+      );
+    });
+    owner?.parts.push(stray);
+  }
+  return hulls.map(({ parts }) => joinMeshes(parts));
+}
+
+export function joinMeshes(parts: readonly TriangleMesh[]): TriangleMesh {
+  if (parts.length === 1) return parts[0];
+  const vertices = parts.reduce((sum, part) => sum + part.positions.length, 0);
+  const corners = parts.reduce((sum, part) => sum + part.indices.length, 0);
+  const positions = new Float64Array(vertices);
+  const indices = new Uint32Array(corners);
+  const tags = new Int32Array(corners / 3);
+  let v = 0;
+  let c = 0;
+  for (const part of parts) {
+    positions.set(part.positions, v);
+    for (let k = 0; k < part.indices.length; k++) indices[c + k] = part.indices[k] + v / 3;
+    if (part.tags) tags.set(part.tags, c / 3);
+    v += part.positions.length;
+    c += part.indices.length;
+  }
+  return { positions, indices, tags };
+}
+
+let low = new Float64Array(0);
+let high = new Float64Array(0);
+
+/** A part that is over by more than this share of the space in every frame is not looked at again. */
+const NEAR_SHARE = 0.15;
+
+function measureBody(mesh: TriangleMesh, space: SearchSpace): PlanBody {
+  const { fitFrames } = space;
+  if (low.length < fitFrames.axisCount) {
+    low = new Float64Array(fitFrames.axisCount);
+    high = new Float64Array(fitFrames.axisCount);
+  }
+  extentsOf(fitFrames, mesh.positions, low, high);
+  const volumeMm3 = signedVolume(mesh);
+  const room = roomInFrames(fitFrames, low, high);
+  const fits = room >= 0 || (isNear(room, space) && fitsExactly(mesh, space));
+  const cells = fits ? 1 : Math.max(1.5, cellsInFrames(fitFrames, space.cell, low, high));
+  return { mesh, volumeMm3, fits, cells };
+}
+
+function isNear(room: number, { cell }: SearchSpace): boolean {
+  return room > -NEAR_SHARE * Math.min(...cell);
+}
+
+/** The exact test that the finished pieces will have to pass as well. */
+export function fitsExactly(mesh: TriangleMesh, space: SearchSpace): boolean {
+  const { standing, others } = restingDirections(mesh);
+  return layOnBed(mesh.positions, space.fit, [...standing, ...others]).fits;
+}
