@@ -23,39 +23,42 @@ const corners = new Int32Array(4);
 export function collectSide(parts: CutParts, side: typeof ABOVE | typeof BELOW): TriangleMesh {
   const { mesh, sides, nodes, cap, capTag } = parts;
   const { indices, tags } = mesh;
-  const own = numberOwnVertices(sides.vertices, side);
-  const section = new SectionNumbers(nodes, own.count);
   const codes = sides.triangles;
+  const own = numberOwnVertices(sides.vertices, side);
+  const { numberOf } = own;
+  const section = new SectionNumbers(nodes, own.count);
   const triangles = countTriangles(parts, side) + cap.length / 3;
   const newIndices = new Uint32Array(3 * triangles);
   const newTags = new Int32Array(triangles);
   const touching = side | ON;
   let filled = 0;
+  let triangle = 0;
   let crossing = 0;
-  for (let triangle = 0; triangle < codes.length; triangle++) {
-    const code = codes[triangle];
-    const at = 3 * triangle;
+  for (let old = 0; old < codes.length; old++) {
+    const code = codes[old];
     if (code === side) {
-      newIndices[filled] = own.numberOf[indices[at]];
-      newIndices[filled + 1] = own.numberOf[indices[at + 1]];
-      newIndices[filled + 2] = own.numberOf[indices[at + 2]];
-      if (tags !== undefined) newTags[filled / 3] = tags[triangle];
+      const at = 3 * old;
+      newIndices[filled] = numberOf[indices[at]];
+      newIndices[filled + 1] = numberOf[indices[at + 1]];
+      newIndices[filled + 2] = numberOf[indices[at + 2]];
       filled += 3;
+      if (tags !== undefined) newTags[triangle] = tags[old];
+      triangle++;
     } else if (code === touching || (code & (ABOVE | BELOW)) === (ABOVE | BELOW)) {
       const isCrossing = code !== touching;
-      const found = findCorners(parts, triangle, side, isCrossing ? crossing : -1, own, section);
+      const found = findCorners(parts, old, side, isCrossing ? crossing : -1, own, section);
       if (isCrossing) crossing++;
       for (let corner = 2; corner < found; corner++) {
-        newIndices[filled] = corners[0];
-        newIndices[filled + 1] = corners[corner - 1];
-        newIndices[filled + 2] = corners[corner];
-        if (tags !== undefined) newTags[filled / 3] = tags[triangle];
-        filled += 3;
+        newIndices[filled++] = corners[0];
+        newIndices[filled++] = corners[corner - 1];
+        newIndices[filled++] = corners[corner];
+        if (tags !== undefined) newTags[triangle] = tags[old];
+        triangle++;
       }
     }
   }
+  newTags.fill(capTag, triangle);
   for (let i = 0; i < cap.length; i += 3) {
-    newTags[filled / 3] = capTag;
     newIndices[filled++] = section.numberOf(cap[i]);
     newIndices[filled++] = section.numberOf(cap[side === BELOW ? i + 1 : i + 2]);
     newIndices[filled++] = section.numberOf(cap[side === BELOW ? i + 2 : i + 1]);
