@@ -16,21 +16,19 @@ const millimetres = (start: number): number | null => start;
 /** The typed form of one envelope; call it where injection works. */
 export function buildEnvelopeForm() {
   const fields = inject(NonNullableFormBuilder);
-  const length = (name: string) => numberWithin({ name, least: 0, most: 10_000 });
+  const length = numberWithin({ least: 0, most: 10_000 });
+  const fine = numberWithin({ least: 0, most: 5 });
   const form = fields.group(
     {
       name: ['', nameWithin(80)],
       shape: fields.control<EnvelopeShape>('rectangular'),
-      widthMm: [millimetres(220), length('Width')],
-      depthMm: [millimetres(220), length('Depth')],
-      diameterMm: [millimetres(200), length('Diameter')],
-      heightMm: [millimetres(250), length('Height')],
-      marginMm: [
-        millimetres(2),
-        numberWithin({ name: 'Margin', least: 0, most: 1_000, orEqual: true }),
-      ],
-      nozzleMm: [millimetres(0.4), numberWithin({ name: 'Nozzle', least: 0, most: 5 })],
-      layerHeightMm: [millimetres(0.2), numberWithin({ name: 'Layer height', least: 0, most: 5 })],
+      widthMm: [millimetres(220), length],
+      depthMm: [millimetres(220), length],
+      diameterMm: [millimetres(200), length],
+      heightMm: [millimetres(250), length],
+      marginMm: [millimetres(2), numberWithin({ least: 0, most: 1_000, orEqual: true })],
+      nozzleMm: [millimetres(0.4), fine],
+      layerHeightMm: [millimetres(0.2), fine],
     },
     { validators: [marginLeavesBed, layerBelowNozzle] },
   );

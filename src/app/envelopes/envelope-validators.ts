@@ -1,18 +1,17 @@
 import { type ValidationErrors, type ValidatorFn } from '@angular/forms';
+import { writeGivenMm } from '../ui/format/quantities';
 
 /**
- * A number above `least` (or from it on, when `orEqual`) and at most `most`, in the unit the field
- * shows. The error `range` is the sentence to show; an empty field fails too.
+ * A number above `least` (or from it on, when `orEqual`) and at most `most`, in mm. The error `range` is the sentence to show; an empty field fails too.
  */
 export function numberWithin(limits: {
-  readonly name: string;
   readonly least: number;
   readonly most: number;
   readonly orEqual?: boolean;
 }): ValidatorFn {
-  const { name, least, most, orEqual } = limits;
-  const from = orEqual ? `from ${least}` : `more than ${least}`;
-  const sentence = `${name}: a number ${from}, at most ${most.toLocaleString('en-US').replace(',', '\u202f')} mm`;
+  const { least, most, orEqual } = limits;
+  const from = orEqual ? `From ${least}` : `More than ${least}`;
+  const sentence = `${from}, at most ${writeGivenMm(most)}`;
   return (control): ValidationErrors | null => {
     const value: unknown = control.value;
     const isNumber = typeof value === 'number' && Number.isFinite(value);

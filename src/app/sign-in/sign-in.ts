@@ -9,6 +9,7 @@ import { type DemoAccountsResponse } from '../../../shared/api/session.contract.
 import { SessionApi } from '../core/auth/session-api';
 import { SessionStore } from '../core/auth/session-store';
 import { sentenceFor } from '../core/http/api-failure';
+import { Mark } from '../ui/mark/mark';
 import { Notice } from '../ui/notice/notice';
 
 type DemoAccount = DemoAccountsResponse['accounts'][number];
@@ -16,7 +17,16 @@ type DemoAccount = DemoAccountsResponse['accounts'][number];
 /** The door: e-mail and password, or one of the demo people. */
 @Component({
   selector: 'sw-sign-in',
-  imports: [MatButton, MatError, MatFormField, MatInput, MatLabel, Notice, ReactiveFormsModule],
+  imports: [
+    Mark,
+    MatButton,
+    MatError,
+    MatFormField,
+    MatInput,
+    MatLabel,
+    Notice,
+    ReactiveFormsModule,
+  ],
   templateUrl: './sign-in.html',
   styleUrl: './sign-in.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,

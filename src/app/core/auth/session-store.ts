@@ -1,3 +1,4 @@
+import { HttpXsrfTokenExtractor } from '@angular/common/http';
 import { Injectable, computed, inject, signal } from '@angular/core';
 import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { Router } from '@angular/router';
@@ -17,6 +18,7 @@ export class SessionStore {
   private readonly api = inject(SessionApi);
   private readonly router = inject(Router);
   private readonly clock = inject(RenewalClock);
+  private readonly tokens = inject(HttpXsrfTokenExtractor);
   private readonly _session = signal<SessionResponse | null>(null);
   private restoring: Promise<void> | null = null;
 
@@ -66,6 +68,8 @@ export class SessionStore {
   }
 
   private async askServer(): Promise<void> {
+    // The readable cookie lives as long as the session; without it there is nothing to ask for.
+    if (this.tokens.getToken() === null) return;
     try {
       this._session.set(await this.api.current());
     } catch (failure) {

@@ -8,6 +8,10 @@ export class FailureNotes {
   private readonly snackBar = inject(MatSnackBar);
 
   show(error: unknown): void {
-    this.snackBar.open(sentenceFor(error), 'Close', { duration: 12_000, politeness: 'assertive' });
+    this.say(sentenceFor(error));
+  }
+
+  say(sentence: string): void {
+    this.snackBar.open(sentence, 'Close', { duration: 12_000, politeness: 'assertive' });
   }
 }

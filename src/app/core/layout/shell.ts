@@ -4,6 +4,7 @@ import { MatDivider } from '@angular/material/divider';
 import { MatIcon } from '@angular/material/icon';
 import { MatMenu, MatMenuItem, MatMenuTrigger } from '@angular/material/menu';
 import { RouterLink, RouterLinkActive, RouterOutlet } from '@angular/router';
+import { Mark } from '../../ui/mark/mark';
 import { SessionStore } from '../auth/session-store';
 import { ThemeStore, type ThemeChoice } from './theme-store';
 
@@ -11,6 +12,7 @@ import { ThemeStore, type ThemeChoice } from './theme-store';
 @Component({
   selector: 'sw-shell',
   imports: [
+    Mark,
     MatButton,
     MatDivider,
     MatIcon,

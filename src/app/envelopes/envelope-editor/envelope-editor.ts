@@ -17,6 +17,7 @@ import { MatRadioButton, MatRadioGroup } from '@angular/material/radio';
 import { MatSnackBar } from '@angular/material/snack-bar';
 import { Router, RouterLink } from '@angular/router';
 import { map } from 'rxjs';
+import { type EnvelopeResponse } from '../../../../shared/api/envelopes.contract.js';
 import { SessionStore } from '../../core/auth/session-store';
 import { placeFieldFailures } from '../../core/forms/field-failures';
 import { ApiFailure, sentenceFor } from '../../core/http/api-failure';
@@ -24,6 +25,7 @@ import { PageTitle } from '../../core/layout/page-title';
 import { Notice } from '../../ui/notice/notice';
 import { EnvelopeDrawing } from '../envelope-drawing/envelope-drawing';
 import { buildEnvelopeForm, envelopeRequestFrom, fillEnvelopeForm } from '../envelope-form';
+import { envelopeFacts } from '../envelope-words';
 import { EnvelopesApi } from '../envelopes-api';
 import { EnvelopesStore } from '../envelopes-store';
 
@@ -66,6 +68,11 @@ export class EnvelopeEditor {
   protected readonly isLoading = signal(false);
   protected readonly isSaving = signal(false);
   protected readonly problem = signal('');
+  private readonly _envelope = signal<EnvelopeResponse | null>(null);
+  protected readonly facts = computed(() => {
+    const envelope = this._envelope();
+    return envelope && envelopeFacts(envelope);
+  });
   protected readonly mayWrite = computed(() => this.sessions.can('envelope.write'));
   protected readonly measures = toSignal(
     this.form.valueChanges.pipe(map(() => this.form.getRawValue())),
@@ -109,11 +116,9 @@ export class EnvelopeEditor {
   }
 
   private placeFailure(failure: unknown): string {
-    if (!(failure instanceof ApiFailure)) return sentenceFor(failure);
-    if (failure.code !== 'envelope.nameTaken') return placeFieldFailures(this.form, failure);
-    this.form.controls.name.setErrors({ server: failure.message });
-    this.form.controls.name.markAsTouched();
-    return '';
+    return failure instanceof ApiFailure
+      ? placeFieldFailures(this.form, failure)
+      : sentenceFor(failure);
   }
 
   private async load(id: string): Promise<void> {
@@ -123,7 +128,7 @@ export class EnvelopeEditor {
       fillEnvelopeForm(this.form, envelope);
       this.heading.set(envelope.name);
       this.title.set(envelope.name);
-      if (!this.mayWrite()) this.form.disable({ emitEvent: false });
+      this._envelope.set(envelope);
     } catch (failure) {
       // Expected: an old address, or no server.
       this.problem.set(sentenceFor(failure));

@@ -9,7 +9,7 @@ import { SessionStore } from '../../core/auth/session-store';
 import { FailureNotes } from '../../core/errors/failure-notes';
 import { Confirmations } from '../../ui/confirm-dialog/confirmations';
 import { EmptyState } from '../../ui/empty-state/empty-state';
-import { writeLengthMm, writeMoment } from '../../ui/format/quantities';
+import { writeGivenMm, writeMoment } from '../../ui/format/quantities';
 import { Notice } from '../../ui/notice/notice';
 import { bedInWords, usableBedInWords } from '../envelope-words';
 import { EnvelopesStore } from '../envelopes-store';
@@ -38,7 +38,10 @@ export class EnvelopeList {
         envelope,
         bed: bedInWords(envelope),
         usableBed: usableBedInWords(envelope),
-        height: writeLengthMm(envelope.heightMm),
+        height: writeGivenMm(envelope.heightMm),
+        margin: writeGivenMm(envelope.marginMm),
+        nozzle: writeGivenMm(envelope.nozzleMm),
+        layers: writeGivenMm(envelope.layerHeightMm),
         updatedAt: writeMoment(envelope.updatedAt),
       })) ?? null,
   );

@@ -25,7 +25,7 @@ import { writeMoment, writeSizeMm } from '../../ui/format/quantities';
 import { Notice } from '../../ui/notice/notice';
 import { modelState } from '../model-state';
 import { ModelsStore } from '../models-store';
-import { removalQuestion } from '../removal-question';
+import { removalHindrance, removalQuestion } from '../removal-question';
 import { UploadList } from '../upload-list/upload-list';
 import { UploadQueue } from '../upload-queue';
 
@@ -113,6 +113,11 @@ export class ModelList {
   }
 
   protected async remove(model: ModelResponse): Promise<void> {
+    const hindrance = removalHindrance(model);
+    if (hindrance) {
+      this.notes.say(hindrance);
+      return;
+    }
     if (!(await this.confirmations.ask(removalQuestion(model)))) return;
     try {
       await this.store.remove(model.id);

@@ -34,7 +34,7 @@ import { modelState } from '../model-state';
 import { ModelStore } from '../model-store';
 import { PlanDesk } from '../plan-desk';
 import { PlanStarter, type PlanOrder } from '../plan-starter/plan-starter';
-import { removalQuestion } from '../removal-question';
+import { removalHindrance, removalQuestion } from '../removal-question';
 import { RenameField } from '../rename-field/rename-field';
 import { ScaleForm } from '../scale-form/scale-form';
 
@@ -143,7 +143,13 @@ export class ModelPage {
 
   protected async remove(): Promise<void> {
     const model = this.model();
-    if (!model || !(await this.confirmations.ask(removalQuestion(model)))) return;
+    if (!model) return;
+    const hindrance = removalHindrance(model);
+    if (hindrance) {
+      this.notes.say(hindrance);
+      return;
+    }
+    if (!(await this.confirmations.ask(removalQuestion(model)))) return;
     const isRemoved = await this.tell(() => this.store.remove());
     if (isRemoved) await this.router.navigateByUrl('/models');
   }

@@ -14,7 +14,7 @@ import { MatInput } from '@angular/material/input';
 import { MatOption, MatSelect } from '@angular/material/select';
 import { RouterLink } from '@angular/router';
 import { type EnvelopeResponse } from '../../../../shared/api/envelopes.contract.js';
-import { writeLengthMm, writeSizeMm } from '../../ui/format/quantities';
+import { writeGivenMm } from '../../ui/format/quantities';
 import { Notice } from '../../ui/notice/notice';
 import { isSeed, largestSeed } from '../seed-validator';
 
@@ -79,7 +79,7 @@ export class PlanStarter {
 function inWords(envelope: EnvelopeResponse): string {
   const size =
     envelope.shape === 'round'
-      ? `⌀ ${writeLengthMm(envelope.diameterMm)}, ${writeLengthMm(envelope.heightMm)} high`
-      : writeSizeMm([envelope.widthMm, envelope.depthMm, envelope.heightMm]);
+      ? `⌀ ${writeGivenMm(envelope.diameterMm)}, ${writeGivenMm(envelope.heightMm)} high`
+      : writeGivenMm(envelope.widthMm, envelope.depthMm, envelope.heightMm);
   return `${envelope.name} (${size})`;
 }
