@@ -15,6 +15,9 @@ import { type NumberedCut } from '../plan-sentences';
     </ol>
   `,
   styles: `
+    :host {
+      display: block;
+    }
     ol {
       display: grid;
       gap: 8px;

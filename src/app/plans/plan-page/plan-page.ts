@@ -184,6 +184,6 @@ export class PlanPage {
   private scaleField(): TitleBlockField[] {
     const result = this.result();
     if (!result) return [];
-    return [{ name: 'Scale', value: scaleInWords(result.recipe.millimetresPerUnit) }];
+    return [{ name: 'Scale', value: scaleInWords(result.recipe.millimetresPerUnit), wide: true }];
   }
 }

@@ -9,7 +9,7 @@ import { type ProofRow } from '../../../../shared/jobs/plan-make.js';
   template: `
     <table class="sw-table sw-table-rows" role="table">
       <caption>
-        Proof, measured on the files that you download.
+        Measured on the files that you download.
       </caption>
       <thead role="rowgroup">
         <tr role="row">
@@ -37,6 +37,13 @@ import { type ProofRow } from '../../../../shared/jobs/plan-make.js';
     </table>
   `,
   styles: `
+    :host {
+      display: block;
+    }
+    td,
+    th {
+      vertical-align: middle;
+    }
     .result {
       display: inline-flex;
       align-items: center;

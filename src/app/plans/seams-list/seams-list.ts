@@ -2,13 +2,16 @@ import { ChangeDetectionStrategy, Component, computed, input } from '@angular/co
 import { type Seam } from '../../../../shared/jobs/plan-make.js';
 import { writeArea } from '../../ui/format/quantities';
 
+/** Below this, mm², square centimetres would say nothing. */
+const LEAST_CM2 = 100;
+
 /** Where pieces meet, which cut made the seam and how much of it there is to glue. */
 @Component({
   selector: 'sw-seams-list',
   template: `
     <table class="sw-table" role="table">
       <caption>
-        Seams: where two pieces meet.
+        Where two pieces meet, and how much there is to glue.
       </caption>
       <thead role="rowgroup">
         <tr role="row">
@@ -29,6 +32,9 @@ import { writeArea } from '../../ui/format/quantities';
     </table>
   `,
   styles: `
+    :host {
+      display: block;
+    }
     .selected td {
       font-weight: 500;
       box-shadow: inset 0 -1px 0 var(--sw-seam);
@@ -44,9 +50,13 @@ export class SeamsList {
   protected readonly rows = computed(() =>
     this.seams().map((seam) => ({
       between: seam.between.join(' and '),
-      area: writeArea(seam.areaMm2),
+      area: seam.areaMm2 < LEAST_CM2 ? writeSmallArea(seam.areaMm2) : writeArea(seam.areaMm2),
       cut: seam.cut,
       isOfSelected: seam.between.some((name) => name === this.selected()),
     })),
   );
+}
+
+function writeSmallArea(areaMm2: number): string {
+  return `${areaMm2 < 0.1 ? '< 0.1' : areaMm2.toFixed(1)}\u202fmm²`;
 }

@@ -8,7 +8,7 @@ const ZOOM_STEP = 1.2;
 /** Distance of the eye from what it looks at, in reaches; without effect on the picture's size. */
 const DISTANCE = 6;
 /** Share of the picture that a fitted object may fill; the rest is for balloons. */
-const FILL = { width: 0.72, height: 0.8 } as const;
+const FILL = { width: 0.72, height: 0.86 } as const;
 
 export type CameraMove = 'left' | 'right' | 'up' | 'down' | 'closer' | 'farther';
 
@@ -63,9 +63,9 @@ export class CameraRig {
     this.camera.updateProjectionMatrix();
   }
 
-  /** Grows or shrinks the picture by a factor, as when the canvas changes its size. */
-  scale(factor: number): void {
-    this.frame({ ...this.framing(), pixelsPerMm: this.camera.zoom * factor });
+  /** Changes the zoom alone. */
+  zoomTo(pixelsPerMm: number): void {
+    if (Number.isFinite(pixelsPerMm)) this.frame({ ...this.framing(), pixelsPerMm });
   }
 
   /** Frames a fraction of the way from one framing to another. */
@@ -77,22 +77,35 @@ export class CameraRig {
     });
   }
 
-  /** The framing that shows a box in full from the present direction. */
-  framingOf(box: Box3): Framing {
-    const target = box.getCenter(new Vector3());
+  /** The framing that shows all points in full from the present direction. */
+  framingOf(points: readonly Vector3[]): Framing {
     const forward = this.direction();
     const right = new Vector3().crossVectors(this.camera.up, forward);
     if (right.lengthSq() < 1e-9) right.set(1, 0, 0);
     right.normalize();
     const up = new Vector3().crossVectors(forward, right);
-    const half = box.getSize(new Vector3()).multiplyScalar(0.5);
-    const spanOf = (axis: Vector3) =>
-      2 * (Math.abs(axis.x) * half.x + Math.abs(axis.y) * half.y + Math.abs(axis.z) * half.z);
+    const target = new Vector3();
+    const spans = [right, up, forward].map((axis) => {
+      let low = Infinity;
+      let high = -Infinity;
+      for (const point of points) {
+        const along = point.dot(axis);
+        low = Math.min(low, along);
+        high = Math.max(high, along);
+      }
+      target.addScaledVector(axis, (low + high) / 2);
+      return high - low;
+    });
     const pixelsPerMm = Math.min(
-      (this.widthPx * FILL.width) / Math.max(spanOf(right), 1e-6),
-      (this.heightPx * FILL.height) / Math.max(spanOf(up), 1e-6),
+      (this.widthPx * FILL.width) / Math.max(spans[0]!, 1e-6),
+      (this.heightPx * FILL.height) / Math.max(spans[1]!, 1e-6),
     );
     return { target, pixelsPerMm };
+  }
+
+  /** How much a line on the ground that runs away from the eye is shortened, 0 … 1. */
+  get groundShortening(): number {
+    return Math.abs(this.direction().z);
   }
 
   framing(): Framing {

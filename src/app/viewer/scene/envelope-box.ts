@@ -1,15 +1,11 @@
-import {
-  Box3,
-  BufferAttribute,
-  BufferGeometry,
-  Group,
-  LineBasicMaterial,
-  LineSegments,
-  Vector3,
-} from 'three';
+import { Box3, Group, Vector3 } from 'three';
+import { LineMaterial } from 'three/addons/lines/LineMaterial.js';
+import { LineSegments2 } from 'three/addons/lines/LineSegments2.js';
+import { LineSegmentsGeometry } from 'three/addons/lines/LineSegmentsGeometry.js';
 import { type BuildSpace } from '../../../../shared/geometry/fitting/build-space.js';
 import { disposeTree } from './disposal';
 
+const WIDTH_PX = 1.4;
 const ROUND_SIDES = 96;
 /** Lines up the side of a cylinder, so that it reads as one. */
 const ROUND_UPRIGHTS = 8;
@@ -18,7 +14,7 @@ const ROUND_UPRIGHTS = 8;
 export class EnvelopeBox {
   readonly group = new Group();
   readonly box: Box3;
-  private readonly frame: LineSegments<BufferGeometry, LineBasicMaterial>;
+  private readonly material = new LineMaterial({ linewidth: WIDTH_PX });
 
   constructor(space: BuildSpace) {
     const [width, depth] =
@@ -26,16 +22,18 @@ export class EnvelopeBox {
         ? [space.diameterMm, space.diameterMm]
         : [space.widthMm, space.depthMm];
     this.box = new Box3(new Vector3(), new Vector3(width, depth, space.heightMm));
-    const geometry = new BufferGeometry();
     const corners =
       space.shape === 'round' ? cylinderLines(width / 2, space.heightMm) : boxLines(this.box.max);
-    geometry.setAttribute('position', new BufferAttribute(new Float32Array(corners), 3));
-    this.frame = new LineSegments(geometry, new LineBasicMaterial());
-    this.group.add(this.frame);
+    const geometry = new LineSegmentsGeometry().setPositions(corners);
+    this.group.add(new LineSegments2(geometry, this.material));
   }
 
   setColour(colour: string): void {
-    this.frame.material.color.set(colour);
+    this.material.color.set(colour);
+  }
+
+  resize(widthPx: number, heightPx: number): void {
+    this.material.resolution.set(widthPx, heightPx);
   }
 
   dispose(): void {

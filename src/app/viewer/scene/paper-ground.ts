@@ -32,13 +32,13 @@ const fragmentShader = /* glsl */ `
     vec2 at = (atMm - originMm) / spacing;
     vec2 width = max(fwidth(at), vec2(1e-6));
     vec2 far = abs(fract(at - 0.5) - 0.5) / width;
-    float crowded = smoothstep(0.2, 0.5, max(width.x, width.y));
+    float crowded = smoothstep(0.25, 0.5, max(width.x, width.y));
     return (1.0 - min(min(far.x, far.y), 1.0)) * (1.0 - crowded);
   }
 
   void main() {
     float fade = 1.0 - smoothstep(0.55, 1.0, distance(atMm, centreMm) / radiusMm);
-    float strength = max(lines(stepMm) * 0.45, lines(stepMm * 10.0) * 0.8);
+    float strength = max(lines(stepMm) * 0.3, lines(stepMm * 10.0) * 0.5);
     gl_FragColor = vec4(lineColour, strength * fade);
     if (gl_FragColor.a < 0.01) discard;
     #include <colorspace_fragment>

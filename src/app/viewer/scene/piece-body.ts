@@ -16,7 +16,11 @@ import { type SceneTheme } from './scene-theme';
 import { shadeSurface } from './surface-shading';
 import { type ScenePiece, type SurfacePart } from './view-parts';
 
+/** Enough points of a piece to frame it by. */
+const OUTLINE_POINTS = 64;
+
 interface Prepared {
+  readonly outlinePoints: readonly Vector3[];
   readonly surface: BufferGeometry;
   readonly lines: BufferGeometry;
 }
@@ -36,13 +40,39 @@ function prepare(part: SurfacePart): Prepared {
   surface.boundsTree = new MeshBVH(surface, { indirect: true });
   const lines = new BufferGeometry();
   lines.setAttribute('position', new BufferAttribute(shaded.featureEdges, 3));
-  prepared.set(part, { surface, lines });
-  return { surface, lines };
+  const made = { surface, lines, outlinePoints: extremePoints(part.positions) };
+  prepared.set(part, made);
+  return made;
+}
+
+/** The farthest vertices in directions spread evenly over the sphere (Fibonacci lattice). */
+function extremePoints(positions: Float32Array): Vector3[] {
+  const points: Vector3[] = [];
+  const goldenAngle = Math.PI * (3 - Math.sqrt(5));
+  for (let at = 0; at < OUTLINE_POINTS; at++) {
+    const z = 1 - (2 * at + 1) / OUTLINE_POINTS;
+    const radius = Math.sqrt(1 - z * z);
+    const x = radius * Math.cos(at * goldenAngle);
+    const y = radius * Math.sin(at * goldenAngle);
+    let farthest = 0;
+    let reach = -Infinity;
+    for (let i3 = 0; i3 < positions.length; i3 += 3) {
+      const along = positions[i3]! * x + positions[i3 + 1]! * y + positions[i3 + 2]! * z;
+      if (along > reach) {
+        reach = along;
+        farthest = i3;
+      }
+    }
+    points.push(new Vector3().fromArray(positions, farthest));
+  }
+  return points;
 }
 
 /** A piece in the scene: its surface, its edges as thin lines, its place and where it is going. */
 export class PieceBody {
   readonly group = new Group();
+  /** In the assembled model. */
+  readonly outlinePoints: readonly Vector3[];
   readonly mesh: Mesh<BufferGeometry, MeshLambertMaterial>;
   private readonly edges: LineSegments<BufferGeometry, LineBasicMaterial>;
   private readonly pose: Pose;
@@ -53,7 +83,8 @@ export class PieceBody {
     readonly piece: ScenePiece,
     readonly colour: number,
   ) {
-    const { surface, lines } = prepare(piece.surface);
+    const { surface, lines, outlinePoints } = prepare(piece.surface);
+    this.outlinePoints = outlinePoints;
     this.mesh = new Mesh(
       surface,
       // Pushed back a little so that lines on the surface win.

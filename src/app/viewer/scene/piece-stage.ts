@@ -144,7 +144,17 @@ export class PieceStage {
     return box;
   }
 
+  /** Points that stand for the outline of everything that is shown, where it belongs. */
+  shownPoints(): Vector3[] {
+    if (this.isOnBed()) return cornersOf(this.shownBox());
+    return this._bodies.flatMap((body) => {
+      const { position } = this.poses.get(body) ?? identityPose();
+      return body.outlinePoints.map((point) => point.clone().add(position));
+    });
+  }
+
   resize(widthPx: number, heightPx: number): void {
+    this.envelope?.resize(widthPx, heightPx);
     this.seams?.resize(widthPx, heightPx);
   }
 
@@ -199,7 +209,7 @@ export class PieceStage {
       centre: [centre.x, centre.y],
       origin: [origin.x, origin.y],
       heightMm: box.min.z - gapMm,
-      radiusMm: 0.95 * longestSide(box) + 0.25 * Math.hypot(size.x, size.y),
+      radiusMm: 0.9 * longestSide(box) + 0.6 * Math.hypot(size.x, size.y),
       stepMm: this.gridMm,
     });
   }
@@ -215,6 +225,13 @@ export class PieceStage {
     this.envelope?.setColour(theme.ink);
     this.ground.setColour(theme.grid);
   }
+}
+
+function cornersOf(box: Box3): Vector3[] {
+  const { min, max } = box;
+  return [min.x, max.x].flatMap((x) =>
+    [min.y, max.y].flatMap((y) => [min.z, max.z].map((z) => new Vector3(x, y, z))),
+  );
 }
 
 function longestSide(box: Box3): number {

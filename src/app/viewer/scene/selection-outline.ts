@@ -8,6 +8,7 @@ import {
   Scene,
   ShaderMaterial,
   type Object3D,
+  type Texture,
   Vector2,
   type WebGLRenderer,
   WebGLRenderTarget,
@@ -31,7 +32,8 @@ const fragmentShader = /* glsl */ `
   uniform vec3 colour;
   varying vec2 at;
   void main() {
-    if (texture2D(silhouette, at).r > 0.5) discard;
+    float inside = texture2D(silhouette, at).r;
+    if (inside > 0.99) discard;
     float near = 0.0;
     for (int ring = 1; ring <= 2; ring++) {
       float reach = widthPx * float(ring) * 0.5;
@@ -41,8 +43,8 @@ const fragmentShader = /* glsl */ `
         near = max(near, texture2D(silhouette, at + offset).r);
       }
     }
-    if (near < 0.5) discard;
-    gl_FragColor = vec4(colour, 1.0);
+    if (near < 0.01) discard;
+    gl_FragColor = vec4(colour, near * (1.0 - inside));
     #include <colorspace_fragment>
   }
 `;
@@ -52,10 +54,10 @@ const fragmentShader = /* glsl */ `
  * selected piece is found by shape and not by colour alone.
  */
 export class SelectionOutline {
-  private readonly target = new WebGLRenderTarget(1, 1, { depthBuffer: false });
+  private readonly target: WebGLRenderTarget;
   private readonly flat = new MeshBasicMaterial({ color: '#ffffff' });
   private readonly uniforms = {
-    silhouette: { value: this.target.texture },
+    silhouette: { value: null as Texture | null },
     pixel: { value: new Vector2(1, 1) },
     widthPx: { value: WIDTH_PX },
     colour: { value: new Color() },
@@ -66,6 +68,7 @@ export class SelectionOutline {
       uniforms: this.uniforms,
       vertexShader,
       fragmentShader,
+      transparent: true,
       depthTest: false,
       depthWrite: false,
     }),
@@ -76,7 +79,10 @@ export class SelectionOutline {
   private readonly ghostScene = new Scene().add(this.ghost);
   private readonly previousClear = new Color();
 
-  constructor() {
+  /** @param antialias whether the line's rims are smooth */
+  constructor(antialias: boolean) {
+    this.target = new WebGLRenderTarget(1, 1, { depthBuffer: false, samples: antialias ? 4 : 0 });
+    this.uniforms.silhouette.value = this.target.texture;
     this.ghost.matrixAutoUpdate = false;
     this.sheet.frustumCulled = false;
   }

@@ -21,12 +21,12 @@ const CREASE_DEGREES = 32;
  */
 export function shadeSurface(positions: Float32Array, indices: Uint32Array): ShadedSurface {
   const corners = weldCorners(positions, indices);
-  const faces = faceNormals(positions, indices);
+  const { faces, areas } = faceNormals(positions, indices);
   const partners = edgePartners(corners);
   const crease = Math.cos((CREASE_DEGREES * Math.PI) / 180);
   return {
     positions: expand(positions, indices),
-    normals: cornerNormals(corners, faces, partners, crease),
+    normals: cornerNormals(corners, faces, areas, partners, crease),
     featureEdges: creaseLines(positions, indices, corners, faces, partners, crease),
   };
 }
@@ -71,9 +71,23 @@ function weldCorners(positions: Float32Array, indices: Uint32Array): Uint32Array
   return corners;
 }
 
-/** Unit normal of every triangle, flat xyz; zeros for a triangle without area. */
-function faceNormals(positions: Float32Array, indices: Uint32Array): Float32Array {
-  const normals = new Float32Array(indices.length);
+/**
+ * Triangles lower than this share of the surface's extent have no say in shading: pictures are
+ * rounded to 2⁻¹⁷ of it, which turns such slivers by several degrees.
+ */
+const SLIVER_SHARE = 1e-4;
+
+/**
+ * Unit normal of every triangle, flat xyz, zeros for slivers and triangles without area; and twice
+ * their areas.
+ */
+function faceNormals(
+  positions: Float32Array,
+  indices: Uint32Array,
+): { faces: Float32Array; areas: Float32Array } {
+  const faces = new Float32Array(indices.length);
+  const areas = new Float32Array(indices.length / 3);
+  const leastHeight = SLIVER_SHARE * extentOf(positions);
   for (let i3 = 0; i3 < indices.length; i3 += 3) {
     const a = indices[i3]! * 3;
     const b = indices[i3 + 1]! * 3;
@@ -87,13 +101,39 @@ function faceNormals(positions: Float32Array, indices: Uint32Array): Float32Arra
     const nx = uy * vz - uz * vy;
     const ny = uz * vx - ux * vz;
     const nz = ux * vy - uy * vx;
-    const length = Math.sqrt(nx * nx + ny * ny + nz * nz);
-    if (length === 0) continue;
-    normals[i3] = nx / length;
-    normals[i3 + 1] = ny / length;
-    normals[i3 + 2] = nz / length;
+    const doubleArea = Math.sqrt(nx * nx + ny * ny + nz * nz);
+    const wx = vx - ux;
+    const wy = vy - uy;
+    const wz = vz - uz;
+    const longest = Math.sqrt(
+      Math.max(
+        ux * ux + uy * uy + uz * uz,
+        vx * vx + vy * vy + vz * vz,
+        wx * wx + wy * wy + wz * wz,
+      ),
+    );
+    if (doubleArea === 0 || doubleArea < leastHeight * longest) continue;
+    areas[i3 / 3] = doubleArea;
+    faces[i3] = nx / doubleArea;
+    faces[i3 + 1] = ny / doubleArea;
+    faces[i3 + 2] = nz / doubleArea;
   }
-  return normals;
+  return { faces, areas };
+}
+
+/** Longest side of the box, in the unit of the positions. */
+function extentOf(positions: Float32Array): number {
+  let extent = 0;
+  for (let axis = 0; axis < 3; axis++) {
+    let low = Infinity;
+    let high = -Infinity;
+    for (let at = axis; at < positions.length; at += 3) {
+      if (positions[at]! < low) low = positions[at]!;
+      if (positions[at]! > high) high = positions[at]!;
+    }
+    extent = Math.max(extent, high - low);
+  }
+  return extent;
 }
 
 /** For every half-edge (corner to next corner) its opposite half-edge, or -1. */
@@ -134,10 +174,8 @@ function previousCorner(corner: number): number {
   return corner % 3 === 0 ? corner + 2 : corner - 1;
 }
 
-/** Whether the surface has an edge there. A triangle without area has no say. */
-function isCrease(faces: Float32Array, edge: number, partner: number, crease: number): boolean {
-  const a = edge - (edge % 3);
-  const b = partner - (partner % 3);
+/** Whether the surface bends sharply between two triangles. One without a normal has no say. */
+function isCrease(faces: Float32Array, a: number, b: number, crease: number): boolean {
   const ax = faces[a]!;
   const ay = faces[a + 1]!;
   const az = faces[a + 2]!;
@@ -148,34 +186,44 @@ function isCrease(faces: Float32Array, edge: number, partner: number, crease: nu
   return ax * bx + ay * by + az * bz < crease;
 }
 
-/** Sums the normals of the triangles round a corner up to the next edge on either side. */
+function hasNormal(faces: Float32Array, face: number): boolean {
+  return faces[face] !== 0 || faces[face + 1] !== 0 || faces[face + 2] !== 0;
+}
+
+/** Sums the normals of the triangles round a corner, by area, up to the next edge on either side. */
 function cornerNormals(
   corners: Uint32Array,
   faces: Float32Array,
+  areas: Float32Array,
   partners: Int32Array,
   crease: number,
 ): Float32Array {
   const normals = new Float32Array(corners.length * 3);
   for (let corner = 0; corner < corners.length; corner++) {
     const own = corner - (corner % 3);
-    let nx = faces[own]!;
-    let ny = faces[own + 1]!;
-    let nz = faces[own + 2]!;
+    const ownArea = areas[own / 3]!;
+    let nx = faces[own]! * ownArea;
+    let ny = faces[own + 1]! * ownArea;
+    let nz = faces[own + 2]! * ownArea;
     let closed = false;
     for (let direction = 0; direction < 2 && !closed; direction++) {
       let at = corner;
+      // A sliver between two faces must not join them, so each is held against the last good one.
+      let known = own;
       // A fan of more triangles than this is not a fan but a fault in the mesh.
       for (let guard = 0; guard < 256; guard++) {
-        const edge = direction === 0 ? at : previousCorner(at);
-        const partner = partners[edge]!;
-        if (partner < 0 || isCrease(faces, edge, partner, crease)) break;
+        const partner = partners[direction === 0 ? at : previousCorner(at)]!;
+        if (partner < 0) break;
+        const face = partner - (partner % 3);
+        if (isCrease(faces, known, face, crease)) break;
         at = direction === 0 ? nextCorner(partner) : partner;
         closed = at === corner;
         if (closed) break;
-        const face = at - (at % 3);
-        nx += faces[face]!;
-        ny += faces[face + 1]!;
-        nz += faces[face + 2]!;
+        if (hasNormal(faces, face)) known = face;
+        const area = areas[face / 3]!;
+        nx += faces[face]! * area;
+        ny += faces[face + 1]! * area;
+        nz += faces[face + 2]! * area;
       }
     }
     const length = Math.sqrt(nx * nx + ny * ny + nz * nz) || 1;
@@ -184,6 +232,10 @@ function cornerNormals(
     normals[corner * 3 + 2] = nz / length;
   }
   return normals;
+}
+
+function isBent(faces: Float32Array, edge: number, partner: number, crease: number): boolean {
+  return isCrease(faces, edge - (edge % 3), partner - (partner % 3), crease);
 }
 
 function creaseLines(
@@ -197,7 +249,7 @@ function creaseLines(
   const edges: number[] = [];
   for (let edge = 0; edge < corners.length; edge++) {
     const partner = partners[edge]!;
-    if (partner >= 0 && (partner < edge || !isCrease(faces, edge, partner, crease))) continue;
+    if (partner >= 0 && (partner < edge || !isBent(faces, edge, partner, crease))) continue;
     if (corners[edge] === corners[nextCorner(edge)]) continue;
     edges.push(edge);
   }

@@ -41,6 +41,8 @@ export interface SceneMeasure {
 }
 
 const SCALE_BAR_PX = 120;
+/** Lines nearer to each other than this have faded away. */
+const LEAST_GRID_PX = 2.7;
 /** Over the left shoulder, as on a drawing table; in the camera's frame. */
 const lightDirection = new Vector3(-0.55, 0.85, 1.1);
 
@@ -53,7 +55,7 @@ export class ViewerScene {
   private readonly renderer: WebGLRenderer;
   private readonly rig: CameraRig;
   private readonly stage = new PieceStage();
-  private readonly outline = new SelectionOutline();
+  private readonly outline: SelectionOutline;
   private readonly cutLayer: CutPlaneLayer;
   private readonly balloons: Balloons;
   private readonly dimensions: DimensionOverlay;
@@ -75,6 +77,7 @@ export class ViewerScene {
 
   constructor(private readonly host: SceneHost) {
     this.renderer = createRenderer(host.canvas, host.antialias);
+    this.outline = new SelectionOutline(host.antialias);
     this.glide = new Glide(host.prefersReducedMotion);
     this.rig = new CameraRig(host.canvas, this.requestRender, this.settle);
     this.balloons = new Balloons(host.overlay, host.onPicked);
@@ -150,7 +153,10 @@ export class ViewerScene {
 
   resize(widthPx: number, heightPx: number, pixelRatio: number): void {
     if (widthPx < 1 || heightPx < 1) return;
-    const before = { ...this.size };
+    const isFirst = this.size.widthPx === 0;
+    const points = this.stage.shownPoints();
+    // Kept relative to what fits, so that growing and shrinking back ends where it began.
+    const closeness = this.rig.pixelsPerMm / this.rig.framingOf(points).pixelsPerMm;
     this.size.widthPx = widthPx;
     this.size.heightPx = heightPx;
     this.renderer.setPixelRatio(pixelRatio);
@@ -158,8 +164,8 @@ export class ViewerScene {
     this.outline.resize(widthPx, heightPx, pixelRatio);
     this.stage.resize(widthPx, heightPx);
     this.rig.resize(widthPx, heightPx);
-    if (before.widthPx === 0) this.fit(false);
-    else this.rig.scale(Math.min(widthPx / before.widthPx, heightPx / before.heightPx));
+    if (isFirst) this.fit(false);
+    else this.rig.zoomTo(closeness * this.rig.framingOf(points).pixelsPerMm);
     this.settle();
   }
 
@@ -169,7 +175,7 @@ export class ViewerScene {
     const box = this.stage.shownBox();
     if (box.isEmpty() || this.size.widthPx === 0) return;
     this.rig.setReach(box);
-    const to = this.rig.framingOf(box);
+    const to = this.rig.framingOf(this.stage.shownPoints());
     this.framings = { from: this.rig.framing(), to };
     if (!smoothly || !this.glide.start(performance.now())) {
       this.glide.stop();
@@ -261,9 +267,16 @@ export class ViewerScene {
     this.drawBalloons();
     this.drawDimensions();
     const bar = scaleBarFor(this.rig.pixelsPerMm, SCALE_BAR_PX);
-    this.host.onMeasured({ bar, gridMm: this.stage.gridMm });
+    this.host.onMeasured({ bar, gridMm: this.visibleGridMm() });
     this.host.onDrawn(++this.frames);
   };
+
+  /** The finest lines of the grid that the picture shows. */
+  private visibleGridMm(): number {
+    const { gridMm } = this.stage;
+    const spacingPx = gridMm * this.rig.pixelsPerMm * this.rig.groundShortening;
+    return spacingPx < LEAST_GRID_PX ? 10 * gridMm : gridMm;
+  }
 
   private drawBalloons(): void {
     if (this.stage.isOneBody) return this.balloons.clear();
