@@ -23,23 +23,25 @@ async function main(): Promise<void> {
   const config = readConfig(process.env);
   const logger = createLogger(config.logLevel);
   const report = (what: string, ms: number) => process.send?.({ kind: 'step', what, ms });
-  const server = await startServer(config, logger, report);
-  const { address, hasDemo } = server;
+  const starting = startServer(config, logger, report);
+  endWithSignals(starting);
+  const { address, hasDemo } = await starting;
   logger.info({ address }, 'listening');
   process.send?.({ kind: 'ready', address, demoAccounts: hasDemo ? demoAccounts : [] });
-  endWithSignals(server);
 }
 
-/** Ctrl-C, SIGTERM, or the end of the program that started us. */
-function endWithSignals(server: RunningServer): void {
+/** Ctrl-C, SIGTERM, or the end of the program that started us; also while still starting. */
+function endWithSignals(starting: Promise<RunningServer>): void {
   let isEnding = false;
   const end = (): void => {
     if (isEnding) return;
     isEnding = true;
-    server.stop().then(
-      () => process.exit(0),
-      () => process.exit(1),
-    );
+    starting
+      .then((server) => server.stop())
+      .then(
+        () => process.exit(0),
+        () => process.exit(1),
+      );
   };
   process.on('SIGTERM', end);
   process.on('SIGINT', end);

@@ -26,23 +26,32 @@ export function arePackagesCurrent(root) {
  */
 export function ensurePackages(root) {
   if (arePackagesCurrent(root)) return false;
-  const { command, args } = npm();
-  const run = spawnSync(command, [...args, 'ci', '--include=dev', '--no-progress'], {
-    cwd: root,
-    encoding: 'utf8',
-  });
-  if (run.status !== 0) {
-    const said = `${run.stdout ?? ''}\n${run.stderr ?? run.error?.message ?? ''}`.trim();
-    throw new Error(`npm ci failed:\n${said.split('\n').slice(-8).join('\n')}`);
-  }
-  writeFileSync(stampOf(root), hashOfLock(root));
+  const { command, args } = npmCi();
+  const run = spawnSync(command, args, { cwd: root, encoding: 'utf8' });
+  settle(root, run.status, `${run.stdout ?? ''}\n${run.stderr ?? run.error?.message ?? ''}`);
   return true;
 }
 
-/** The npm that runs us, else the one beside this Node. */
-function npm() {
+/** The same without blocking, so that a signal can end it. @param run of tools.mjs */
+export async function ensurePackagesWith(run, root) {
+  if (arePackagesCurrent(root)) return false;
+  const { command, args } = npmCi();
+  const { status, said } = await run(command, args, { cwd: root });
+  settle(root, status, said);
+  return true;
+}
+
+function settle(root, status, said) {
+  if (status !== 0)
+    throw new Error(`npm ci failed:\n${said.trim().split('\n').slice(-8).join('\n')}`);
+  writeFileSync(stampOf(root), hashOfLock(root));
+}
+
+/** The npm that runs us, else the one beside this Node. The build needs the dev packages too. */
+function npmCi() {
+  const ci = ['ci', '--include=dev', '--no-progress'];
   const running = process.env.npm_execpath;
-  if (running?.endsWith('.js')) return { command: process.execPath, args: [running] };
+  if (running?.endsWith('.js')) return { command: process.execPath, args: [running, ...ci] };
   const beside = join(dirname(process.execPath), 'npm');
-  return { command: existsSync(beside) ? beside : 'npm', args: [] };
+  return { command: existsSync(beside) ? beside : 'npm', args: ci };
 }

@@ -29,6 +29,16 @@ function readProc(pid, name) {
   }
 }
 
+/**
+ * When a process started, in ticks since the machine did: together with the number it names one
+ * process for ever, as numbers are used again. Null where there is no /proc or no such process.
+ */
+export function startTicksOf(pid) {
+  // Field 22 of proc(5); the second may hold spaces, so count from its closing bracket.
+  const fields = readProc(pid, 'stat').split(') ').at(-1)?.split(' ') ?? [];
+  return fields.length > 19 ? Number(fields[19]) : null;
+}
+
 /** Asks a process to end and insists after `graceMs`. Resolves when it is gone. */
 export async function endProcess(pid, graceMs = 10_000) {
   signal(pid, 'SIGTERM');

@@ -3,6 +3,7 @@ import { join } from 'node:path';
 import type { EnvelopeData } from '../modules/envelopes/envelopes.model.js';
 import { createModelsService } from '../modules/models/models.service.js';
 import { hashPassword } from '../modules/accounts/passwords.js';
+import { isDuplicate } from '../platform/db/driver-errors.js';
 import type { Transact } from '../platform/db/transaction.js';
 import type { CreateId } from '../platform/ids/create-id.js';
 import type { FileStorage } from '../platform/storage/disk-storage.js';
@@ -84,6 +85,8 @@ export async function seedDemo(deps: SeedDependencies): Promise<boolean> {
   } catch (error) {
     // The rows are rolled back; files must not stay without them.
     await storage.remove(`workshops/${workshopId}`);
+    // Another server has just made the same accounts.
+    if (isDuplicate(error)) return false;
     throw error;
   } finally {
     await rm(making, { recursive: true, force: true });
