@@ -24,10 +24,14 @@ export interface JobThread {
   readonly discard: () => Promise<void>;
 }
 
-/** One thread for one job at a time, started when needed. From source and from dist alike. */
-export function createJobThread(storageFolder: string): JobThread {
-  const fromSource = import.meta.url.endsWith('.ts');
-  const entry = new URL(`./job-thread.${fromSource ? 'ts' : 'js'}`, import.meta.url);
+const fromSource = import.meta.url.endsWith('.ts');
+const jobEntry = new URL(`./job-thread.${fromSource ? 'ts' : 'js'}`, import.meta.url);
+
+/**
+ * One thread for one job at a time, started when needed. From source and from dist alike.
+ * @param entry what the thread runs; only tests bring another one
+ */
+export function createJobThread(storageFolder: string, entry: URL = jobEntry): JobThread {
   const register = new URL('../ts-register.mjs', import.meta.url);
   let pool: Piscina<ThreadTask, ThreadOutcome> | undefined;
 
