@@ -97,8 +97,8 @@ export class Viewer {
       this.scene()?.dispose();
     });
     effect(() => this.scene()?.setSpace(this.space()));
-    effect(() => this.scene()?.setPieces(this.pieces(), this.seams()));
     effect(() => this.scene()?.setDimensions(this.hasDimensions()));
+    effect(() => this.scene()?.setPieces(this.pieces(), this.seams()));
     effect(() => this.scene()?.setSelected(this.selected()));
     effect(() => this.scene()?.setSpread(this.spread()));
     effect(() => this.scene()?.setView(this.view()));

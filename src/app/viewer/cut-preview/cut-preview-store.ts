@@ -10,9 +10,10 @@ import { ViewerModelsApi } from '../viewer-models-api';
 import { extentAlong, normalOf, type CutDirection, type Tilt } from './cut-direction';
 import { type CutHalves, type HalfSurface } from './cut-halves';
 import { HalvesMaker } from './halves-maker';
+import { sectionLines } from './section-lines';
 import { fitsUpright, usableSpace } from './upright-fit';
 
-const halfNames = { above: 'Upper half', below: 'Lower half' } as const;
+const halfNames = { above: 'High half', below: 'Low half' } as const;
 
 /** One half as it stands in the table. */
 export interface HalfRow {
@@ -84,11 +85,13 @@ export class CutPreviewStore {
     const halves = this.halfPieces();
     return halves.length > 0 ? halves : [whole];
   });
-  readonly seams = computed((): readonly SceneSeam[] =>
-    this.halfPieces().length === 2
-      ? [{ between: [halfNames.above, halfNames.below], positions: new Float32Array(0) }]
-      : [],
-  );
+  /** The cut's outline on both halves. */
+  readonly seams = computed((): readonly SceneSeam[] => {
+    const whole = this.whole();
+    if (!whole || this.halfPieces().length < 2) return [];
+    const positions = sectionLines(whole.surface, this.plane());
+    return [{ between: [halfNames.above, halfNames.below], positions }];
+  });
   readonly rows = computed((): readonly HalfRow[] => {
     const envelope = this.envelope();
     return this.halfPieces().map((piece) => {

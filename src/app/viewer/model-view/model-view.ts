@@ -2,59 +2,41 @@ import {
   ChangeDetectionStrategy,
   Component,
   computed,
+  effect,
   inject,
   input,
-  resource,
+  untracked,
 } from '@angular/core';
 import { MatProgressBar } from '@angular/material/progress-bar';
-import { sentenceFor } from '../../core/http/api-failure';
 import { writeCount, writeLengthMm } from '../../ui/format/quantities';
 import { Notice } from '../../ui/notice/notice';
 import { type Triple } from '../scene/view-parts';
-import { ViewFiles } from '../view-files';
 import { Viewer } from '../viewer';
-import { ViewerModelsApi } from '../viewer-models-api';
+import { ModelViewStore } from './model-view-store';
 import { wholeModel } from './scaled-parts';
 
-/** A model's picture with its size along its sides, and the same numbers in words beside it. */
+/** A model's picture with its size along its sides, and the same numbers in words below it. */
 @Component({
   selector: 'sw-model-view',
   imports: [MatProgressBar, Notice, Viewer],
+  providers: [ModelViewStore],
   templateUrl: './model-view.html',
   styleUrl: './model-view.scss',
   changeDetection: ChangeDetectionStrategy.OnPush,
 })
 export class ModelView {
-  private readonly files = inject(ViewFiles);
-  private readonly models = inject(ViewerModelsApi);
+  protected readonly store = inject(ModelViewStore);
 
   readonly modelId = input.required<string>();
   /** Size to draw it in, for pages that know it or let it be changed; left out, it is asked for. */
   readonly sizeMm = input<Triple | null>();
 
-  private readonly parts = resource({
-    params: () => this.modelId(),
-    loader: ({ params }) => this.files.modelView(params),
-  });
-  private readonly asked = resource({
-    params: () => (this.sizeMm() === undefined ? this.modelId() : undefined),
-    loader: async ({ params }) => (await this.models.model(params)).revision.sizeMm,
-  });
-
-  protected readonly isLoading = computed(() => this.parts.isLoading() || this.asked.isLoading());
-  protected readonly trouble = computed(() => {
-    const error = this.parts.error() ?? this.asked.error();
-    return error ? sentenceFor(error) : '';
-  });
-  private readonly size = computed(() => {
-    const given = this.sizeMm();
-    if (given !== undefined) return given;
-    return this.asked.hasValue() ? this.asked.value() : null;
-  });
+  private readonly asksSize = computed(() => this.sizeMm() === undefined);
+  private readonly size = computed(() => this.sizeMm() ?? this.store.sizeMm());
   protected readonly pieces = computed(() => {
     const size = this.size();
-    if (!size || !this.parts.hasValue()) return [];
-    const piece = wholeModel(this.parts.value(), size);
+    const parts = this.store.parts();
+    const piece = size && parts ? wholeModel(parts, size) : null;
     return piece ? [piece] : [];
   });
   protected readonly sides = computed(() => {
@@ -70,4 +52,12 @@ export class ModelView {
     const sides = this.sides().map((side) => `${side.axis} ${side.length}`);
     return `Picture of the model, ${sides.join(', ')}. The same numbers stand below it.`;
   });
+
+  constructor() {
+    effect(() => {
+      const id = this.modelId();
+      const asksSize = this.asksSize();
+      untracked(() => void this.store.open(id, asksSize));
+    });
+  }
 }

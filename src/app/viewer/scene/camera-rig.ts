@@ -7,8 +7,12 @@ const ORBIT_STEP_RADIANS = Math.PI / 18;
 const ZOOM_STEP = 1.2;
 /** Distance of the eye from what it looks at, in reaches; without effect on the picture's size. */
 const DISTANCE = 6;
-/** Share of the picture that a fitted object may fill; the rest is for balloons. */
-const FILL = { width: 0.72, height: 0.86 } as const;
+/** Share of the picture that a fitted object may fill; the rest is for balloons or dimensions. */
+const fills = {
+  usual: { width: 0.72, height: 0.86 },
+  wide: { width: 0.64, height: 0.68 },
+} as const;
+export type PictureMargin = keyof typeof fills;
 
 export type CameraMove = 'left' | 'right' | 'up' | 'down' | 'closer' | 'farther';
 
@@ -28,6 +32,7 @@ export class CameraRig {
   private widthPx = 1;
   private heightPx = 1;
   private reachMm = 1;
+  private fill: { readonly width: number; readonly height: number } = fills.usual;
 
   constructor(canvas: HTMLCanvasElement, onChange: () => void, onRest: () => void) {
     // OrbitControls reads the up direction once, when it is made.
@@ -52,6 +57,11 @@ export class CameraRig {
     this.camera.updateProjectionMatrix();
   }
 
+  /** How much room the next framing leaves round the object. */
+  setMargin(margin: PictureMargin): void {
+    this.fill = fills[margin];
+  }
+
   /** Tells the camera how far things reach, so that nothing is clipped and zoom has sane ends. */
   setReach(box: Box3): void {
     this.reachMm = Math.max(box.getSize(new Vector3()).length(), 1e-3);
@@ -65,7 +75,8 @@ export class CameraRig {
 
   /** Changes the zoom alone. */
   zoomTo(pixelsPerMm: number): void {
-    if (Number.isFinite(pixelsPerMm)) this.frame({ ...this.framing(), pixelsPerMm });
+    if (Number.isFinite(pixelsPerMm) && pixelsPerMm > 0)
+      this.frame({ ...this.framing(), pixelsPerMm });
   }
 
   /** Frames a fraction of the way from one framing to another. */
@@ -97,8 +108,8 @@ export class CameraRig {
       return high - low;
     });
     const pixelsPerMm = Math.min(
-      (this.widthPx * FILL.width) / Math.max(spans[0]!, 1e-6),
-      (this.heightPx * FILL.height) / Math.max(spans[1]!, 1e-6),
+      (this.widthPx * this.fill.width) / Math.max(spans[0]!, 1e-6),
+      (this.heightPx * this.fill.height) / Math.max(spans[1]!, 1e-6),
     );
     return { target, pixelsPerMm };
   }

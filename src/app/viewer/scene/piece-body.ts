@@ -3,16 +3,16 @@ import {
   BufferGeometry,
   FrontSide,
   Group,
-  LineBasicMaterial,
-  LineSegments,
   Mesh,
   MeshLambertMaterial,
   Vector3,
 } from 'three';
+import { LineSegments2 } from 'three/addons/lines/LineSegments2.js';
+import { LineSegmentsGeometry } from 'three/addons/lines/LineSegmentsGeometry.js';
+import { type LineMaterial } from 'three/addons/lines/LineMaterial.js';
 import { MeshBVH, acceleratedRaycast } from 'three-mesh-bvh';
 import { disposeTree } from './disposal';
 import { type Pose, identityPose, mixPoses } from './placement';
-import { type SceneTheme } from './scene-theme';
 import { shadeSurface } from './surface-shading';
 import { type ScenePiece, type SurfacePart } from './view-parts';
 
@@ -22,7 +22,8 @@ const OUTLINE_POINTS = 64;
 interface Prepared {
   readonly outlinePoints: readonly Vector3[];
   readonly surface: BufferGeometry;
-  readonly lines: BufferGeometry;
+  /** Null for a surface without any edge. */
+  readonly lines: LineSegmentsGeometry | null;
 }
 
 /** Surfaces come and go on the screen; what was computed for one is kept as long as the surface. */
@@ -38,8 +39,8 @@ function prepare(part: SurfacePart): Prepared {
   surface.computeBoundingBox();
   surface.computeBoundingSphere();
   surface.boundsTree = new MeshBVH(surface, { indirect: true });
-  const lines = new BufferGeometry();
-  lines.setAttribute('position', new BufferAttribute(shaded.featureEdges, 3));
+  const edges = shaded.featureEdges;
+  const lines = edges.length > 0 ? new LineSegmentsGeometry().setPositions(edges) : null;
   const made = { surface, lines, outlinePoints: extremePoints(part.positions) };
   prepared.set(part, made);
   return made;
@@ -74,7 +75,6 @@ export class PieceBody {
   /** In the assembled model. */
   readonly outlinePoints: readonly Vector3[];
   readonly mesh: Mesh<BufferGeometry, MeshLambertMaterial>;
-  private readonly edges: LineSegments<BufferGeometry, LineBasicMaterial>;
   private readonly pose: Pose;
   private from = identityPose();
   private to = identityPose();
@@ -82,6 +82,7 @@ export class PieceBody {
   constructor(
     readonly piece: ScenePiece,
     readonly colour: number,
+    edgeMaterial: LineMaterial,
   ) {
     const { surface, lines, outlinePoints } = prepare(piece.surface);
     this.outlinePoints = outlinePoints;
@@ -97,8 +98,8 @@ export class PieceBody {
     );
     this.mesh.raycast = acceleratedRaycast;
     this.mesh.name = piece.name;
-    this.edges = new LineSegments(lines, new LineBasicMaterial({ transparent: true }));
-    this.group.add(this.mesh, this.edges);
+    this.group.add(this.mesh);
+    if (lines) this.group.add(new LineSegments2(lines, edgeMaterial));
     this.pose = { position: this.group.position, rotation: this.group.quaternion };
   }
 
@@ -106,10 +107,8 @@ export class PieceBody {
     return this.group.visible;
   }
 
-  setColours(tint: string, theme: SceneTheme): void {
+  setColour(tint: string): void {
     this.mesh.material.color.set(tint);
-    this.edges.material.color.set(theme.isDark ? '#0b0e11' : theme.graphite);
-    this.edges.material.opacity = theme.isDark ? 0.75 : 0.55;
   }
 
   /** Starts a move to a pose from wherever the piece is now. */

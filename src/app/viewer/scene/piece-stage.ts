@@ -1,4 +1,5 @@
 import { Box3, Group, Vector3, type Mesh } from 'three';
+import { LineMaterial } from 'three/addons/lines/LineMaterial.js';
 import { type BuildSpace } from '../../../../shared/geometry/fitting/build-space.js';
 import { EnvelopeBox } from './envelope-box';
 import { assignColours } from './palette';
@@ -16,11 +17,19 @@ export type SceneView = 'whole' | 'bed';
 
 /** Share of the model's height between the model and the ground, so that faces do not fight. */
 const GROUND_GAP_SHARE = 2e-3;
+const EDGE_WIDTH_PX = 1.2;
+/** Edges stay darker than the pieces on a dark sheet too. */
+const darkEdges = '#0b0e11';
 
 /** What stands on the sheet and where: pieces, seams, envelope, ground. Knows no screen. */
 export class PieceStage {
   readonly root = new Group();
   private readonly ground = new PaperGround();
+  private readonly edgeMaterial = new LineMaterial({
+    linewidth: EDGE_WIDTH_PX,
+    transparent: true,
+    opacity: 0.6,
+  });
   private _bodies: PieceBody[] = [];
   private seams: SeamLines | null = null;
   private envelope: EnvelopeBox | null = null;
@@ -59,7 +68,9 @@ export class PieceStage {
     const names = pieces.map((piece) => piece.name);
     const meetings = seams.map((seam) => seam.between);
     const colours = assignColours(names, meetings);
-    this._bodies = pieces.map((piece) => new PieceBody(piece, colours.get(piece.name)!));
+    this._bodies = pieces.map(
+      (piece) => new PieceBody(piece, colours.get(piece.name)!, this.edgeMaterial),
+    );
     for (const body of this._bodies) {
       this.root.add(body.group);
       this.modelBox.union(body.mesh.geometry.boundingBox!);
@@ -154,6 +165,7 @@ export class PieceStage {
   }
 
   resize(widthPx: number, heightPx: number): void {
+    this.edgeMaterial.resolution.set(widthPx, heightPx);
     this.envelope?.resize(widthPx, heightPx);
     this.seams?.resize(widthPx, heightPx);
   }
@@ -170,6 +182,7 @@ export class PieceStage {
   dispose(): void {
     this.clear();
     this.envelope?.dispose();
+    this.edgeMaterial.dispose();
     this.ground.dispose();
   }
 
@@ -219,8 +232,9 @@ export class PieceStage {
     if (!theme) return;
     for (const body of this._bodies) {
       const tint = this.isOneBody ? bodyTint(theme.isDark) : pieceTint(body.colour, theme.isDark);
-      body.setColours(tint, theme);
+      body.setColour(tint);
     }
+    this.edgeMaterial.color.set(theme.isDark ? darkEdges : theme.graphite);
     this.seams?.setColour(theme.copper);
     this.envelope?.setColour(theme.ink);
     this.ground.setColour(theme.grid);

@@ -95,20 +95,27 @@ export class ViewerScene {
    * looking at a model whole and in halves keeps the view. One piece alone is drawn plain.
    */
   setPieces(pieces: readonly ScenePiece[], seams: readonly SceneSeam[] = []): void {
-    this.stage.setPieces(pieces, seams);
-    this.stage.resize(this.size.widthPx, this.size.heightPx);
-    this.balloons.setBodies(this.stage.bodies);
-    this.cutLayer.refresh();
+    this.keepCloseness(() => {
+      this.stage.setPieces(pieces, seams);
+      this.stage.resize(this.size.widthPx, this.size.heightPx);
+      this.balloons.setBodies(this.stage.bodies);
+      this.cutLayer.refresh();
+      this.place();
+    });
     const box = this.stage.assembledBox();
-    if (isSameBox(box, this.framedBox)) this.place();
-    else this.fit(false);
+    if (!isSameBox(box, this.framedBox)) this.fit(false);
     this.framedBox = box;
   }
 
-  /** @param fraction 0 assembled … 1 as far apart as it goes */
+  /**
+   * Moves the pieces apart; the camera draws back as far as they reach.
+   * @param fraction 0 assembled … 1 as far apart as it goes
+   */
   setSpread(fraction: number): void {
-    this.stage.setSpread(fraction);
-    this.place();
+    this.keepCloseness(() => {
+      this.stage.setSpread(fraction);
+      this.place();
+    });
   }
 
   setSelected(name: string | null): void {
@@ -142,6 +149,7 @@ export class ViewerScene {
   /** Whether the size of the whole is written along its sides. */
   setDimensions(hasDimensions: boolean): void {
     this.hasDimensions = hasDimensions;
+    this.rig.setMargin(hasDimensions ? 'wide' : 'usual');
     this.requestRender();
   }
 
@@ -154,18 +162,16 @@ export class ViewerScene {
   resize(widthPx: number, heightPx: number, pixelRatio: number): void {
     if (widthPx < 1 || heightPx < 1) return;
     const isFirst = this.size.widthPx === 0;
-    const points = this.stage.shownPoints();
-    // Kept relative to what fits, so that growing and shrinking back ends where it began.
-    const closeness = this.rig.pixelsPerMm / this.rig.framingOf(points).pixelsPerMm;
-    this.size.widthPx = widthPx;
-    this.size.heightPx = heightPx;
-    this.renderer.setPixelRatio(pixelRatio);
-    this.renderer.setSize(widthPx, heightPx, false);
-    this.outline.resize(widthPx, heightPx, pixelRatio);
-    this.stage.resize(widthPx, heightPx);
-    this.rig.resize(widthPx, heightPx);
+    this.keepCloseness(() => {
+      this.size.widthPx = widthPx;
+      this.size.heightPx = heightPx;
+      this.renderer.setPixelRatio(pixelRatio);
+      this.renderer.setSize(widthPx, heightPx, false);
+      this.outline.resize(widthPx, heightPx, pixelRatio);
+      this.stage.resize(widthPx, heightPx);
+      this.rig.resize(widthPx, heightPx);
+    });
     if (isFirst) this.fit(false);
-    else this.rig.zoomTo(closeness * this.rig.framingOf(points).pixelsPerMm);
     this.settle();
   }
 
@@ -224,6 +230,17 @@ export class ViewerScene {
     this.renderer.dispose();
     // Browsers keep about sixteen contexts and take the oldest away; give this one back now.
     this.renderer.forceContextLoss();
+  }
+
+  /**
+   * Makes a change and zooms so that the picture is as full as before; measured against what fits,
+   * so that going there and back ends where it began.
+   */
+  private keepCloseness(change: () => void): void {
+    const fitting = () => this.rig.framingOf(this.stage.shownPoints()).pixelsPerMm;
+    const closeness = this.rig.pixelsPerMm / fitting();
+    change();
+    this.rig.zoomTo(closeness * fitting());
   }
 
   /** Puts everything where it belongs at once, without moving the camera. */
