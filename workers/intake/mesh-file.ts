@@ -59,7 +59,7 @@ export function decodeMesh(bytes: Uint8Array): TriangleMesh {
   const stored = single
     ? new Float32Array(buffer, at, 3 * vertices)
     : new Float64Array(buffer, at, 3 * vertices);
-  const positions = Float64Array.from(stored);
+  const positions = new Float64Array(stored);
   for (let i = 0; i < positions.length; i++)
     if (!Number.isFinite(positions[i]))
       throw new Error('A stored mesh holds a coordinate that is not finite.');

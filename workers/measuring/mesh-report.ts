@@ -47,7 +47,7 @@ export function inspectMesh(
 ): Inspection {
   const { reading, fileName, fileBytes } = file;
   const startMs = performance.now();
-  const welding = portionOf(context, 0, 0.55);
+  const welding = portionOf(context, 0, 0.5);
   const { mesh, degenerateDropped } = weldTriangles(reading.soup, (fraction) =>
     welding.progress('Welding', fraction),
   );
@@ -65,7 +65,7 @@ export function inspectMesh(
       `holds a model whose longest side is ${shortNumber(longest)}: smaller than dust in any unit. It was scaled wrongly or is damaged.`,
     );
 
-  const checking = portionOf(context, 0.55, 1);
+  const checking = portionOf(context, 0.5, 1);
   checking.progress('Checking', 0);
   const edges = edgeReport(mesh);
   checking.progress('Checking', 0.4);

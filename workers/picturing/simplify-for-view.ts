@@ -21,7 +21,7 @@ export const fewestTriangles = 200;
  * nothing locked; a mesh that stays over the budget even so is clustered on a grid, which may open it.
  */
 export async function simplifyForView(mesh: TriangleMesh, triangles: number): Promise<ViewMesh> {
-  const positions = Float32Array.from(mesh.positions);
+  const positions = new Float32Array(mesh.positions);
   if (mesh.indices.length / 3 <= triangles) return { positions, indices: mesh.indices };
   await MeshoptSimplifier.ready;
   const wanted = 3 * Math.max(triangles, 1);
