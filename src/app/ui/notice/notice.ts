@@ -38,7 +38,7 @@ const looks: Record<NoticeKind, { icon: string; word: string }> = {
       color: var(--sw-passed);
     }
     :host([data-kind='caution']) {
-      border-color: var(--mat-sys-tertiary);
+      border-color: var(--sw-seam);
     }
     :host([data-kind='caution']) mat-icon {
       color: var(--mat-sys-tertiary);
