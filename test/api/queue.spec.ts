@@ -164,8 +164,8 @@ describe('the worker process', () => {
   });
 
   it('shares many jobs among workers without doing one twice', async () => {
-    const ids = await Promise.all(Array.from({ length: 24 }, () => addJob('small.stl')));
     const started = await Promise.all([start(), start(database.url, 2)]);
+    const ids = await Promise.all(Array.from({ length: 24 }, () => addJob('small.stl')));
     for (const id of ids)
       expect(await until(id, isEnded)).toMatchObject({ state: 'done', attempts: 1 });
     const begun = started.map((worker) => worker.log().split('job begun').length - 1);
