@@ -119,6 +119,7 @@ describe('the command line', () => {
     ['a margin without room', ['bar.stl', ...size, '--margin', '110'], /leaves no room/],
     ['too many pieces', ['bar.stl', '--envelope', '2x2x2'], /“bar.stl”.*pieces/],
     ['an occupied folder', ['bar.stl', ...size, '--out', 'occupied'], /holds other files/],
+    ['a folder below a file', ['bar.stl', ...size, '--out', 'nan.stl/x'], /lies below a file/],
     ['an unknown option', ['bar.stl', ...size, '--quick'], /“--quick” is not known/],
   ] as [string, string[], RegExp][])(
     'answers %s with exit code 2 and one sentence, and writes nothing',

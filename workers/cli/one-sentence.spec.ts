@@ -8,6 +8,9 @@ it('joins sentences, keeps what stands in quotation marks, and ends with a full 
   expect(oneSentence('It is empty')).toBe('It is empty.');
   expect(oneSentence('One\nline only!')).toBe('One line only!');
   expect(oneSentence('It holds 1.5 mm. STL files have no unit.')).toBe(
-    'It holds 1.5 mm. STL files have no unit.',
+    'It holds 1.5 mm; STL files have no unit.',
+  );
+  expect(oneSentence('4 edges are open. 24 facets repeat. A plan needs more.')).toBe(
+    '4 edges are open; 24 facets repeat; a plan needs more.',
   );
 });

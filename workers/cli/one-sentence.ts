@@ -5,9 +5,11 @@
  */
 export function oneSentence(message: string): string {
   const line = message.replace(/\p{Cc}+/gu, ' ').trim();
-  const joined = line.replace(
-    /“[^”]*”|[.!?]\s+(\p{Lu})(?=\p{Ll}|\s)/gu,
-    (found, letter: string | undefined) => (letter ? `; ${letter.toLowerCase()}` : found),
+  const joined = line.replace(/“[^”]*”|[.!?]\s+(?=[\p{Lu}\d“])/gu, (found) =>
+    found.startsWith('“') ? found : '; ',
   );
-  return /[.!?]$/.test(joined) ? joined : `${joined}.`;
+  const lowered = joined.replace(/“[^”]*”|; (\p{Lu})(?=\p{Ll}|\s)/gu, (found, letter?: string) =>
+    letter ? `; ${letter.toLowerCase()}` : found,
+  );
+  return /[.!?]$/.test(lowered) ? lowered : `${lowered}.`;
 }

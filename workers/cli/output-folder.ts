@@ -44,7 +44,12 @@ export async function openTemporaryFolder(): Promise<PieceFolder> {
  * result of ours. Throws a UsageError with a sentence (without its end) otherwise. Changes nothing.
  */
 export async function checkOutputFolder(folder: string): Promise<void> {
-  const found = await stat(folder).catch(absent);
+  const found = await stat(folder)
+    .catch(absent)
+    .catch((error: NodeJS.ErrnoException) => {
+      const why = error.code === 'ENOTDIR' ? 'lies below a file' : `cannot be used (${error.code})`;
+      throw new UsageError(`the output folder “${folder}” ${why}`);
+    });
   if (!found) return;
   if (!found.isDirectory()) throw new UsageError(`the output “${folder}” is not a folder`);
   const entries = (await readdir(folder)).filter((name) => !name.startsWith(STAGING_PREFIX));
@@ -57,7 +62,7 @@ export async function checkOutputFolder(folder: string): Promise<void> {
 /** Opens a checked folder; it is made when missing. Files are staged inside it until `keep`. */
 export async function openOutputFolder(folder: string): Promise<PieceFolder> {
   await checkOutputFolder(folder);
-  const firstMade = await mkdir(folder, { recursive: true });
+  const firstMade = await makeFolder(resolve(folder));
   // A run that was killed may have left its staging behind.
   for (const name of await readdir(folder))
     if (name.startsWith(STAGING_PREFIX)) await rm(join(folder, name), { recursive: true });
@@ -77,6 +82,24 @@ export async function openOutputFolder(folder: string): Promise<PieceFolder> {
       if (!isKept && firstMade !== undefined) await removeEmpty(folder, firstMade);
     },
   };
+}
+
+/**
+ * Makes a folder and what is missing above it; the outermost that was made, or undefined. Node's own
+ * recursive mkdir never ends where a parent exists but takes no entries (/proc).
+ */
+async function makeFolder(folder: string): Promise<string | undefined> {
+  try {
+    await mkdir(folder);
+    return folder;
+  } catch (error) {
+    const { code } = error as NodeJS.ErrnoException;
+    if (code === 'EEXIST') return undefined;
+    if (code !== 'ENOENT' || (await stat(dirname(folder)).catch(absent))) throw error;
+    const outermost = await makeFolder(dirname(folder));
+    await mkdir(folder);
+    return outermost;
+  }
 }
 
 /** Removes the folders we made, from the inner to the outer, as far as nobody else uses them. */

@@ -128,7 +128,8 @@ function inspect(
 
 /** A refusal that begins with the file's name. */
 function namedRefusal(fileName: string, message: string): string {
-  return message.includes(fileName) ? message : `“${fileName}” cannot be planned: ${message}`;
+  if (message.includes(fileName)) return message;
+  return `“${fileName}” cannot be planned: ${message[0].toLowerCase()}${message.slice(1)}`;
 }
 
 function scaled(size: readonly [number, number, number], factor: number): [number, number, number] {
@@ -150,6 +151,7 @@ function createLazyFolder(open: () => Promise<PieceFolder>): PieceFolder {
       read: async (name) => (await opened()).files.read(name),
     },
     keep: async () => (await opened()).keep(),
-    discard: async () => (await opening)?.discard(),
+    // A folder that could not be opened has said so already, and has left nothing.
+    discard: async () => (await opening?.catch(() => undefined))?.discard(),
   };
 }
