@@ -1,3 +1,4 @@
+import { roleNames } from '../shared/api/roles.js';
 import { readConfig } from './platform/config/config.js';
 import { driverCodeOf } from './platform/db/driver-errors.js';
 import { createLogger } from './platform/logging/logger.js';
@@ -27,7 +28,8 @@ async function main(): Promise<void> {
   endWithSignals(starting);
   const { address, hasDemo } = await starting;
   logger.info({ address }, 'listening');
-  process.send?.({ kind: 'ready', address, demoAccounts: hasDemo ? demoAccounts : [] });
+  const accounts = demoAccounts.map((account) => ({ ...account, role: roleNames[account.role] }));
+  process.send?.({ kind: 'ready', address, demoAccounts: hasDemo ? accounts : [] });
 }
 
 /** Ctrl-C, SIGTERM, or the end of the program that started us; also while still starting. */

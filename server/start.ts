@@ -37,10 +37,14 @@ export async function startServer(
   logger: Logger,
   report: ReportStep,
 ): Promise<RunningServer> {
-  const step = async <T>(what: (result: T) => string, work: () => Promise<T>): Promise<T> => {
+  const step = async <T>(
+    what: (result: T) => string | null,
+    work: () => Promise<T>,
+  ): Promise<T> => {
     const started = performance.now();
     const result = await work();
-    report(what(result), performance.now() - started);
+    const done = what(result);
+    if (done) report(done, performance.now() - started);
     return result;
   };
   const secret = await readOrMakeSecret(config.secretFile);
@@ -64,7 +68,7 @@ export async function startServer(
     });
     if (config.seedsDemo)
       await step(
-        (wasEmpty: boolean) => (wasEmpty ? 'Demo workshop made' : 'Demo workshop not needed'),
+        (wasEmpty: boolean) => (wasEmpty ? 'Demo workshop made' : null),
         () => seedDemo({ transact: product.transact, storage, clock, createId }),
       );
     const app = createApp({

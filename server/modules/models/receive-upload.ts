@@ -63,7 +63,12 @@ export function createUploadReceiver(options: {
 function translate(error: unknown, tooLarge: () => ApiError): unknown {
   if (error instanceof MulterError) return error.code === 'LIMIT_FILE_SIZE' ? tooLarge() : error;
   const message = error instanceof Error ? error.message : '';
-  // Texts of busboy and multer for a form that is broken or broken off; they carry no code.
+  // Texts of busboy and multer for a form that is broken or broken off; they carry no code. A
+  // control character in the file's name makes the header of its part unreadable.
+  if (message === 'Malformed part header')
+    return createRequestInvalid(
+      'The file’s name cannot be read. Rename it without control characters and try again.',
+    );
   if (/^(Multipart|Malformed|Unexpected end of form|Request (aborted|closed))/.test(message))
     return createRequestInvalid('The upload was broken off or its form is not valid.');
   return error;
