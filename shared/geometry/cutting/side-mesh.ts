@@ -16,57 +16,71 @@ export interface CutParts {
 const corners = new Int32Array(4);
 
 /**
- * Collects one side of a cut: its own triangles in their order, the parts of crossing triangles in
- * the place of the whole ones, then the cap. Vertices keep their order; those of the section
+ * Collects one side of a cut: its own triangles in their order, then those that touch the plane,
+ * the parts of crossing triangles, and the cap. Vertices keep their order; those of the section
  * follow in order of use. O(vertices + triangles).
  */
 export function collectSide(parts: CutParts, side: typeof ABOVE | typeof BELOW): TriangleMesh {
   const { mesh, sides, nodes, cap, capTag } = parts;
-  const { indices, tags } = mesh;
-  const codes = sides.triangles;
   const own = numberOwnVertices(sides.vertices, side);
-  const { numberOf } = own;
   const section = new SectionNumbers(nodes, own.count);
   const triangles = countTriangles(parts, side) + cap.length / 3;
-  const newIndices = new Uint32Array(3 * triangles);
-  const newTags = new Int32Array(triangles);
-  const touching = side | ON;
-  let filled = 0;
-  let triangle = 0;
-  let crossing = 0;
-  for (let old = 0; old < codes.length; old++) {
-    const code = codes[old];
-    if (code === side) {
-      const at = 3 * old;
-      newIndices[filled] = numberOf[indices[at]];
-      newIndices[filled + 1] = numberOf[indices[at + 1]];
-      newIndices[filled + 2] = numberOf[indices[at + 2]];
-      filled += 3;
-      if (tags !== undefined) newTags[triangle] = tags[old];
-      triangle++;
-    } else if (code === touching || (code & (ABOVE | BELOW)) === (ABOVE | BELOW)) {
-      const isCrossing = code !== touching;
-      const found = findCorners(parts, old, side, isCrossing ? crossing : -1, own, section);
-      if (isCrossing) crossing++;
-      for (let corner = 2; corner < found; corner++) {
-        newIndices[filled++] = corners[0];
-        newIndices[filled++] = corners[corner - 1];
-        newIndices[filled++] = corners[corner];
-        if (tags !== undefined) newTags[triangle] = tags[old];
-        triangle++;
-      }
+  const indices = new Uint32Array(3 * triangles);
+  const tags = new Int32Array(triangles);
+  copyOwnTriangles(mesh.indices, sides.triangles, side, own.numberOf, indices);
+  if (mesh.tags !== undefined) copyOwnTags(mesh.tags, sides.triangles, side, tags);
+  let filled = 3 * sides.counts[side];
+  const append = (triangle: number, crossing: number) => {
+    const found = findCorners(parts, triangle, side, crossing, own, section);
+    for (let corner = 2; corner < found; corner++) {
+      if (mesh.tags !== undefined) tags[filled / 3] = mesh.tags[triangle];
+      indices[filled++] = corners[0];
+      indices[filled++] = corners[corner - 1];
+      indices[filled++] = corners[corner];
     }
+  };
+  const touching = side | ON;
+  for (let triangle = 0, left = sides.counts[touching]; left > 0; triangle++) {
+    if (sides.triangles[triangle] !== touching) continue;
+    append(triangle, -1);
+    left--;
   }
-  newTags.fill(capTag, triangle);
+  for (let k = 0; k < nodes.crossing.length; k++) append(nodes.crossing[k], k);
+  tags.fill(capTag, filled / 3);
   for (let i = 0; i < cap.length; i += 3) {
-    newIndices[filled++] = section.numberOf(cap[i]);
-    newIndices[filled++] = section.numberOf(cap[side === BELOW ? i + 1 : i + 2]);
-    newIndices[filled++] = section.numberOf(cap[side === BELOW ? i + 2 : i + 1]);
+    indices[filled++] = section.numberOf(cap[i]);
+    indices[filled++] = section.numberOf(cap[side === BELOW ? i + 1 : i + 2]);
+    indices[filled++] = section.numberOf(cap[side === BELOW ? i + 2 : i + 1]);
   }
   const positions = new Float64Array(3 * section.end);
   copyOwnPositions(mesh.positions, sides.vertices, side, positions);
   section.copyPositions(positions);
-  return { positions, indices: newIndices, tags: newTags };
+  return { positions, indices, tags };
+}
+
+/** The loop that sees every triangle, kept by itself: with more in it, it ran four times slower. */
+function copyOwnTriangles(
+  from: Uint32Array,
+  codes: Uint8Array,
+  side: number,
+  numberOf: Int32Array,
+  to: Uint32Array,
+): void {
+  let filled = 0;
+  for (let triangle = 0, at = 0; triangle < codes.length; triangle++, at += 3) {
+    if (codes[triangle] !== side) continue;
+    to[filled] = numberOf[from[at]];
+    to[filled + 1] = numberOf[from[at + 1]];
+    to[filled + 2] = numberOf[from[at + 2]];
+    filled += 3;
+  }
+}
+
+function copyOwnTags(from: Int32Array, codes: Uint8Array, side: number, to: Int32Array): void {
+  let filled = 0;
+  for (let triangle = 0; triangle < codes.length; triangle++) {
+    if (codes[triangle] === side) to[filled++] = from[triangle];
+  }
 }
 
 interface OwnVertices {
