@@ -6,10 +6,13 @@ import { planModel } from './cli/plan-model.js';
 import { showProgress } from './cli/show-progress.js';
 import { showTables } from './cli/show-table.js';
 import { UsageError } from './cli/usage-error.js';
+import { isAbortError } from './runtime/cancellation.js';
 import { JobRefusal } from './runtime/job-refusal.js';
 
 const PROOF_FAILED = 1;
 const NOTHING_MADE = 2;
+/** 128 + SIGINT, as shells have it. */
+const INTERRUPTED = 130;
 
 /** Runs the command line: one result on standard output, or one sentence on standard error. */
 async function run(words: readonly string[]): Promise<number> {
@@ -40,6 +43,10 @@ async function run(words: readonly string[]): Promise<number> {
     return PROOF_FAILED;
   } catch (error) {
     progress.clear();
+    if (isAbortError(error)) {
+      process.stderr.write('Stopped; nothing was kept.\n');
+      return INTERRUPTED;
+    }
     process.stderr.write(sentenceFor(error, words) + '\n');
     return NOTHING_MADE;
   }

@@ -8,6 +8,7 @@ import { type Inspection, inspectMesh } from '../measuring/mesh-report.js';
 import { type JobContext, portionOf } from '../runtime/job-context.js';
 import { JobRefusal } from '../runtime/job-refusal.js';
 import { loadSolids } from '../solids/solid-kernel.js';
+import { type Interruption, listenForInterruption } from './interruption.js';
 import {
   checkOutputFolder,
   openOutputFolder,
@@ -141,17 +142,28 @@ function isFileSystemError(error: unknown): error is NodeJS.ErrnoException {
   return error instanceof Error && 'syscall' in error && 'code' in error;
 }
 
-/** A folder that is opened when the first file is written: a refusal then leaves the disk alone. */
+/**
+ * A folder that is opened when the first file is written: a refusal then leaves the disk alone. From
+ * then on an interruption ends the writing in an error instead of the process.
+ */
 function createLazyFolder(open: () => Promise<PieceFolder>): PieceFolder {
   let opening: Promise<PieceFolder> | undefined;
-  const opened = () => (opening ??= open());
+  let interruption: Interruption | undefined;
+  const opened = () => {
+    interruption ??= listenForInterruption();
+    interruption.throwIfAsked();
+    return (opening ??= open());
+  };
   return {
     files: {
       write: async (name, bytes) => (await opened()).files.write(name, bytes),
       read: async (name) => (await opened()).files.read(name),
     },
     keep: async () => (await opened()).keep(),
-    // A folder that could not be opened has said so already, and has left nothing.
-    discard: async () => (await opening?.catch(() => undefined))?.discard(),
+    discard: async () => {
+      // A folder that could not be opened has said so already, and has left nothing.
+      await (await opening?.catch(() => undefined))?.discard();
+      interruption?.stopListening();
+    },
   };
 }
