@@ -73,6 +73,7 @@ export class PartsList {
   }
 
   private button(name: string): HTMLButtonElement | null {
-    return this.host.querySelector(`button[data-piece="${CSS.escape(name)}"]`);
+    const buttons = this.host.querySelectorAll<HTMLButtonElement>('button[data-piece]');
+    return [...buttons].find((button) => button.dataset['piece'] === name) ?? null;
   }
 }

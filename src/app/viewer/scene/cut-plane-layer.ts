@@ -28,11 +28,13 @@ export interface CutPlane {
 
 /** Room between the model and the rim of the drawn plane, as a share of the model's diagonal. */
 const RIM_SHARE = 0.58;
-const SIDE_COLOURS = [0, 1] as const;
+/** Palette numbers; the same as those of the two halves when they are pieces. */
+const ABOVE_COLOUR = 0;
+const BELOW_COLOUR = 1;
 
 /**
- * A plane through the model while it is being moved: both sides in their own tint, the inside of
- * what is cut in the colour of seams. Only clipped on the screen; nothing is cut yet.
+ * A plane through the model while it is being moved: the part below in full, the part above as
+ * a veil, the section in the colour of seams. Only clipped on the screen; nothing is cut yet.
  */
 export class CutPlaneLayer {
   readonly root = new Group();
@@ -46,16 +48,19 @@ export class CutPlaneLayer {
     }),
   );
   private readonly rim = new LineLoop(squareRim(), new LineBasicMaterial());
-  private readonly inside = new MeshBasicMaterial({ side: BackSide });
   private readonly above = new Plane();
   private readonly below = new Plane();
-  private readonly sides = [this.above, this.below].map(
-    (plane) => new MeshLambertMaterial({ clippingPlanes: [plane] }),
-  );
-  private readonly sections = [this.above, this.below].map((plane) => {
-    const section = this.inside.clone();
-    section.clippingPlanes = [plane];
-    return section;
+  // What is above is a veil, so that the section below it can be seen.
+  private readonly veil = new MeshLambertMaterial({
+    clippingPlanes: [this.above],
+    transparent: true,
+    opacity: 0.3,
+    depthWrite: false,
+  });
+  private readonly solid = new MeshLambertMaterial({ clippingPlanes: [this.below] });
+  private readonly section = new MeshBasicMaterial({
+    clippingPlanes: [this.below],
+    side: BackSide,
   });
   private readonly copies = new Group();
   private plane: CutPlane | null = null;
@@ -83,14 +88,15 @@ export class CutPlaneLayer {
     this.above.set(normal, -plane.offsetMm);
     this.below.set(normal.clone().negate(), plane.offsetMm);
     for (const body of this.stage.bodies)
-      for (const material of [...this.sides, ...this.sections])
+      for (const material of [this.section, this.solid, this.veil])
         this.copies.add(new Mesh(body.mesh.geometry, material));
     this.placeSheet(this.stage.shownBox(), normal, plane.offsetMm);
   }
 
   setTheme(theme: SceneTheme): void {
-    this.sides.forEach((side, at) => side.color.set(pieceTint(SIDE_COLOURS[at]!, theme.isDark)));
-    for (const section of this.sections) section.color.set(theme.copper);
+    this.veil.color.set(pieceTint(ABOVE_COLOUR, theme.isDark));
+    this.solid.color.set(pieceTint(BELOW_COLOUR, theme.isDark));
+    this.section.color.set(theme.copper);
     this.sheet.material.color.set(theme.copper);
     this.rim.material.color.set(theme.copper);
   }
@@ -98,7 +104,7 @@ export class CutPlaneLayer {
   dispose(): void {
     // The copies' geometries belong to the bodies on the stage.
     this.copies.clear();
-    for (const material of [...this.sides, ...this.sections, this.inside]) material.dispose();
+    for (const material of [this.section, this.solid, this.veil]) material.dispose();
     disposeTree(this.root);
   }
 

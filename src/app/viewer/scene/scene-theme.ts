@@ -13,7 +13,7 @@ export interface SceneTheme {
 }
 
 /** White mixed into tints on a light sheet, slate on a dark one. */
-const tintGround = { light: '#ffffff', dark: '#4a535c' } as const;
+const tintGround = { light: '#ffffff', dark: '#58626c' } as const;
 const tintShare = { light: 0.42, dark: 0.5 } as const;
 
 /** The tint of a palette number on this sheet. */
