@@ -1,5 +1,6 @@
 import { DOCUMENT, Injectable, computed, effect, inject, signal } from '@angular/core';
-import { Subject, type Subscription } from 'rxjs';
+import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
+import { Subject, fromEvent, type Subscription } from 'rxjs';
 import { type ModelResponse } from '../../../shared/api/models.contract.js';
 import { SessionStore } from '../core/auth/session-store';
 import { sentenceFor } from '../core/http/api-failure';
@@ -38,10 +39,13 @@ export class UploadQueue {
     effect(() => {
       if (!this.sessions.isSignedIn()) this.clear();
     });
-    inject(DOCUMENT).defaultView?.addEventListener('beforeunload', (event) => {
-      // The browser asks in its own words whether to leave.
-      if (this.isBusy()) event.preventDefault();
-    });
+    const view = inject(DOCUMENT).defaultView ?? window;
+    fromEvent(view, 'beforeunload')
+      .pipe(takeUntilDestroyed())
+      .subscribe((event) => {
+        // The browser asks in its own words whether to leave.
+        if (this.isBusy()) event.preventDefault();
+      });
   }
 
   add(files: readonly File[]): void {

@@ -10,7 +10,7 @@ import {
   viewChild,
   type ElementRef,
 } from '@angular/core';
-import { FormControl, ReactiveFormsModule, Validators } from '@angular/forms';
+import { NonNullableFormBuilder, ReactiveFormsModule, Validators } from '@angular/forms';
 import { MatButton, MatIconButton } from '@angular/material/button';
 import { MatError, MatFormField, MatLabel } from '@angular/material/form-field';
 import { MatIcon } from '@angular/material/icon';
@@ -44,10 +44,10 @@ export class RenameField {
   private readonly pen = viewChild('pen', { read: MatIconButton });
 
   protected readonly isOpen = signal(false);
-  protected readonly control = new FormControl('', {
-    nonNullable: true,
-    validators: [Validators.required, Validators.maxLength(120), Validators.pattern(/\S/)],
+  protected readonly form = inject(NonNullableFormBuilder).group({
+    name: ['', [Validators.required, Validators.maxLength(120), Validators.pattern(/\S/)]],
   });
+  protected readonly control = this.form.controls.name;
 
   protected open(): void {
     this.control.setValue(this.name());
