@@ -31,21 +31,23 @@ export function createJobSettler<R extends { jobs: JobsRepository }>(deps: {
 }) {
   const { transact, settlements, logger } = deps;
 
-  async function settle(id: string): Promise<void> {
-    const orphan = await transact(async (repos) => {
+  /** Whether it was settled here; false when another server was first. */
+  async function settle(id: string): Promise<boolean> {
+    const settled = await transact(async (repos) => {
       const job = await repos.jobs.lockUnsettled(id);
       if (!job) return null;
       const outcome = await settlements[job.kind](job, repos);
       if (outcome === 'orphaned') await repos.jobs.remove(id);
       else await repos.jobs.markSettled(id);
-      return outcome === 'orphaned' ? job : null;
+      return { job, outcome };
     });
-    if (orphan) await deps.removeFilesOf(orphan);
+    if (settled?.outcome === 'orphaned') await deps.removeFilesOf(settled.job);
+    return settled !== null;
   }
 
-  async function settleOrFail(id: string): Promise<void> {
+  async function settleOrFail(id: string): Promise<boolean> {
     try {
-      await settle(id);
+      return await settle(id);
     } catch (error) {
       // The database is away or busy: the next look tries again.
       if (isPassing(error)) throw error;
@@ -55,15 +57,16 @@ export function createJobSettler<R extends { jobs: JobsRepository }>(deps: {
         code: 'failed',
         message: 'The result of this job could not be stored. Please start it again.',
       });
+      return true;
     }
   }
 
   return {
-    /** Settles what is final. @returns how many jobs it looked at */
+    /** Settles what is final. @returns how many jobs were settled here */
     async settleAll(): Promise<number> {
-      const ids = await deps.jobs.listUnsettled(AT_ONCE);
-      for (const id of ids) await settleOrFail(id);
-      return ids.length;
+      let count = 0;
+      for (const id of await deps.jobs.listUnsettled(AT_ONCE)) if (await settleOrFail(id)) count++;
+      return count;
     },
   };
 }
