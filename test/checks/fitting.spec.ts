@@ -6,7 +6,7 @@ import { FIT_TOLERANCE_MM, layOnBed } from '../../shared/geometry/fitting/lay-on
 import { cubeDirections } from '../../shared/geometry/fitting/candidate-downs.js';
 import { fitInRectangle } from '../../shared/geometry/fitting/rectangle-fit.js';
 import { spaceDiagonal } from '../../shared/geometry/fitting/space-measures.js';
-import { seededRandom } from '../support/planning-random.js';
+import { seededRandom } from '../support/random.js';
 
 /**
  * Whether a p×q rectangle (p ≥ q) fits in an a×b one (a ≥ b). Source: W. B. Carver, Amer. Math.

@@ -1,4 +1,4 @@
-import { type Body } from '../../shared/geometry/cutting/apply-tree.js';
+import { type Body, type PlaneTree } from '../../shared/geometry/cutting/apply-tree.js';
 import { type PolygonTriangulator } from '../../shared/geometry/cutting/cut-mesh.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { gridCell, spaceInWords } from '../../shared/geometry/fitting/space-measures.js';
@@ -10,7 +10,7 @@ import { JobRefusal } from '../runtime/job-refusal.js';
 import { explainTree } from './cut-reasons.js';
 import { bestExactGrid, gridTree } from './exact-grids.js';
 import { cutExactly, type ExactCutting, type ExactPlan, planeTreeOf } from './exact-plan.js';
-import { lowerBound, type PieceBound } from './lower-bound.js';
+import { lowerBound } from './lower-bound.js';
 import { estimatePieces } from './piece-estimate.js';
 import { type PlanNode } from './plan-node.js';
 import { repairPlan } from './repair-plan.js';
@@ -28,6 +28,8 @@ export interface PlanInput {
   /** How far an exact cut may move from where it is wanted, mm. */
   toleranceMm: number;
   context: JobContext;
+  /** Share of the usual work that the search may do; less is faster and may find more pieces. */
+  effort?: number;
 }
 
 export interface PlanChoice {
@@ -50,81 +52,88 @@ export interface PlanChoice {
  * would be needed, the context's AbortError when cancelled.
  */
 export function choosePlan(input: PlanInput): PlanChoice {
-  const { mesh, space, seed, triangulate, toleranceMm, context } = input;
+  const { mesh, space, seed, toleranceMm, context } = input;
   const startMs = performance.now();
-  const report = (stage: string, fraction: number) => {
-    context.throwIfCancelled();
-    context.progress(stage, fraction);
-  };
-  const cutting = (from: number, to: number): ExactCutting => ({
+  const report = steadyReport(context);
+  const cutting = (from: number, to: number, tolerance = toleranceMm): ExactCutting => ({
     mesh,
     space,
-    triangulate,
-    toleranceMm,
+    triangulate: input.triangulate,
+    toleranceMm: tolerance,
     onStep: (part) => report('Cutting the exact model', from + (to - from) * part),
   });
   report('Looking at the model', 0);
   const uncut = cutExactly({ kind: 'leaf' }, cutting(0, 0.03));
   const bound = lowerBound(splitIntoSolids(mesh), space);
   if (uncut.over.length === 0) {
+    const pieces = uncut.bodies.length;
+    const reason = uncutWords(pieces, space);
     const searchMs = performance.now() - startMs;
-    return chosen(uncut, onePieceWords(bound, uncut.bodies.length, space), uncut.bodies.length);
-    function chosen(plan: ExactPlan, reason: string, gridPieces: number): PlanChoice {
-      return {
-        tree: { kind: 'leaf' },
-        bodies: plan.bodies,
-        bounds: { pieces: bound.pieces, reason, gridPieces },
-        searchMs,
-        cutMs: 0,
-      };
-    }
+    const bounds = { pieces, reason, gridPieces: pieces };
+    return { tree: { kind: 'leaf' }, bodies: uncut.bodies, bounds, searchMs, cutMs: 0 };
   }
   refuseOver(Math.max(bound.pieces, estimatePieces(mesh, space)), space);
-  report('Searching for cuts', 0.05);
-  const found = searchPlans(mesh, space, seed, toleranceMm, (part) =>
-    report('Searching for cuts', 0.05 + 0.5 * part),
-  );
+  const found = searchPlans({
+    mesh,
+    space,
+    seed,
+    toleranceMm,
+    leastPieces: bound.pieces,
+    effort: input.effort ?? 1,
+    onProgress: (part) => report('Searching for cuts', 0.05 + 0.5 * part),
+  });
   refuseOver(found.plans[0].pieces, space);
   const searchedMs = performance.now();
-  const searchOptions = { ...found.options, onStep: () => context.throwIfCancelled() };
-  const mend = (plan: ExactPlan, from: number, to: number) =>
-    repairPlan(plan, cutting(from, to), searchOptions);
+  const options = { ...found.options, onStep: () => context.throwIfCancelled() };
   let best: ExactPlan | null = null;
-  const byPieces = uniqueByPieces(found.plans);
-  for (const plan of byPieces) {
-    if (best && plan.pieces >= best.bodies.length) break;
-    const exact = mend(cutExactly(planeTreeOf(plan), cutting(0.55, 0.75)), 0.7, 0.75);
+  const consider = (tree: PlaneTree, cuttingWith: ExactCutting): void => {
+    const exact = repairPlan(cutExactly(tree, cuttingWith), cuttingWith, options);
     if (exact && (!best || exact.bodies.length < best.bodies.length)) best = exact;
+  };
+  const isWorse = (pieces: number) => best !== null && pieces >= best.bodies.length;
+  for (const plan of byRisingPieces(found.plans)) {
+    if (isWorse(plan.pieces)) break;
+    consider(planeTreeOf(plan), cutting(0.55, 0.75));
   }
-  report('Comparing with axis grids', 0.75);
   const grid = bestExactGrid(mesh, gridCell(space), toleranceMm, () =>
     report('Comparing with axis grids', 0.8),
   );
-  if (!best || grid.pieces < best.bodies.length) {
-    const exact = mend(cutExactly(gridTree(grid.grid), cutting(0.85, 0.95)), 0.9, 0.95);
-    if (exact && (!best || exact.bodies.length < best.bodies.length)) best = exact;
+  // Cells of exactly the space's size leave no room to place a cut: without it they still fit.
+  for (const tolerance of [toleranceMm, 0]) {
+    if (!isWorse(grid.pieces)) consider(gridTree(grid.grid), cutting(0.85, 0.95, tolerance));
   }
   if (!best) throw new Error('No plan could be made to fit.');
-  refuseOver(best.bodies.length, space);
+  const { tree, bodies, offsets }: ExactPlan = best;
+  refuseOver(bodies.length, space);
   report('Cutting the exact model', 1);
   return {
-    tree: explainTree(best.tree, best.bodies, best.offsets, space),
-    bodies: best.bodies,
+    tree: explainTree(tree, bodies, offsets, space),
+    bodies,
     bounds: { pieces: bound.pieces, reason: bound.reason, gridPieces: grid.pieces },
     searchMs: searchedMs - startMs,
     cutMs: performance.now() - searchedMs,
   };
 }
 
-/** Plans of ever fewer pieces on the proxy come first; of equal ones the first counts. */
-function uniqueByPieces(plans: readonly PlanNode[]): PlanNode[] {
+/** Progress that never falls, and a look at the cancel flag with every report. */
+function steadyReport(context: JobContext): (stage: string, fraction: number) => void {
+  let reached = 0;
+  return (stage, fraction) => {
+    context.throwIfCancelled();
+    reached = Math.max(reached, fraction);
+    context.progress(stage, reached);
+  };
+}
+
+/** The first plan of every piece count; plans come best first. */
+function byRisingPieces(plans: readonly PlanNode[]): PlanNode[] {
   return plans.filter((plan, k) => k === 0 || plan.pieces > plans[k - 1].pieces);
 }
 
-function onePieceWords(bound: PieceBound, bodies: number, space: BuildSpace): string {
+function uncutWords(bodies: number, space: BuildSpace): string {
   return bodies === 1
     ? `1 piece: the model fits ${spaceInWords(space)} whole and is not cut.`
-    : `${bound.pieces} pieces: the model's ${bodies} loose solids each fit ${spaceInWords(space)} and none is cut.`;
+    : `${bodies} pieces: the model's ${bodies} loose solids each fit ${spaceInWords(space)} and none is cut.`;
 }
 
 function refuseOver(pieces: number, space: BuildSpace): void {

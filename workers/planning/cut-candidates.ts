@@ -1,8 +1,14 @@
-import { surfaceArea } from '../../shared/geometry/mesh/measure.js';
 import { type Plane } from '../../shared/geometry/vectors/plane.js';
 import { type BodyNodes, bodyNodes } from './body-nodes.js';
+import { bodyFaces } from './body-faces.js';
 import { cellsInFrames, roomInFrames } from './fit-frames.js';
-import { type CutFigures, type CutWeights, expectedPieces, qualityCost } from './objectives.js';
+import {
+  type CutFigures,
+  type CutWeights,
+  expectedPieces,
+  qualityCost,
+  wasteCost,
+} from './objectives.js';
 import { type PlanBody, type PlanPart } from './plan-part.js';
 import { type SearchSpace } from './search-space.js';
 import { sweepDirections } from './sweep-directions.js';
@@ -18,12 +24,14 @@ export interface CutCandidate {
   /** Expected pieces plus quality, in pieces: lower is better. */
   readonly score: number;
   readonly quality: number;
+  /** Room given away by a fitting side, in pieces. */
+  readonly waste: number;
   /** How far the offset may be drawn back towards the fitting side's end, mm. */
   readonly stepMm: number;
 }
 
 /** Nodes on long edges lie this share of the space's smallest side apart. */
-const NODE_SPACING = 0.1;
+const NODE_SPACING = 0.14;
 /** Dividing cuts kept per direction. */
 const DIVIDING_CUTS = 3;
 
@@ -36,15 +44,17 @@ export function cutCandidates(
   random: () => number,
 ): CutCandidate[] {
   const fit = space.aimFrames;
-  const nodes = bodyNodes(body.mesh, fit, NODE_SPACING * Math.min(...space.cell));
-  const surfaceMm2 = surfaceArea(body.mesh);
+  const nodes = bodyNodes(body.mesh, body.outer, fit, NODE_SPACING * Math.min(...space.cell));
+  const faces = bodyFaces(body.mesh);
   const found: CutCandidate[] = [];
   for (const normal of sweepDirections(body.mesh, random)) {
     const [low, high] = rangeAlong(body.mesh.positions, normal);
     const offsets = sweepOffsets(low, high, space.cell);
     if (offsets.length === 0) continue;
-    const tables = sweepTables(body.mesh, nodes, fit, normal, offsets);
-    found.push(...judgeSweep(tables, { part, body, space, weights, nodes, surfaceMm2 }));
+    const tables = sweepTables({ low, high, normal, offsets }, nodes, faces, fit);
+    found.push(
+      ...judgeSweep(tables, { part, body, space, weights, nodes, surfaceMm2: faces.surfaceMm2 }),
+    );
   }
   return found.sort((a, b) => a.score - b.score);
 }
@@ -75,11 +85,13 @@ function judgeSweep(tables: SweepTables, judging: Judging): CutCandidate[] {
   );
   const candidateAt = (j: number, kind: CutKind): CutCandidate => {
     const quality = qualityCost(figures[j], judging.weights);
+    const waste = wasteCost(figures[j]);
     return {
       plane: { normal: tables.normal, offset: tables.offsets[j] },
       kind,
       quality,
-      score: expectedPieces(figures[j]) + quality,
+      waste,
+      score: expectedPieces(figures[j]) + waste + quality,
       stepMm: (tables.high - tables.low) / rows,
     };
   };
@@ -140,7 +152,7 @@ function figuresAt(
   const volumeBelowMm3 = Math.max(0, body.volumeMm3 - volumeAboveMm3);
   const [width, depth, height] = space.cell;
   const cells = (low: Float32Array, high: Float32Array, volume: number) =>
-    Math.max(1.9, volume / space.volumeMm3, cellsInFrames(fit, space.cell, low, high, at));
+    Math.max(2, volume / space.volumeMm3, cellsInFrames(fit, space.cell, low, high, at));
   let alsoCut = 0;
   for (const [low, high] of others) if (low < offset && offset < high) alsoCut++;
   return {
@@ -154,5 +166,7 @@ function figuresAt(
     thinMm: Math.min(offset - tables.low, tables.high - offset),
     volumeAboveMm3,
     volumeBelowMm3,
+    surfaceAboveMm2: tables.surfaceAboveMm2[j],
+    cells: body.cells,
   };
 }

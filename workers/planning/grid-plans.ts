@@ -1,9 +1,13 @@
+import { gridCell } from '../../shared/geometry/fitting/space-measures.js';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { wholeCells } from './fit-frames.js';
 import { cutOf, leafOf, type PlanNode } from './plan-node.js';
 import { fitsWhole, type PlanPart, splitPart } from './plan-part.js';
 import { type SearchSpace } from './search-space.js';
+
+/** Cells of full size are this much smaller than the space, so that placing cuts keeps them in. */
+const FULL_SPARE_MM = 0.06;
 
 /** Cut positions along x, y and z, mm, ascending. */
 export type GridOffsets = readonly [readonly number[], readonly number[], readonly number[]];
@@ -23,7 +27,8 @@ export function axisGrids(
     for (const isEven of [true, false]) {
       const along = (axis: number): number[] => {
         const parts = wholeCells(size[axis] / sides[axis]);
-        const step = isEven ? size[axis] / parts : sides[axis];
+        const full = sides[axis] - FULL_SPARE_MM;
+        const step = isEven || full * parts < size[axis] ? size[axis] / parts : full;
         return Array.from({ length: parts - 1 }, (_, n) => min[axis] + step * (n + 1));
       };
       const grid: GridOffsets = [along(0), along(1), along(2)];
@@ -80,7 +85,7 @@ export function gridPlans(part: PlanPart, space: SearchSpace): PlanNode[] {
   const max = edge('max', Math.max);
   const size: Vector3 = [max[0] - min[0], max[1] - min[1], max[2] - min[2]];
   const found: PlanNode[] = [];
-  for (const grid of axisGrids(min, size, space.cell)) {
+  for (const grid of axisGrids(min, size, gridCell(space.space))) {
     const plan = gridPlan(part, grid, space);
     if (plan) found.push(plan);
   }

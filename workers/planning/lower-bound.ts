@@ -7,7 +7,7 @@ import {
 } from '../../shared/geometry/fitting/space-measures.js';
 import { signedVolume } from '../../shared/geometry/mesh/measure.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
-import { pointsOnEdges, thinnedVertices } from './body-nodes.js';
+import { pointsOnEdges } from './body-nodes.js';
 
 export interface PieceBound {
   /** No plan whatever has fewer pieces. */
@@ -20,6 +20,8 @@ export interface PieceBound {
 const ROUNDING = 1e-9;
 /** Edge points lie this share of the diagonal apart. */
 const POINT_SPACING = 1 / 16;
+/** Vertices, and points on edges, looked at. */
+const MOST_POINTS = 3_000;
 
 /**
  * A proved lower bound on the number of pieces. A piece is one body, so it belongs to one solid of
@@ -71,7 +73,7 @@ export function lowerBound(solids: readonly TriangleMesh[], space: BuildSpace): 
 function farApart(mesh: TriangleMesh, distance: number): number {
   const points = Float64Array.from([
     ...thinnedVertices(mesh.positions),
-    ...pointsOnEdges(mesh, distance * POINT_SPACING),
+    ...pointsOnEdges(mesh, distance * POINT_SPACING, MOST_POINTS),
   ]);
   const count = points.length / 3;
   const keys = new Float64Array(count);
@@ -93,6 +95,20 @@ function farApart(mesh: TriangleMesh, distance: number): number {
     most = Math.max(most, pickApart(points, keys, distance));
   }
   return most;
+}
+
+function thinnedVertices(positions: Float64Array): Float64Array {
+  const vertices = positions.length / 3;
+  if (vertices <= MOST_POINTS) return positions;
+  const stride = vertices / MOST_POINTS;
+  const kept = new Float64Array(3 * MOST_POINTS);
+  for (let k = 0; k < MOST_POINTS; k++) {
+    const from = 3 * Math.floor(k * stride);
+    kept[3 * k] = positions[from];
+    kept[3 * k + 1] = positions[from + 1];
+    kept[3 * k + 2] = positions[from + 2];
+  }
+  return kept;
 }
 
 function pickApart(points: Float64Array, keys: Float64Array, distance: number): number {

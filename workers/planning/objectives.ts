@@ -21,10 +21,30 @@ export interface CutFigures {
   readonly thinMm: number;
   readonly volumeAboveMm3: number;
   readonly volumeBelowMm3: number;
+  readonly surfaceAboveMm2: number;
+  /** Spaces that the whole body is expected to take. */
+  readonly cells: number;
 }
 
 export function expectedPieces(cut: CutFigures): number {
   return cut.cellsAbove + cut.cellsBelow + cut.alsoCut;
+}
+
+/** A side that is taken off should carry at least this share of an average piece. */
+const FAIR_SHARE = 0.9;
+
+/**
+ * Room that a fitting side gives away: a whole piece for a crumb, nothing for a fair share of the
+ * body's volume or surface. Without it the search would nibble, for every crumb costs only itself.
+ */
+export function wasteCost(cut: CutFigures): number {
+  const above = cut.cellsAbove === 1;
+  const below = cut.cellsBelow === 1;
+  if (above === below) return 0;
+  const volume = cut.volumeAboveMm3 / (cut.volumeAboveMm3 + cut.volumeBelowMm3 || 1);
+  const surface = cut.surfaceMm2 > 0 ? cut.surfaceAboveMm2 / cut.surfaceMm2 : 0;
+  const share = above ? Math.max(volume, surface) : Math.max(1 - volume, 1 - surface);
+  return Math.max(0, 1 - (share * cut.cells) / FAIR_SHARE);
 }
 
 /** Long or wide seams show and take glue. */

@@ -1,10 +1,12 @@
 import { restingDirections } from '../../shared/geometry/fitting/candidate-downs.js';
+import { convexHull3d, cornerPoints } from '../../shared/geometry/fitting/convex-hull-3d.js';
 import { layOnBed } from '../../shared/geometry/fitting/lay-on-bed.js';
 import { boundingBox, signedVolume } from '../../shared/geometry/mesh/measure.js';
 import { splitIntoSolids } from '../../shared/geometry/mesh/solids.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { cutMesh } from '../../shared/geometry/cutting/cut-mesh.js';
 import { type Plane } from '../../shared/geometry/vectors/plane.js';
+import { outerVertices } from './body-nodes.js';
 import { cellsInFrames, extentsOf, roomInFrames } from './fit-frames.js';
 import { type SearchSpace } from './search-space.js';
 import { signedFan } from './signed-fan.js';
@@ -12,6 +14,8 @@ import { signedFan } from './signed-fan.js';
 /** One loose solid of the trial model. */
 export interface PlanBody {
   readonly mesh: TriangleMesh;
+  /** The vertices that decide extents, flat xyz: all, or an outer selection of many. */
+  readonly outer: Float64Array;
   readonly volumeMm3: number;
   /** Whether it fits the space, laid in its best orientation. */
   readonly fits: boolean;
@@ -125,20 +129,29 @@ function measureBody(mesh: TriangleMesh, space: SearchSpace): PlanBody {
     low = new Float64Array(fitFrames.axisCount);
     high = new Float64Array(fitFrames.axisCount);
   }
-  extentsOf(fitFrames, mesh.positions, low, high);
-  const volumeMm3 = signedVolume(mesh);
-  const room = roomInFrames(fitFrames, low, high);
-  const fits = room >= 0 || (isNear(room, space) && fitsExactly(mesh, space));
-  const cells = fits ? 1 : Math.max(1.5, cellsInFrames(fitFrames, space.cell, low, high));
-  return { mesh, volumeMm3, fits, cells };
+  const outer = outerVertices(mesh.positions);
+  extentsOf(fitFrames, outer, low, high);
+  let room = roomInFrames(fitFrames, low, high);
+  const cells = Math.max(2, cellsInFrames(fitFrames, space.cell, low, high));
+  // The selection can only be too small, so what is far over stays over.
+  if (outer !== mesh.positions && isNear(room, space)) {
+    extentsOf(fitFrames, mesh.positions, low, high);
+    room = roomInFrames(fitFrames, low, high);
+  }
+  const fits = room >= 0 || (isNear(room, space) && fitsExactly(mesh, outer, space));
+  return { mesh, outer, volumeMm3: signedVolume(mesh), fits, cells: fits ? 1 : cells };
 }
 
 function isNear(room: number, { cell }: SearchSpace): boolean {
   return room > -NEAR_SHARE * Math.min(...cell);
 }
 
-/** The exact test that the finished pieces will have to pass as well. */
-export function fitsExactly(mesh: TriangleMesh, space: SearchSpace): boolean {
-  const { standing, others } = restingDirections(mesh);
-  return layOnBed(mesh.positions, space.fit, [...standing, ...others]).fits;
+/** The test that the finished pieces will have to pass; the outer vertices alone come first. */
+function fitsExactly(mesh: TriangleMesh, outer: Float64Array, space: SearchSpace): boolean {
+  const hull = convexHull3d(outer);
+  const { standing, others } = restingDirections(mesh, outer, hull);
+  const downs = [...standing, ...others];
+  const pose = layOnBed(cornerPoints(outer, hull), space.fit, downs);
+  if (!pose.fits || outer === mesh.positions) return pose.fits;
+  return layOnBed(mesh.positions, space.fit, [pose.down, ...downs]).fits;
 }

@@ -33,7 +33,7 @@ export function makeSearchSpace(
   deviationMm: number,
   toleranceMm: number,
 ): SearchSpace {
-  const fit = deviationMm > 0 ? shrinkSpace(space, 2 * deviationMm) : space;
+  const fit = deviationMm > 0 ? shrinkSpace(space, deviationMm) : space;
   const aim = shrinkSpace(fit, 2 * toleranceMm + SPARE_MM);
   return {
     space,

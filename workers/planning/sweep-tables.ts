@@ -1,5 +1,5 @@
-import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
+import { type BodyFaces } from './body-faces.js';
 import { type BodyNodes } from './body-nodes.js';
 import { type FitFrames } from './fit-frames.js';
 
@@ -25,6 +25,8 @@ export interface SweepTables {
   /** Area of the section, mm². */
   readonly seamMm2: Float64Array;
   readonly volumeAboveMm3: Float64Array;
+  /** Surface above, faces counted by their middles, mm². */
+  readonly surfaceAboveMm2: Float64Array;
   /** Overhanging area of a side that stands on its cut face, mm². */
   readonly overhangAboveMm2: Float64Array;
   readonly overhangBelowMm2: Float64Array;
@@ -42,24 +44,25 @@ export function rangeAlong(points: Float64Array, [x, y, z]: Vector3): [number, n
   return [low, high];
 }
 
+/** What a sweep is over. */
+export type Sweep = Pick<SweepTables, 'normal' | 'low' | 'high' | 'offsets'>;
+
 /**
- * One sweep: a single pass over nodes and triangles fills the tables of every offset. Nodes go
- * into the slot between two offsets, extents run over the slots from both ends. Section area and
+ * One sweep: a single pass over nodes and faces fills the tables of every offset. Nodes go into
+ * the slot between two offsets, extents run over the slots from both ends. Section area and
  * volume follow from the divergence theorem: the flux of the direction, and of the height above
- * the cut, through the surface above. Cost O(nodes × axes + triangles + offsets × axes).
+ * the cut, through the surface above. Cost O(nodes × axes + faces + offsets × axes).
  */
 export function sweepTables(
-  mesh: TriangleMesh,
+  sweep: Sweep,
   nodes: BodyNodes,
+  faces: BodyFaces,
   fit: FitFrames,
-  normal: Vector3,
-  offsets: Float64Array,
 ): SweepTables {
-  const [low, high] = rangeAlong(mesh.positions, normal);
-  const place = new OffsetPlace(offsets, low, high);
-  const extents = runExtents(nodes, fit, normal, place);
-  const fluxes = runFluxes(mesh, normal, place);
-  return { normal, low, high, offsets, ...extents, ...fluxes };
+  const place = new OffsetPlace(sweep.offsets, sweep.low, sweep.high);
+  const extents = runExtents(nodes, fit, sweep.normal, place);
+  const fluxes = runFluxes(faces, sweep.normal, place);
+  return { ...sweep, ...extents, ...fluxes };
 }
 
 /** Finds how many offsets lie at or below a height. */
@@ -123,8 +126,11 @@ function runExtents(
   return { belowLow: low, belowHigh: high, aboveLow, aboveHigh };
 }
 
-function runFluxes(mesh: TriangleMesh, [x, y, z]: Vector3, place: OffsetPlace) {
-  const { positions: p, indices } = mesh;
+function runFluxes(
+  { corners, halfNormals, areas }: BodyFaces,
+  [x, y, z]: Vector3,
+  place: OffsetPlace,
+) {
   const rows = place.count;
   const offsets = place.offsets;
   const seam = new Float64Array(rows);
@@ -134,24 +140,13 @@ function runFluxes(mesh: TriangleMesh, [x, y, z]: Vector3, place: OffsetPlace) {
   const moment = new Float64Array(rows + 1);
   const down = new Float64Array(rows + 1);
   const up = new Float64Array(rows + 1);
-  for (let t = 0; t < indices.length; t += 3) {
-    const a = 3 * indices[t];
-    const b = 3 * indices[t + 1];
-    const c = 3 * indices[t + 2];
-    const ux = p[b] - p[a];
-    const uy = p[b + 1] - p[a + 1];
-    const uz = p[b + 2] - p[a + 2];
-    const vx = p[c] - p[a];
-    const vy = p[c + 1] - p[a + 1];
-    const vz = p[c + 2] - p[a + 2];
-    const nx = uy * vz - uz * vy;
-    const ny = uz * vx - ux * vz;
-    const nz = ux * vy - uy * vx;
-    const weight = (x * nx + y * ny + z * nz) / 2;
-    const area = Math.sqrt(nx * nx + ny * ny + nz * nz) / 2;
-    const ha = x * p[a] + y * p[a + 1] + z * p[a + 2];
-    const hb = ha + x * ux + y * uy + z * uz;
-    const hc = ha + x * vx + y * vy + z * vz;
+  const surface = new Float64Array(rows + 1);
+  for (let t = 0, n = 0, c = 0; t < areas.length; t++, n += 3, c += 9) {
+    const weight = x * halfNormals[n] + y * halfNormals[n + 1] + z * halfNormals[n + 2];
+    const area = areas[t];
+    const ha = x * corners[c] + y * corners[c + 1] + z * corners[c + 2];
+    const hb = x * corners[c + 3] + y * corners[c + 4] + z * corners[c + 5];
+    const hc = x * corners[c + 6] + y * corners[c + 7] + z * corners[c + 8];
     const z0 = Math.min(ha, hb, hc);
     const z2 = Math.max(ha, hb, hc);
     const z1 = ha + hb + hc - z0 - z2;
@@ -160,6 +155,7 @@ function runFluxes(mesh: TriangleMesh, [x, y, z]: Vector3, place: OffsetPlace) {
     flux[whole] += weight;
     moment[whole] += weight * middle;
     const at = place.of(middle);
+    surface[at] += area;
     if (weight < -OVERHANG * area) down[at] += area;
     else if (weight > OVERHANG * area) up[at] += area;
     for (let j = whole; j < rows && offsets[j] < z2; j++) {
@@ -180,6 +176,8 @@ function runFluxes(mesh: TriangleMesh, [x, y, z]: Vector3, place: OffsetPlace) {
   let wholeFlux = 0;
   let wholeMoment = 0;
   let hanging = 0;
+  let covered = 0;
+  const surfaceAbove = new Float64Array(rows);
   for (let j = rows - 1; j >= 0; j--) {
     wholeFlux += flux[j + 1];
     wholeMoment += moment[j + 1];
@@ -187,6 +185,8 @@ function runFluxes(mesh: TriangleMesh, [x, y, z]: Vector3, place: OffsetPlace) {
     seam[j] = Math.max(0, seam[j] + wholeFlux);
     volume[j] += wholeMoment - offsets[j] * wholeFlux;
     overhangAbove[j] = hanging;
+    covered += surface[j + 1];
+    surfaceAbove[j] = covered;
   }
   let standing = 0;
   for (let j = 0; j < rows; j++) {
@@ -196,6 +196,7 @@ function runFluxes(mesh: TriangleMesh, [x, y, z]: Vector3, place: OffsetPlace) {
   return {
     seamMm2: seam,
     volumeAboveMm3: volume,
+    surfaceAboveMm2: surfaceAbove,
     overhangAboveMm2: overhangAbove,
     overhangBelowMm2: overhangBelow,
   };

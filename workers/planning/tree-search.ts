@@ -36,18 +36,18 @@ interface MadeCut {
  */
 export class TreeSearch {
   work = 0;
-  private readonly greedyPlans = new WeakMap<PlanPart, PlanNode>();
+  private readonly bestPlans = new WeakMap<PlanPart, PlanNode>();
   private readonly candidates = new WeakMap<PlanPart, CutCandidate[]>();
   private readonly madeCuts = new WeakMap<CutCandidate, MadeCut>();
 
   constructor(private readonly options: TreeSearchOptions) {}
 
-  /** A whole plan in which every cut is the best of a few looked at once. */
+  /** The best plan known of a part; at first one in which every cut is the best of a few. */
   greedy(part: PlanPart): PlanNode {
-    const known = this.greedyPlans.get(part);
+    const known = this.bestPlans.get(part);
     if (known) return known;
     const plan = this.makeGreedy(part);
-    this.greedyPlans.set(part, plan);
+    this.bestPlans.set(part, plan);
     return plan;
   }
 
@@ -80,7 +80,9 @@ export class TreeSearch {
     const above = this.improve(best.above, width, budget);
     const below = this.improve(best.below, width, budget);
     const quality = best.cost - best.above.cost - best.below.cost;
-    return cutOf(best.part, best.plane, best.motive, quality, above, below);
+    const improved = cutOf(best.part, best.plane, best.motive, quality, above, below);
+    this.bestPlans.set(improved.part, improved);
+    return improved;
   }
 
   private separate(part: PlanPart, plan: (side: PlanPart) => PlanNode): PlanNode | null {
@@ -133,7 +135,7 @@ export class TreeSearch {
       used = { ...used, plane: { normal, offset: offset + back } };
       split = this.split(part, used);
     }
-    const value = expected(split.above) + expected(split.below) + used.quality;
+    const value = expected(split.above) + expected(split.below) + used.quality + used.waste;
     const made = { candidate: used, split, value };
     this.madeCuts.set(candidate, made);
     return made;

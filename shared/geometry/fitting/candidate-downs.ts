@@ -1,6 +1,6 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { type Vector3 } from '../vectors/plane.js';
-import { convexHull3d, supportPoints } from './convex-hull-3d.js';
+import { type ConvexHull, convexHull3d, cornerPoints } from './convex-hull-3d.js';
 import { principalAxes } from './principal-axes.js';
 
 /** Faces whose normal is steeper than this below the horizon need support: sin 45°. */
@@ -47,18 +47,21 @@ export function candidateDowns(mesh: TriangleMesh, limit = 80): Vector3[] {
 /**
  * The same directions without an order of preference: enough to ask whether a piece fits at all.
  * `standing`: cut faces, large hull faces, coordinate axes; `others`: the rest.
+ * @param points stand for the mesh's hull; its own vertices by default
+ * @param hull of these points, when it is known already
  */
-export function restingDirections(mesh: TriangleMesh): {
-  standing: Vector3[];
-  others: Vector3[];
-} {
+export function restingDirections(
+  mesh: TriangleMesh,
+  points: Float64Array = mesh.positions,
+  hull: ConvexHull | null = convexHull3d(points),
+): { standing: Vector3[]; others: Vector3[] } {
   const found = new DirectionSet();
   for (const down of capDowns(mesh)) found.add(down);
-  for (const down of hullDowns(mesh.positions)) found.add(down);
+  for (const down of hullDowns(points, hull)) found.add(down);
   for (const down of cubeDirections.slice(0, 6)) found.add(down);
   const start = found.directions.length;
   for (const down of cubeDirections) found.add(down);
-  for (const axis of principalAxes(supportPoints(mesh.positions))) {
+  for (const axis of principalAxes(cornerPoints(points, hull))) {
     found.add(axis);
     found.add([0 - axis[0], 0 - axis[1], 0 - axis[2]]);
   }
@@ -95,8 +98,7 @@ function capDowns(mesh: TriangleMesh): Vector3[] {
 }
 
 /** Outward normals of the hull's faces, coplanar facets taken together, the largest first. */
-function hullDowns(positions: Float64Array): Vector3[] {
-  const hull = convexHull3d(positions);
+function hullDowns(positions: Float64Array, hull: ConvexHull | null): Vector3[] {
   if (!hull) return [];
   const faces = new Map<string, [number, number, number]>();
   let total = 0;

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { seededRandom } from '../../../test/support/planning-random.js';
+import { seededRandom } from '../../../test/support/random.js';
 import { convexHull3d, supportPoints } from './convex-hull-3d.js';
 
 const extent = (points: Float64Array, n: readonly number[]) => {

@@ -24,7 +24,11 @@ export function convexHull3d(points: Float64Array): ConvexHull | null {
  * is no hull of positive volume. Flat xyz, mm.
  */
 export function supportPoints(points: Float64Array): Float64Array {
-  const hull = points.length > 12 ? convexHull3d(points) : null;
+  return cornerPoints(points, points.length > 12 ? convexHull3d(points) : null);
+}
+
+/** Coordinates of a hull's corners; all the points without a hull. Flat xyz. */
+export function cornerPoints(points: Float64Array, hull: ConvexHull | null): Float64Array {
   if (!hull) return points;
   const support = new Float64Array(3 * hull.corners.length);
   for (let k = 0; k < hull.corners.length; k++) {
