@@ -6,7 +6,7 @@ import { roundAndWeld } from '../mesh/rounded.js';
 import { edgeReport } from '../mesh/topology.js';
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { type Plane } from '../vectors/plane.js';
-import { identityMotion } from '../vectors/rigid-motion.js';
+import { applyMotion, identityMotion, rotationTaking } from '../vectors/rigid-motion.js';
 import { cutMesh, type PolygonTriangulator } from './cut-mesh.js';
 import { placeCut } from './place-cut.js';
 
@@ -63,6 +63,25 @@ describe('placing a cut', () => {
     expect(placed(shapes.sevenEighthsCube(80).mesh, 40)).toBe(40);
     expect(placed(shapes.torus(50, 18, 24, 12).mesh, 0)).toBe(0);
     expect(placed(shapes.box([0, 0, 0], [9, 9, 9]).mesh, 9)).toBe(9);
+  });
+
+  it('moves to the outer side of faces that rounding left not quite flat', () => {
+    // A floor, a turned cube and single precision: its corners miss their plane by micrometres.
+    const { mesh } = shapes.sevenEighthsCube(80);
+    const turn = rotationTaking([0, 0, 1], [0.36, 0.48, 0.8]);
+    const positions = Float64Array.from(Float32Array.from(applyMotion(turn, mesh.positions)));
+    const turned = { ...mesh, positions };
+    const up: Plane = { normal: [0.36, 0.48, 0.8], offset: 40 };
+    const down: Plane = { normal: [-0.36, -0.48, -0.8], offset: -40 };
+    expect(placeCut(turned, up, TOLERANCE_MM).offset).toBeCloseTo(40 + TOLERANCE_MM, 4);
+    expect(placeCut(turned, down, TOLERANCE_MM).offset).toBeCloseTo(-40 - TOLERANCE_MM, 4);
+    // Nothing is cut off an outer face.
+    const top: Plane = { ...up, offset: 80 };
+    const { above } = cutMesh(turned, placeCut(turned, top, TOLERANCE_MM), {
+      triangulate,
+      capTag: 1,
+    });
+    expect(above.indices.length).toBe(0);
   });
 
   it('moves off an edge that only touches the plane, so that the sides stay closed', () => {

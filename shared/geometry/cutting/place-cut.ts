@@ -1,6 +1,6 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { type Plane } from '../vectors/plane.js';
-import { ABOVE, BELOW, defaultSnapMm, ON, tellSides } from './plane-sides.js';
+import { ABOVE, BELOW, defaultSnapMm, ON, projectedArea, tellSides } from './plane-sides.js';
 
 /**
  * Moves a plane along its normal, by at most `toleranceMm`, away from the mesh's vertices: a cut
@@ -9,17 +9,20 @@ import { ABOVE, BELOW, defaultSnapMm, ON, tellSides } from './plane-sides.js';
  * gap. The plane stays where it is when no vertex is within the tolerance, and when those that are
  * lie exactly on it (1e-9 of the box) and the surface passes through the plane there or ends in it:
  * a cut along a face or a ring of edges is wanted as it is. Where the surface only touches the
- * plane along an edge, the plane moves too.
- * O(vertices) when it stays free, plus O(n log n) in the vertices within the tolerance.
+ * plane along an edge, the plane moves too. A plane along faces that are not quite flat moves to
+ * their outer side, if there is at least half the room, so that no thin sheet is cut off them; it
+ * may miss the mesh there.
+ * O(vertices) when it stays free, else O(triangles) and O(n log n) in the vertices that are near.
  */
 export function placeCut(mesh: TriangleMesh, plane: Plane, toleranceMm: number): Plane {
   const near = collectNear(mesh.positions, plane, toleranceMm);
   if (near.distances.length === 0 || !(toleranceMm > 0)) return plane;
   const snapMm = defaultSnapMm(mesh.positions);
-  if (near.distances.every((distance) => Math.abs(distance) <= snapMm)) {
+  if (near.distances[0] >= -snapMm && near.distances[near.distances.length - 1] <= snapMm) {
     if (!touchesAlongEdge(mesh, plane, snapMm)) return plane;
   }
-  const move = findPlace(near, toleranceMm);
+  const outwards = Math.sign(shadowOfFaces(mesh, plane, toleranceMm));
+  const move = findPlace(near, toleranceMm, outwards);
   return { normal: plane.normal, offset: plane.offset + move };
 }
 
@@ -56,26 +59,59 @@ function collectNear(positions: Float64Array, plane: Plane, toleranceMm: number)
   return { distances: near.subarray(0, count).sort(), before, after };
 }
 
-/** The best signed distance to move, mm. */
-function findPlace({ distances, before, after }: NearVertices, toleranceMm: number): number {
+/**
+ * Signed area, mm², that the faces within the tolerance throw onto the plane: above 0 when most of
+ * them look along its normal, with the solid below.
+ */
+function shadowOfFaces(mesh: TriangleMesh, plane: Plane, toleranceMm: number): number {
+  const { vertices, triangles, counts } = tellSides(mesh, plane, toleranceMm);
+  const { indices } = mesh;
+  let shadow = 0;
+  let left = counts[ABOVE | ON] + counts[BELOW | ON];
+  for (let triangle = 0; left > 0; triangle++) {
+    const code = triangles[triangle];
+    if (code !== (ABOVE | ON) && code !== (BELOW | ON)) continue;
+    left--;
+    const at = 3 * triangle;
+    const corners = vertices[indices[at]] | vertices[indices[at + 1]] | vertices[indices[at + 2]];
+    if (corners === ON) shadow += projectedArea(mesh, triangle, plane.normal);
+  }
+  return shadow;
+}
+
+/** Share of the best clearance with which a place on the outer side of faces is good enough. */
+const OUTER_SHARE = 0.5;
+
+/**
+ * The best signed distance to move, mm.
+ * @param outwards 1 or -1: the side to prefer; 0: none
+ */
+function findPlace(near: NearVertices, toleranceMm: number, outwards: number): number {
+  const { distances, before, after } = near;
   let best = 0;
   let bestClearance = 0;
+  let outer = 0;
+  let outerClearance = 0;
   for (let gap = 0; gap <= distances.length; gap++) {
     const low = gap === 0 ? before : distances[gap - 1];
     const high = gap === distances.length ? after : distances[gap];
-    // Past the last vertex the plane would miss the mesh.
-    if (low === -Infinity || high === Infinity) continue;
     const roomy = high - low >= 2 * toleranceMm;
     const middle = roomy ? clamp(0, low + toleranceMm, high - toleranceMm) : (low + high) / 2;
     const place = clamp(middle, -toleranceMm, toleranceMm);
     const clearance = Math.min(place - low, high - place);
+    if (place * outwards > 0 && clearance > outerClearance) {
+      outer = place;
+      outerClearance = clearance;
+    }
+    // Past the last vertex the plane would miss the mesh.
+    if (low === -Infinity || high === Infinity) continue;
     const isWider = clearance > bestClearance;
     if (isWider || (clearance === bestClearance && Math.abs(place) < Math.abs(best))) {
       best = place;
       bestClearance = clearance;
     }
   }
-  return best;
+  return outerClearance > 0 && outerClearance >= OUTER_SHARE * bestClearance ? outer : best;
 }
 
 function clamp(value: number, low: number, high: number): number {

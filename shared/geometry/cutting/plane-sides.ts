@@ -1,6 +1,6 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { boundingBox } from '../mesh/measure.js';
-import { type Plane } from '../vectors/plane.js';
+import { type Plane, type Vector3 } from '../vectors/plane.js';
 
 /** Side of a vertex. A triangle's code is its vertices' sides joined by "or". */
 export const BELOW = 1;
@@ -49,28 +49,29 @@ export function tellSides(mesh: TriangleMesh, plane: Plane, snapMm: number): Sid
   const counts = new Uint32Array(8);
   for (let triangle = 0, i = 0; triangle < triangles.length; triangle++, i += 3) {
     let code = vertices[indices[i]] | vertices[indices[i + 1]] | vertices[indices[i + 2]];
-    if (code === ON) code |= facesAlong(mesh, i, plane) ? BELOW : ABOVE;
+    if (code === ON) code |= projectedArea(mesh, triangle, plane.normal) > 0 ? BELOW : ABOVE;
     triangles[triangle] = code;
     counts[code]++;
   }
   return { vertices, triangles, onVertices, counts };
 }
 
-/** Whether the triangle at index i faces along the plane's normal, so that its solid lies below. */
-function facesAlong(mesh: TriangleMesh, i: number, plane: Plane): boolean {
+/** Signed area, mm², of a triangle projected along a unit normal; above 0 when it looks that way. */
+export function projectedArea(mesh: TriangleMesh, triangle: number, normal: Vector3): number {
   const { positions, indices } = mesh;
-  const a = 3 * indices[i];
-  const b = 3 * indices[i + 1];
-  const c = 3 * indices[i + 2];
+  const a = 3 * indices[3 * triangle];
+  const b = 3 * indices[3 * triangle + 1];
+  const c = 3 * indices[3 * triangle + 2];
   const ux = positions[b] - positions[a];
   const uy = positions[b + 1] - positions[a + 1];
   const uz = positions[b + 2] - positions[a + 2];
   const vx = positions[c] - positions[a];
   const vy = positions[c + 1] - positions[a + 1];
   const vz = positions[c + 2] - positions[a + 2];
-  const along =
-    plane.normal[0] * (uy * vz - uz * vy) +
-    plane.normal[1] * (uz * vx - ux * vz) +
-    plane.normal[2] * (ux * vy - uy * vx);
-  return along > 0;
+  return (
+    (normal[0] * (uy * vz - uz * vy) +
+      normal[1] * (uz * vx - ux * vz) +
+      normal[2] * (ux * vy - uy * vx)) /
+    2
+  );
 }

@@ -1,5 +1,5 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
-import { ABOVE, BELOW, ON, type Sides } from './plane-sides.js';
+import { type ABOVE, BELOW, ON, type Sides } from './plane-sides.js';
 import { type SectionNodes } from './section-nodes.js';
 
 /** The cut's data as both sides need it. */
