@@ -18,7 +18,7 @@ import {
   torusKnot,
 } from '../support/shapes.js';
 import { loadManifold, type ManifoldModule } from '../support/triangulator.js';
-import { askAdmesh, hasAdmesh } from './admesh.js';
+import { askAdmesh, hasAdmesh } from '../support/admesh.js';
 
 /** The pieces of whole plans, judged by programs and arithmetic that had no part in making them. */
 

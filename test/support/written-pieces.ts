@@ -1,8 +1,3 @@
-import { spawnSync } from 'node:child_process';
-import { existsSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
-import { join } from 'node:path';
-
 /** Box and volume of a binary STL, straight from its bytes (mm). */
 export interface WrittenPiece {
   readonly facets: number;
@@ -38,36 +33,4 @@ export function measureBinaryStl(bytes: Uint8Array): WrittenPiece {
     size: [max[0]! - min[0]!, max[1]! - min[1]!, max[2]! - min[2]!],
     volumeMm3: volume,
   };
-}
-
-export const admeshPath = '/usr/bin/admesh';
-export const hasAdmesh = existsSync(admeshPath);
-
-/** What admesh, an independent checker, finds in a file as it was written (its Original column). */
-export interface AdmeshFinding {
-  readonly facets: number;
-  readonly disconnectedFacets: number;
-  readonly parts: number;
-}
-
-/** @throws Error with what admesh printed when it cannot read the file within a minute */
-export function askAdmesh(bytes: Uint8Array): AdmeshFinding {
-  const folder = mkdtempSync(join(tmpdir(), 'sw-admesh-'));
-  try {
-    const file = join(folder, 'piece.stl');
-    writeFileSync(file, bytes);
-    const run = spawnSync(admeshPath, [file], { encoding: 'utf8', timeout: 60_000 });
-    const number = (label: RegExp) => {
-      const found = label.exec(run.stdout ?? '');
-      if (!found) throw new Error(`admesh said: ${run.stdout ?? ''}${run.stderr ?? ''}`);
-      return Number(found[1]);
-    };
-    return {
-      facets: number(/Number of facets\s*:\s*(\d+)/),
-      disconnectedFacets: number(/Total disconnected facets\s*:\s*(\d+)/),
-      parts: number(/Number of parts\s*:\s*(\d+)/),
-    };
-  } finally {
-    rmSync(folder, { recursive: true, force: true });
-  }
 }
