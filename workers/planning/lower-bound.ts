@@ -52,16 +52,15 @@ export function lowerBound(solids: readonly TriangleMesh[], space: BuildSpace): 
 
   function inWords(): string {
     const litres = (mm3: number) => `${(mm3 / 1e6).toFixed(mm3 < 1e7 ? 2 : 1)} l`;
-    const count = `${pieces} ${pieces === 1 ? 'piece' : 'pieces'} at least`;
     if (byVolume > 0 && byDistance === 0 && solids.length === 1)
-      return `${count}: the solid is ${litres(volume)} and ${spaceInWords(space)} hold ${litres(capacity)}.`;
+      return `The solid is ${litres(volume)} and ${spaceInWords(space)} hold ${litres(capacity)}.`;
     if (byDistance > 0 && byVolume === 0 && solids.length === 1)
-      return `${count}: ${points} points of the surface lie more than ${diagonal.toFixed(1)} mm apart from one another, the longest line inside ${spaceInWords(space)}.`;
+      return `${points} points of the surface lie more than ${diagonal.toFixed(1)} mm apart from one another, the longest line inside ${spaceInWords(space)}.`;
     if (solids.length > 1)
       return byVolume + byDistance === 0
-        ? `${count}: the model has ${solids.length} loose solids.`
-        : `${count}: the model has ${solids.length} loose solids, and each needs as many pieces as its volume and its length ask for.`;
-    return `${count}: nothing in its volume or its length asks for more.`;
+        ? `The model has ${solids.length} loose solids.`
+        : `The model has ${solids.length} loose solids, and each needs as many pieces as its volume and its length ask for.`;
+    return 'Nothing in its volume or its length asks for more than one piece.';
   }
 }
 
