@@ -89,6 +89,9 @@ describe('UploadQueue', () => {
     queue.dismiss(1);
     queue.dismiss(2);
     expect(states()).toEqual(['sending']);
+    queue.add([file('notes.txt'), file('more.txt'), file('b.stl')]);
+    queue.dismissFinished();
+    expect(states()).toEqual(['sending', 'waiting']);
   });
 
   it('asks before the page is left while something is on its way', () => {

@@ -79,6 +79,11 @@ export class UploadQueue {
     );
   }
 
+  /** Takes every finished line off the list. */
+  dismissFinished(): void {
+    this._uploads.update((uploads) => uploads.filter(isOnItsWay));
+  }
+
   private clear(): void {
     this.stopCurrent();
     this._uploads.set([]);

@@ -112,6 +112,10 @@ export class ModelList {
     this.queue.dismiss(id);
   }
 
+  protected dismissFinishedUploads(): void {
+    this.queue.dismissFinished();
+  }
+
   protected async remove(model: ModelResponse): Promise<void> {
     const hindrance = removalHindrance(model);
     if (hindrance) {

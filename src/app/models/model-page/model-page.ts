@@ -18,13 +18,7 @@ import { FailureNotes } from '../../core/errors/failure-notes';
 import { PageTitle } from '../../core/layout/page-title';
 import { Confirmations } from '../../ui/confirm-dialog/confirmations';
 import { EmptyState } from '../../ui/empty-state/empty-state';
-import {
-  writeArea,
-  writeCount,
-  writeMoment,
-  writeSizeMm,
-  writeVolume,
-} from '../../ui/format/quantities';
+import { writeArea, writeMoment, writeSizeMm, writeVolume } from '../../ui/format/quantities';
 import { JobProgress } from '../../ui/job-progress/job-progress';
 import { Notice } from '../../ui/notice/notice';
 import { ModelView } from '../../viewer/model-view/model-view';
@@ -93,20 +87,15 @@ export class ModelPage {
   protected readonly facts = computed(() => {
     const model = this.model();
     if (!model) return [];
-    const { sizeMm, volumeMm3, areaMm2, number, fileName, report, viewTriangles } = model.revision;
-    const isThinned = report !== null && viewTriangles > 0 && viewTriangles < report.triangles;
+    const { sizeMm, volumeMm3, areaMm2, number, fileName, report } = model.revision;
+    // Only a closed surface holds a volume.
+    const volume = report?.closed && volumeMm3 !== null ? writeVolume(volumeMm3) : '';
     return [
       { name: 'File', value: fileName },
       { name: 'Revision', value: `${number}, ${writeMoment(model.createdAt)}, ${model.createdBy}` },
       { name: 'Size', value: sizeMm ? writeSizeMm(sizeMm) : '' },
-      { name: 'Volume', value: volumeMm3 === null ? '' : writeVolume(volumeMm3) },
+      { name: 'Volume', value: volume },
       { name: 'Surface', value: areaMm2 === null ? '' : writeArea(areaMm2) },
-      {
-        name: 'Picture',
-        value: isThinned
-          ? `drawn with ${writeCount(viewTriangles)} of ${writeCount(report.triangles)} triangles`
-          : '',
-      },
     ].filter((fact) => fact.value !== '');
   });
 

@@ -11,7 +11,7 @@ import { NonNullableFormBuilder, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
 import { MatError, MatFormField, MatHint, MatLabel } from '@angular/material/form-field';
 import { MatInput } from '@angular/material/input';
-import { MatOption, MatSelect } from '@angular/material/select';
+import { MatOption, MatSelect, MatSelectTrigger } from '@angular/material/select';
 import { RouterLink } from '@angular/router';
 import { type EnvelopeResponse } from '../../../../shared/api/envelopes.contract.js';
 import { writeGivenMm } from '../../ui/format/quantities';
@@ -36,6 +36,7 @@ export interface PlanOrder {
     MatLabel,
     MatOption,
     MatSelect,
+    MatSelectTrigger,
     Notice,
     ReactiveFormsModule,
     RouterLink,
@@ -60,7 +61,14 @@ export class PlanStarter {
     return suggested && ids.includes(suggested) ? suggested : (ids[0] ?? '');
   });
   protected readonly options = computed(() =>
-    this.envelopes().map((envelope) => ({ id: envelope.id, words: inWords(envelope) })),
+    this.envelopes().map((envelope) => ({
+      id: envelope.id,
+      name: envelope.name,
+      size: sizeInWords(envelope),
+    })),
+  );
+  protected readonly chosen = computed(() =>
+    this.options().find((option) => option.id === this.envelopeId()),
   );
   protected readonly form = inject(NonNullableFormBuilder).group({
     seed: [1 as number | null, isSeed],
@@ -76,10 +84,10 @@ export class PlanStarter {
   }
 }
 
-function inWords(envelope: EnvelopeResponse): string {
+function sizeInWords(envelope: EnvelopeResponse): string {
   const size =
     envelope.shape === 'round'
       ? `⌀ ${writeGivenMm(envelope.diameterMm)}, ${writeGivenMm(envelope.heightMm)} high`
       : writeGivenMm(envelope.widthMm, envelope.depthMm, envelope.heightMm);
-  return `${envelope.name} (${size})`;
+  return envelope.marginMm > 0 ? `${size}, margin ${writeGivenMm(envelope.marginMm)}` : size;
 }

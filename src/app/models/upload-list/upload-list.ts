@@ -19,7 +19,11 @@ export class UploadList {
   readonly cancelAsked = output<number>();
   readonly againAsked = output<number>();
   readonly dismissed = output<number>();
+  readonly finishedDismissed = output<void>();
 
+  protected readonly hasSeveralFinished = computed(
+    () => this.lines().filter((line) => !line.isOnItsWay).length > 1,
+  );
   protected readonly lines = computed(() =>
     this.uploads().map((upload) => ({
       ...upload,

@@ -61,7 +61,14 @@ describe('JobProgress', () => {
     const message = 'The plan would need 812 pieces; at most 400 are made.';
     const { text, loader } = await setUp({ state: 'failed', error: { code: 'refused', message } });
     expect(text()).toContain(message);
+    expect(text()).not.toContain('did not work');
     expect(await loader.getHarnessOrNull(MatProgressBarHarness)).toBeNull();
+  });
+
+  it('says so when the failure is ours and not that of the input', async () => {
+    const error = { code: 'failed' as const, message: 'Something broke on our side.' };
+    const { text } = await setUp({ state: 'failed', error });
+    expect(text()).toContain('The plan did not work. Something broke on our side.');
   });
 
   it('says that it was cancelled', async () => {
