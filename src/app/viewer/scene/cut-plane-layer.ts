@@ -3,6 +3,7 @@ import {
   type Box3,
   BufferAttribute,
   BufferGeometry,
+  Color,
   DoubleSide,
   Group,
   LineBasicMaterial,
@@ -34,7 +35,7 @@ const BELOW_COLOUR = 1;
 
 /**
  * A plane through the model while it is being moved: the part below in full, the part above as
- * a veil, the section in the colour of seams. Only clipped on the screen; nothing is cut yet.
+ * a veil, the section hatched in the colour of seams. Only clipped on the screen; nothing is cut yet.
  */
 export class CutPlaneLayer {
   readonly root = new Group();
@@ -58,10 +59,11 @@ export class CutPlaneLayer {
     depthWrite: false,
   });
   private readonly solid = new MeshLambertMaterial({ clippingPlanes: [this.below] });
-  private readonly section = new MeshBasicMaterial({
-    clippingPlanes: [this.below],
-    side: BackSide,
-  });
+  private readonly paper = { value: new Color() };
+  private readonly section = hatched(
+    new MeshBasicMaterial({ clippingPlanes: [this.below], side: BackSide }),
+    this.paper,
+  );
   private readonly copies = new Group();
   private plane: CutPlane | null = null;
 
@@ -97,6 +99,7 @@ export class CutPlaneLayer {
     this.veil.color.set(pieceTint(ABOVE_COLOUR, theme.isDark));
     this.solid.color.set(pieceTint(BELOW_COLOUR, theme.isDark));
     this.section.color.set(theme.copper);
+    this.paper.value.set(theme.paper);
     this.sheet.material.color.set(theme.copper);
     this.rim.material.color.set(theme.copper);
   }
@@ -119,6 +122,22 @@ export class CutPlaneLayer {
       object.scale.setScalar(size);
     }
   }
+}
+
+/** Hatches a material at 45° on the screen, as section faces are on drawings (ISO 128, from memory). */
+function hatched(material: MeshBasicMaterial, paper: { value: Color }): MeshBasicMaterial {
+  material.onBeforeCompile = (shader) => {
+    shader.uniforms['hatchPaper'] = paper;
+    shader.fragmentShader = shader.fragmentShader
+      .replace('void main() {', 'uniform vec3 hatchPaper;\nvoid main() {')
+      .replace(
+        '#include <color_fragment>',
+        `#include <color_fragment>
+        float stripe = step(0.25, fract((gl_FragCoord.x - gl_FragCoord.y) / 9.0));
+        diffuseColor.rgb = mix(diffuseColor.rgb, hatchPaper, 0.72 * stripe);`,
+      );
+  };
+  return material;
 }
 
 function squareRim(): BufferGeometry {
