@@ -8,6 +8,7 @@ import type { Config } from './platform/config/config.js';
 import { readOrMakeSecret } from './platform/config/secret-file.js';
 import { openDatabase } from './platform/db/client.js';
 import { migrateDatabase } from './platform/db/migrate.js';
+import { holdingLock } from './platform/db/named-lock.js';
 import { createId } from './platform/ids/create-id.js';
 import type { Logger } from './platform/logging/logger.js';
 import { openDiskStorage } from './platform/storage/disk-storage.js';
@@ -69,7 +70,10 @@ export async function startServer(
     if (config.seedsDemo)
       await step(
         (wasEmpty: boolean) => (wasEmpty ? 'Demo workshop made' : null),
-        () => seedDemo({ transact: product.transact, storage, clock, createId }),
+        () =>
+          holdingLock(config.databaseUrl, 'seed', () =>
+            seedDemo({ transact: product.transact, storage, clock, createId }),
+          ),
       );
     const app = createApp({
       routes: product.routes,

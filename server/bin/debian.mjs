@@ -1,7 +1,6 @@
 // Installs Debian packages without asking questions. Node built-ins only.
 import { spawnSync } from 'node:child_process';
 import { existsSync } from 'node:fs';
-import { userInfo } from 'node:os';
 import { delimiter, join } from 'node:path';
 
 /** A program that tells whether a package is there, whoever installed it. */
@@ -16,7 +15,7 @@ function isInstalled(name) {
 
 /** Whether we may install: root, and apt is there. */
 export function canInstall() {
-  return userInfo().uid === 0 && existsSync('/usr/bin/apt-get');
+  return process.getuid?.() === 0 && existsSync('/usr/bin/apt-get');
 }
 
 /**

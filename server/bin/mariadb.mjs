@@ -13,7 +13,7 @@ import {
   writeFileSync,
 } from 'node:fs';
 import { connect } from 'node:net';
-import { tmpdir, userInfo } from 'node:os';
+import { tmpdir } from 'node:os';
 import { delimiter, dirname, join } from 'node:path';
 import { freePort } from './ports.mjs';
 import { commandLineOf, endChild, endProcess, isAlive } from './processes.mjs';
@@ -122,7 +122,7 @@ function installOnce(installer, dataDir) {
 }
 
 function asRoot() {
-  return userInfo().uid === 0 ? ['--user=root'] : [];
+  return process.getuid?.() === 0 ? ['--user=root'] : [];
 }
 
 function serverFlags({ dataDir, runDir, initFile, port, throwAway }) {

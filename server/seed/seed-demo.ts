@@ -3,7 +3,6 @@ import { join } from 'node:path';
 import type { EnvelopeData } from '../modules/envelopes/envelopes.model.js';
 import { createModelsService } from '../modules/models/models.service.js';
 import { hashPassword } from '../modules/accounts/passwords.js';
-import { isDuplicate } from '../platform/db/driver-errors.js';
 import type { Transact } from '../platform/db/transaction.js';
 import type { CreateId } from '../platform/ids/create-id.js';
 import type { FileStorage } from '../platform/storage/disk-storage.js';
@@ -63,7 +62,8 @@ interface SeedDependencies {
 
 /**
  * Fills an empty database with the demo workshop: people, envelopes, and models made by code that
- * go the way of every upload. All or nothing; a second server that starts meanwhile finds it done.
+ * go the way of every upload. All or nothing. Two servers must not seed at the same time: the
+ * caller holds a lock.
  * @returns whether there was anything to do
  */
 export async function seedDemo(deps: SeedDependencies): Promise<boolean> {
@@ -85,8 +85,6 @@ export async function seedDemo(deps: SeedDependencies): Promise<boolean> {
   } catch (error) {
     // The rows are rolled back; files must not stay without them.
     await storage.remove(`workshops/${workshopId}`);
-    // Another server has just made the same accounts.
-    if (isDuplicate(error)) return false;
     throw error;
   } finally {
     await rm(making, { recursive: true, force: true });

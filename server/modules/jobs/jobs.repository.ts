@@ -95,8 +95,9 @@ export function createJobsRepository({ db }: { db: Db }) {
       return rows[0] ?? null;
     },
 
+    /** The output is dropped: its record has it now, and it may be large. */
     async markSettled(id: string): Promise<void> {
-      await db.update(jobs).set({ settledAt: now }).where(eq(jobs.id, id));
+      await db.update(jobs).set({ settledAt: now, output: null }).where(eq(jobs.id, id));
     },
 
     /** Settles a job whose result turned out to be unusable. */

@@ -1,23 +1,15 @@
 import { drizzle } from 'drizzle-orm/mysql2';
 import { migrate } from 'drizzle-orm/mysql2/migrator';
-import { createConnection, type RowDataPacket } from 'mysql2/promise';
-
-const LOCK_WAIT_S = 60;
+import type { RowDataPacket } from 'mysql2/promise';
+import { holdingLock } from './named-lock.js';
 
 /**
  * Brings a database to the newest schema. Several servers may start at once: one migrates, the
- * others wait for its lock and then find nothing to do.
+ * others wait and then find nothing to do.
  * @throws Error when the lock cannot be had or a migration fails
  */
-export async function migrateDatabase(url: string, migrationsFolder: string): Promise<void> {
-  const connection = await createConnection({ uri: url, timezone: 'Z', charset: 'utf8mb4' });
-  try {
-    const [locked] = await connection.query<RowDataPacket[]>(
-      "SELECT GET_LOCK(CONCAT('migrate:', DATABASE()), ?) AS got",
-      [LOCK_WAIT_S],
-    );
-    if (locked[0]?.['got'] !== 1)
-      throw new Error(`Another server has been migrating the database for ${LOCK_WAIT_S} s.`);
+export function migrateDatabase(url: string, migrationsFolder: string): Promise<void> {
+  return holdingLock(url, 'migrate', async (connection) => {
     const [charset] = await connection.query<RowDataPacket[]>(
       'SELECT @@character_set_database AS name',
     );
@@ -25,8 +17,5 @@ export async function migrateDatabase(url: string, migrationsFolder: string): Pr
     if (charset[0]?.['name'] !== 'utf8mb4')
       await connection.query('ALTER DATABASE CHARACTER SET utf8mb4 COLLATE utf8mb4_unicode_ci');
     await migrate(drizzle(connection), { migrationsFolder });
-  } finally {
-    // The lock ends with its connection.
-    await connection.end();
-  }
+  });
 }

@@ -1,0 +1,4 @@
+export function claimDataFolder(
+  data: string,
+  address: string,
+): Promise<{ note: (child: { pid?: number | undefined }) => void; letGo: () => void }>;
