@@ -6,7 +6,7 @@ import { readStl } from '../../workers/intake/stl-reader.js';
 import { toSoup } from '../support/shapes.js';
 import { atMost, type BenchTable } from './support/bench-table.js';
 import { benchKnot } from './support/knot-case.js';
-import { median, timeOnce, timeRuns } from './support/stopwatch.js';
+import { median, timeOnce, timeInTurn } from './support/stopwatch.js';
 
 const RUNS = 5;
 const LIMIT = 0.2;
@@ -15,17 +15,20 @@ const LIMIT = 0.2;
 export async function bench(): Promise<BenchTable> {
   const bytes = binaryStl(toSoup(benchKnot(2500, 200)));
   const parseTimes: number[] = [];
-  const ours = await timeRuns(RUNS, () => {
-    const parsed = timeOnce(() => readStl(bytes, 'knot.stl'));
-    parseTimes.push(parsed.ms);
-    return weldTriangles(parsed.result.soup).mesh.positions.length / 3;
-  });
   const theirParseTimes: number[] = [];
-  const theirs = await timeRuns(3, () => {
-    const parsed = timeOnce(() => new STLLoader().parse(bytes.buffer as ArrayBuffer));
-    theirParseTimes.push(parsed.ms);
-    return mergedVertices(parsed.result);
-  });
+  const [ours, theirs] = await timeInTurn(
+    RUNS,
+    () => {
+      const parsed = timeOnce(() => readStl(bytes, 'knot.stl'));
+      parseTimes.push(parsed.ms);
+      return weldTriangles(parsed.result.soup).mesh.positions.length / 3;
+    },
+    () => {
+      const parsed = timeOnce(() => new STLLoader().parse(bytes.buffer as ArrayBuffer));
+      theirParseTimes.push(parsed.ms);
+      return mergedVertices(parsed.result);
+    },
+  );
   const ratio = ours.medianMs / theirs.medianMs;
   const parseMs = median(parseTimes);
   const theirParseMs = median(theirParseTimes);

@@ -3,6 +3,7 @@ import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { type Plane } from '../vectors/plane.js';
 import { cutMesh, type PolygonTriangulator } from './cut-mesh.js';
 import { placeCut } from './place-cut.js';
+import { defaultSnapMm } from './plane-sides.js';
 
 /** Cuts below cuts; the recipe's cut tree is structurally one. */
 export type PlaneTree =
@@ -47,6 +48,8 @@ export interface TreeResult {
  */
 export function applyTree(mesh: TriangleMesh, tree: PlaneTree, options: TreeOptions): TreeResult {
   const total = countCuts(tree);
+  // One measure for all parts, however small they get.
+  const snapMm = defaultSnapMm(mesh.positions);
   const bodies: Body[] = [];
   const offsets: number[] = [];
   const visit = (part: TriangleMesh, node: PlaneTree, path: string): void => {
@@ -57,11 +60,12 @@ export function applyTree(mesh: TriangleMesh, tree: PlaneTree, options: TreeOpti
       }
       return;
     }
-    const plane = placeCut(part, node.plane, options.toleranceMm);
+    const plane = placeCut(part, node.plane, options.toleranceMm, snapMm);
     offsets.push(plane.offset);
     const cut = cutMesh(part, plane, {
       triangulate: options.triangulate,
       capTag: offsets.length,
+      snapMm,
     });
     options.onCut?.(offsets.length, total);
     visit(cut.above, node.above, `${path}a`);

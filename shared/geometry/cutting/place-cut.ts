@@ -7,26 +7,33 @@ import { ABOVE, BELOW, defaultSnapMm, ON, projectedArea, tellSides } from './pla
  * close to a vertex makes edges so short that rounding to float32 can fold them. Among the places
  * that keep `toleranceMm` from every vertex the nearest is taken, else the middle of the widest
  * gap. The plane stays where it is when no vertex is within the tolerance, and when those that are
- * lie exactly on it (1e-9 of the box) and the surface passes through the plane there or ends in it:
+ * lie exactly on it (within `snapMm`) and the surface passes through the plane there or ends in it:
  * a cut along a face or a ring of edges is wanted as it is. Where the surface only touches the
  * plane along an edge, the plane moves too. A plane along faces that are not quite flat moves to
  * their outer side, if there is at least half the room, so that no thin sheet is cut off them; it
  * may miss the mesh there.
+ * @param snapMm half-width of the band that counts as exactly on the plane
  * O(vertices) when it stays free, else O(triangles) and O(n log n) in the vertices that are near.
  */
-export function placeCut(mesh: TriangleMesh, plane: Plane, toleranceMm: number): Plane {
+export function placeCut(
+  mesh: TriangleMesh,
+  plane: Plane,
+  toleranceMm: number,
+  snapMm = defaultSnapMm(mesh.positions),
+): Plane {
   const near = collectNear(mesh.positions, plane, toleranceMm);
   if (near.distances.length === 0 || !(toleranceMm > 0)) return plane;
-  const snapMm = defaultSnapMm(mesh.positions);
   if (near.distances[0] >= -snapMm && near.distances[near.distances.length - 1] <= snapMm) {
     if (!touchesAlongEdge(mesh, plane, snapMm)) return plane;
   }
-  const outwards = Math.sign(shadowOfFaces(mesh, plane, toleranceMm));
+  const outwards = Math.sign(shadowOfFaces(mesh, plane, near.isNear));
   const move = findPlace(near, toleranceMm, outwards);
   return { normal: plane.normal, offset: plane.offset + move };
 }
 
 interface NearVertices {
+  /** 1 for each vertex within the tolerance. */
+  readonly isNear: Uint8Array;
   /** Signed distances within the tolerance, rising, mm. */
   readonly distances: Float64Array;
   /** The next distances on either side of the tolerance; infinite when the mesh ends before. */
@@ -37,6 +44,7 @@ interface NearVertices {
 function collectNear(positions: Float64Array, plane: Plane, toleranceMm: number): NearVertices {
   const [nx, ny, nz] = plane.normal;
   const { offset } = plane;
+  const isNear = new Uint8Array(positions.length / 3);
   let near = new Float64Array(256);
   let count = 0;
   let before = -Infinity;
@@ -54,27 +62,23 @@ function collectNear(positions: Float64Array, plane: Plane, toleranceMm: number)
         near = larger;
       }
       near[count++] = distance;
+      isNear[i / 3] = 1;
     }
   }
-  return { distances: near.subarray(0, count).sort(), before, after };
+  return { isNear, distances: near.subarray(0, count).sort(), before, after };
 }
 
 /**
  * Signed area, mm², that the faces within the tolerance throw onto the plane: above 0 when most of
  * them look along its normal, with the solid below.
  */
-function shadowOfFaces(mesh: TriangleMesh, plane: Plane, toleranceMm: number): number {
-  const { vertices, triangles, counts } = tellSides(mesh, plane, toleranceMm);
+function shadowOfFaces(mesh: TriangleMesh, plane: Plane, isNear: Uint8Array): number {
   const { indices } = mesh;
   let shadow = 0;
-  let left = counts[ABOVE | ON] + counts[BELOW | ON];
-  for (let triangle = 0; left > 0; triangle++) {
-    const code = triangles[triangle];
-    if (code !== (ABOVE | ON) && code !== (BELOW | ON)) continue;
-    left--;
-    const at = 3 * triangle;
-    const corners = vertices[indices[at]] | vertices[indices[at + 1]] | vertices[indices[at + 2]];
-    if (corners === ON) shadow += projectedArea(mesh, triangle, plane.normal);
+  for (let i = 0; i < indices.length; i += 3) {
+    if (isNear[indices[i]] === 0) continue;
+    if (isNear[indices[i + 1]] === 0 || isNear[indices[i + 2]] === 0) continue;
+    shadow += projectedArea(mesh, i / 3, plane.normal);
   }
   return shadow;
 }

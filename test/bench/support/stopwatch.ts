@@ -16,6 +16,26 @@ export async function timeRuns<T>(runs: number, work: () => T | Promise<T>): Pro
   }
 }
 
+/** Runs two works in turn, so that a machine busy with something else slows both alike. */
+export async function timeInTurn<A, B>(
+  runs: number,
+  one: () => A,
+  other: () => B,
+): Promise<[Timing<A>, Timing<B>]> {
+  const times: [number[], number[]] = [[], []];
+  for (;;) {
+    const first = await timeRuns(1, one);
+    const second = await timeRuns(1, other);
+    times[0].push(first.medianMs);
+    times[1].push(second.medianMs);
+    if (times[0].length < runs) continue;
+    return [
+      { medianMs: median(times[0]), result: first.result },
+      { medianMs: median(times[1]), result: second.result },
+    ];
+  }
+}
+
 /** Milliseconds that `work` takes, and what it returns. */
 export function timeOnce<T>(work: () => T): { ms: number; result: T } {
   const start = performance.now();
