@@ -1,5 +1,12 @@
 import { LiveAnnouncer } from '@angular/cdk/a11y';
-import { ChangeDetectionStrategy, Component, computed, inject } from '@angular/core';
+import {
+  ChangeDetectionStrategy,
+  Component,
+  computed,
+  inject,
+  viewChild,
+  type ElementRef,
+} from '@angular/core';
 import { MatButton, MatIconButton } from '@angular/material/button';
 import { MatIcon } from '@angular/material/icon';
 import { MatProgressBar } from '@angular/material/progress-bar';
@@ -28,6 +35,8 @@ export class EnvelopeList {
   private readonly confirmations = inject(Confirmations);
   private readonly notes = inject(FailureNotes);
   private readonly announcer = inject(LiveAnnouncer);
+
+  private readonly heading = viewChild.required<ElementRef<HTMLElement>>('heading');
 
   protected readonly problem = this.store.problem;
   protected readonly isEmpty = this.store.isEmpty;
@@ -63,6 +72,8 @@ export class EnvelopeList {
     if (!isSure) return;
     try {
       await this.store.remove(envelope.id);
+      // The button that had the focus is gone with its row.
+      this.heading().nativeElement.focus();
       await this.announcer.announce(`${envelope.name} is removed.`);
     } catch (failure) {
       // Expected: it was removed elsewhere, or the role changed meanwhile.

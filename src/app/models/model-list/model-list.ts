@@ -5,6 +5,8 @@ import {
   computed,
   effect,
   inject,
+  viewChild,
+  type ElementRef,
   input,
   linkedSignal,
   untracked,
@@ -65,6 +67,8 @@ export class ModelList {
   readonly q = input<string>();
 
   protected readonly query = linkedSignal(() => this.q() ?? '');
+  private readonly heading = viewChild.required<ElementRef<HTMLElement>>('heading');
+
   protected readonly problem = this.store.problem;
   protected readonly isEmpty = this.store.isEmpty;
   protected readonly uploads = this.queue.uploads;
@@ -125,6 +129,8 @@ export class ModelList {
     if (!(await this.confirmations.ask(removalQuestion(model)))) return;
     try {
       await this.store.remove(model.id);
+      // The button that had the focus is gone with its row.
+      this.heading().nativeElement.focus();
       await this.announcer.announce(`${model.name} is removed.`);
     } catch (failure) {
       // Expected: a plan is being made from it, it was removed elsewhere, the role changed.
