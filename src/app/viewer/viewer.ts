@@ -141,11 +141,12 @@ export class Viewer {
       });
       this.watchSize(scene, isPlain);
       this.scene.set(scene);
-    } catch {
-      // Expected: no WebGL 2 in this browser, or the chunk could not be fetched.
-      this.trouble.set(
-        'This browser cannot draw the picture: WebGL 2 is missing or turned off. All numbers on this page hold without it.',
-      );
+    } catch (error) {
+      // Expected: no WebGL 2 in this browser, or the scene's code could not be fetched.
+      // Its class is known by name only: the code that has it is not loaded with the page.
+      const isMissing = error instanceof Error && error.name === 'WebGlMissing';
+      const reason = isMissing ? error.message : 'The picture could not be started.';
+      this.trouble.set(`${reason} All numbers on this page hold without it.`);
     }
   }
 

@@ -40,6 +40,12 @@ import { type ProofRow } from '../../../../shared/jobs/plan-make.js';
     :host {
       display: block;
     }
+    /* A caption in a table that is no table any more would be as narrow as a letter. */
+    @media (max-width: 700px) {
+      caption {
+        display: block;
+      }
+    }
     td,
     th {
       vertical-align: middle;

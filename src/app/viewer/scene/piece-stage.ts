@@ -155,9 +155,12 @@ export class PieceStage {
     return box;
   }
 
-  /** Points that stand for the outline of everything that is shown, where it belongs. */
-  shownPoints(): Vector3[] {
-    if (this.isOnBed()) return cornersOf(this.shownBox());
+  /**
+   * Points that stand for the outline of everything that is shown, where it belongs.
+   * @param asBox whether the corners of its box are meant, as for dimensions along it
+   */
+  shownPoints(asBox: boolean): Vector3[] {
+    if (asBox || this.isOnBed()) return cornersOf(this.shownBox());
     return this._bodies.flatMap((body) => {
       const { position } = this.poses.get(body) ?? identityPose();
       return body.outlinePoints.map((point) => point.clone().add(position));
@@ -242,6 +245,7 @@ export class PieceStage {
 }
 
 function cornersOf(box: Box3): Vector3[] {
+  if (box.isEmpty()) return [];
   const { min, max } = box;
   return [min.x, max.x].flatMap((x) =>
     [min.y, max.y].flatMap((y) => [min.z, max.z].map((z) => new Vector3(x, y, z))),

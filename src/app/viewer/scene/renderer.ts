@@ -2,8 +2,9 @@ import { WebGLRenderer } from 'three';
 
 /** Thrown when the browser gives no WebGL2 context; the numbers of a page must serve without it. */
 export class WebGlMissing extends Error {
+  override readonly name = 'WebGlMissing';
   constructor() {
-    super('This browser cannot draw 3D pictures: WebGL 2 is missing or turned off.');
+    super('This browser cannot draw the picture: WebGL 2 is missing or turned off.');
   }
 }
 

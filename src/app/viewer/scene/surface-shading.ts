@@ -1,3 +1,5 @@
+import { drawableEdges } from './edge-chains';
+
 /** A surface ready to be drawn: corners split where the surface has an edge. */
 export interface ShadedSurface {
   /** Flat xyz, three corners a triangle, not shared. */
@@ -253,16 +255,24 @@ function creaseLines(
     if (corners[edge] === corners[nextCorner(edge)]) continue;
     edges.push(edge);
   }
+  const ends = new Uint32Array(edges.length * 2);
+  const lengths = new Float32Array(edges.length);
   const lines = new Float32Array(edges.length * 6);
   edges.forEach((edge, index) => {
+    ends[index * 2] = corners[edge]!;
+    ends[index * 2 + 1] = corners[nextCorner(edge)]!;
     const from = indices[edge]! * 3;
     const to = indices[nextCorner(edge)]! * 3;
+    let squared = 0;
     for (let axis = 0; axis < 3; axis++) {
       lines[index * 6 + axis] = positions[from + axis]!;
       lines[index * 6 + 3 + axis] = positions[to + axis]!;
+      squared += (positions[to + axis]! - positions[from + axis]!) ** 2;
     }
+    lengths[index] = Math.sqrt(squared);
   });
-  return lines;
+  const drawn = drawableEdges(ends, lengths, positions.length / 3, extentOf(positions));
+  return lines.filter((_value, at) => drawn[Math.floor(at / 6)] === 1);
 }
 
 function expand(positions: Float32Array, indices: Uint32Array): Float32Array {

@@ -181,7 +181,7 @@ export class ViewerScene {
     const box = this.stage.shownBox();
     if (box.isEmpty() || this.size.widthPx === 0) return;
     this.rig.setReach(box);
-    const to = this.rig.framingOf(this.stage.shownPoints());
+    const to = this.rig.framingOf(this.stage.shownPoints(this.hasDimensions));
     this.framings = { from: this.rig.framing(), to };
     if (!smoothly || !this.glide.start(performance.now())) {
       this.glide.stop();
@@ -237,7 +237,8 @@ export class ViewerScene {
    * so that going there and back ends where it began.
    */
   private keepCloseness(change: () => void): void {
-    const fitting = () => this.rig.framingOf(this.stage.shownPoints()).pixelsPerMm;
+    const fitting = () =>
+      this.rig.framingOf(this.stage.shownPoints(this.hasDimensions)).pixelsPerMm;
     const closeness = this.rig.pixelsPerMm / fitting();
     change();
     this.rig.zoomTo(closeness * fitting());
