@@ -6,7 +6,7 @@ import { ABOVE, BELOW, defaultSnapMm, ON, tellSides } from './plane-sides.js';
 import { capSection, flattenNodes, type PolygonTriangulator } from './section-cap.js';
 import { linkSection } from './section-links.js';
 import { placeSectionNodes } from './section-nodes.js';
-import { collectSide } from './side-mesh.js';
+import { collectSide, numberOwnVertices } from './side-mesh.js';
 
 export { type PolygonTriangulator } from './section-cap.js';
 
@@ -56,7 +56,8 @@ export function cutMesh(mesh: TriangleMesh, plane: Plane, options: CutOptions): 
   const xy = flattenNodes(nodes, planeFrame(plane.normal));
   const loops = chainLoops(links.from, links.to, links.count, xy);
   const cap = capSection(loops, xy, options.triangulate);
-  const parts = { mesh, sides, nodes, cap: cap.triangles, capTag: options.capTag };
+  const numbers = numberOwnVertices(sides.vertices);
+  const parts = { mesh, sides, nodes, cap: cap.triangles, capTag: options.capTag, numbers };
   return {
     above: collectSide(parts, ABOVE),
     below: collectSide(parts, BELOW),

@@ -1,6 +1,7 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { type Plane } from '../vectors/plane.js';
 import { ABOVE, BELOW, defaultSnapMm, ON, projectedArea, tellSides } from './plane-sides.js';
+import { bytes, Scratch } from './scratch.js';
 
 /**
  * Moves a plane along its normal, by at most `toleranceMm`, away from the mesh's vertices: a cut
@@ -41,10 +42,12 @@ interface NearVertices {
   readonly after: number;
 }
 
+const nearFlags = new Scratch(bytes);
+
 function collectNear(positions: Float64Array, plane: Plane, toleranceMm: number): NearVertices {
   const [nx, ny, nz] = plane.normal;
   const { offset } = plane;
-  const isNear = new Uint8Array(positions.length / 3);
+  const isNear = nearFlags.take(positions.length / 3).fill(0);
   let near = new Float64Array(256);
   let count = 0;
   let before = -Infinity;

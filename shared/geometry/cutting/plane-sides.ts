@@ -1,6 +1,7 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { boundingBox } from '../mesh/measure.js';
 import { type Plane, type Vector3 } from '../vectors/plane.js';
+import { bytes, Scratch } from './scratch.js';
 
 /** Side of a vertex. A triangle's code is its vertices' sides joined by "or". */
 export const BELOW = 1;
@@ -29,12 +30,18 @@ export function defaultSnapMm(positions: Float64Array): number {
   return SNAP_SHARE * Math.max(size[0], size[1], size[2]);
 }
 
-/** Tells the sides of every vertex and triangle. O(vertices + triangles). */
+const vertexSides = new Scratch(bytes);
+const triangleCodes = new Scratch(bytes);
+
+/**
+ * Tells the sides of every vertex and triangle. O(vertices + triangles). The result is valid until
+ * the next call.
+ */
 export function tellSides(mesh: TriangleMesh, plane: Plane, snapMm: number): Sides {
   const { positions, indices } = mesh;
   const [nx, ny, nz] = plane.normal;
   const { offset } = plane;
-  const vertices = new Uint8Array(positions.length / 3);
+  const vertices = vertexSides.take(positions.length / 3);
   let onVertices = 0;
   for (let vertex = 0, i = 0; vertex < vertices.length; vertex++, i += 3) {
     const distance = nx * positions[i] + ny * positions[i + 1] + nz * positions[i + 2] - offset;
@@ -45,7 +52,7 @@ export function tellSides(mesh: TriangleMesh, plane: Plane, snapMm: number): Sid
       onVertices++;
     }
   }
-  const triangles = new Uint8Array(indices.length / 3);
+  const triangles = triangleCodes.take(indices.length / 3);
   const counts = new Uint32Array(8);
   for (let triangle = 0, i = 0; triangle < triangles.length; triangle++, i += 3) {
     let code = vertices[indices[i]] | vertices[indices[i + 1]] | vertices[indices[i + 2]];

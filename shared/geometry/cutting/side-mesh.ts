@@ -1,5 +1,6 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
-import { type ABOVE, BELOW, ON, type Sides } from './plane-sides.js';
+import { ABOVE, BELOW, ON, type Sides } from './plane-sides.js';
+import { integers, Scratch } from './scratch.js';
 import { type SectionNodes } from './section-nodes.js';
 
 /** The cut's data as both sides need it. */
@@ -10,6 +11,29 @@ export interface CutParts {
   /** Node triples, counter-clockwise seen from above. */
   readonly cap: Uint32Array;
   readonly capTag: number;
+  readonly numbers: OwnNumbers;
+}
+
+/** Numbers of the vertices off the plane, each on its own side. */
+export interface OwnNumbers {
+  readonly numberOf: Int32Array;
+  readonly above: number;
+  readonly below: number;
+}
+
+const vertexNumbers = new Scratch(integers);
+
+/** Numbers the vertices of both sides, in their order. The result is valid until the next call. */
+export function numberOwnVertices(vertexSides: Uint8Array): OwnNumbers {
+  const numberOf = vertexNumbers.take(vertexSides.length);
+  let above = 0;
+  let below = 0;
+  for (let vertex = 0; vertex < vertexSides.length; vertex++) {
+    const side = vertexSides[vertex];
+    if (side === ABOVE) numberOf[vertex] = above++;
+    else if (side === BELOW) numberOf[vertex] = below++;
+  }
+  return { numberOf, above, below };
 }
 
 /** Corners of the part of a crossing triangle on one side: at most four. */
@@ -22,16 +46,19 @@ const corners = new Int32Array(4);
  */
 export function collectSide(parts: CutParts, side: typeof ABOVE | typeof BELOW): TriangleMesh {
   const { mesh, sides, nodes, cap, capTag } = parts;
-  const own = numberOwnVertices(sides.vertices, side);
-  const section = new SectionNumbers(nodes, own.count);
+  const { numberOf } = parts.numbers;
+  const section = new SectionNumbers(
+    nodes,
+    side === ABOVE ? parts.numbers.above : parts.numbers.below,
+  );
   const triangles = countTriangles(parts, side) + cap.length / 3;
   const indices = new Uint32Array(3 * triangles);
   const tags = new Int32Array(triangles);
-  copyOwnTriangles(mesh.indices, sides.triangles, side, own.numberOf, indices);
+  copyOwnTriangles(mesh.indices, sides.triangles, side, numberOf, indices);
   if (mesh.tags !== undefined) copyOwnTags(mesh.tags, sides.triangles, side, tags);
   let filled = 3 * sides.counts[side];
   const append = (triangle: number, crossing: number) => {
-    const found = findCorners(parts, triangle, side, crossing, own, section);
+    const found = findCorners(parts, triangle, side, crossing, section);
     for (let corner = 2; corner < found; corner++) {
       if (mesh.tags !== undefined) tags[filled / 3] = mesh.tags[triangle];
       indices[filled++] = corners[0];
@@ -83,20 +110,6 @@ function copyOwnTags(from: Int32Array, codes: Uint8Array, side: number, to: Int3
   }
 }
 
-interface OwnVertices {
-  readonly numberOf: Int32Array;
-  readonly count: number;
-}
-
-function numberOwnVertices(vertexSides: Uint8Array, side: number): OwnVertices {
-  const numberOf = new Int32Array(vertexSides.length);
-  let count = 0;
-  for (let vertex = 0; vertex < vertexSides.length; vertex++) {
-    if (vertexSides[vertex] === side) numberOf[vertex] = count++;
-  }
-  return { numberOf, count };
-}
-
 function copyOwnPositions(
   from: Float64Array,
   vertexSides: Uint8Array,
@@ -131,18 +144,17 @@ function countTriangles({ mesh, sides, nodes }: CutParts, side: number): number 
  * @param crossing place in the list of crossing triangles; -1 for one that only touches the plane
  */
 function findCorners(
-  { mesh, sides, nodes }: CutParts,
+  { mesh, sides, nodes, numbers }: CutParts,
   triangle: number,
   side: number,
   crossing: number,
-  own: OwnVertices,
   section: SectionNumbers,
 ): number {
   let found = 0;
   for (let corner = 0; corner < 3; corner++) {
     const vertex = mesh.indices[3 * triangle + corner];
     const vertexSide = sides.vertices[vertex];
-    if (vertexSide === side) corners[found++] = own.numberOf[vertex];
+    if (vertexSide === side) corners[found++] = numbers.numberOf[vertex];
     else if (vertexSide === ON && nodes.nodeOfVertex !== null) {
       corners[found++] = section.numberOf(nodes.nodeOfVertex[vertex]);
     }

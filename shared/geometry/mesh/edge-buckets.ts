@@ -1,20 +1,19 @@
 /**
  * The directed edges of triangles, grouped by the smaller of their two vertices, so that every
  * edge meets its partners within one group: linear time, however many triangles share a vertex.
- * Directed edge e runs from corner e to the next corner of triangle floor(e / 3).
  */
 export interface EdgeBuckets {
   /** Length vertexCount + 1: the edges of smaller vertex v are bucket[start[v]] .. < start[v + 1]. */
   readonly start: Uint32Array;
   /** Larger vertex × 2, plus 1 when the edge runs from the larger to the smaller. */
   readonly far: Uint32Array;
-  /** Directed edge numbers, only when asked for. */
-  readonly edge: Uint32Array | null;
+  /** Triangle of each edge, only when asked for. */
+  readonly triangle: Uint32Array | null;
   readonly vertexCount: number;
 }
 
-/** Groups edges by counting sort, O(triangles); 24 bytes a triangle, 36 with edge numbers. */
-export function bucketEdges(indices: Uint32Array, withEdges: boolean): EdgeBuckets {
+/** Groups edges by counting sort, O(triangles); 24 bytes a triangle, 36 with triangles. */
+export function bucketEdges(indices: Uint32Array, withTriangles: boolean): EdgeBuckets {
   let last = -1;
   for (let i = 0; i < indices.length; i++) if (indices[i] > last) last = indices[i];
   const vertexCount = last + 1;
@@ -33,16 +32,22 @@ export function bucketEdges(indices: Uint32Array, withEdges: boolean): EdgeBucke
     start[vertex] = sum;
   }
   const far = new Uint32Array(indices.length);
-  const edge = withEdges ? new Uint32Array(indices.length) : null;
+  const triangle = withTriangles ? new Uint32Array(indices.length) : null;
   // Backwards, so that each group keeps the order of the triangles.
-  for (let i = indices.length - 3; i >= 0; i -= 3) {
-    for (let corner = 2; corner >= 0; corner--) {
-      const from = indices[i + corner];
-      const to = indices[corner === 2 ? i : i + corner + 1];
-      const slot = from < to ? --start[from] : --start[to];
-      far[slot] = from < to ? 2 * to : 2 * from + 1;
-      if (edge !== null) edge[slot] = i + corner;
-    }
+  for (let t = indices.length / 3 - 1, i = 3 * t; t >= 0; t--, i -= 3) {
+    const a = indices[i];
+    const b = indices[i + 1];
+    const c = indices[i + 2];
+    const last = c < a ? --start[c] : --start[a];
+    far[last] = c < a ? 2 * a : 2 * c + 1;
+    const middle = b < c ? --start[b] : --start[c];
+    far[middle] = b < c ? 2 * c : 2 * b + 1;
+    const first = a < b ? --start[a] : --start[b];
+    far[first] = a < b ? 2 * b : 2 * a + 1;
+    if (triangle === null) continue;
+    triangle[last] = t;
+    triangle[middle] = t;
+    triangle[first] = t;
   }
-  return { start, far, edge, vertexCount };
+  return { start, far, triangle, vertexCount };
 }

@@ -13,17 +13,17 @@ export interface Shells {
  */
 export function connectedShells(mesh: { readonly indices: Uint32Array }): Shells {
   const triangles = mesh.indices.length / 3;
-  const { start, far, edge, vertexCount } = bucketEdges(mesh.indices, true);
+  const { start, far, triangle: triangleAt, vertexCount } = bucketEdges(mesh.indices, true);
   const parent = new Int32Array(triangles);
   for (let triangle = 0; triangle < triangles; triangle++) parent[triangle] = triangle;
   /** Triangle, + 1, last seen on the edge to each larger vertex, valid within one bucket. */
   const seen = new Int32Array(vertexCount);
-  if (edge !== null) {
+  if (triangleAt !== null) {
     for (let vertex = 0; vertex < vertexCount; vertex++) {
       const end = start[vertex + 1];
       for (let i = start[vertex]; i < end; i++) {
         const other = far[i] >>> 1;
-        const triangle = (edge[i] / 3) | 0;
+        const triangle = triangleAt[i];
         if (seen[other] > 0) unite(parent, seen[other] - 1, triangle);
         else seen[other] = triangle + 1;
       }

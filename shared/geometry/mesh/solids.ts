@@ -11,7 +11,8 @@ export { connectedShells, shellVolumes } from './shells.js';
  * smallest shell that contains it; one inside no shell (a body turned inside out) and a shell of
  * no volume stand alone. A mesh of one shell is returned as it is.
  * @returns solids by falling |volume|, equal ones by their boxes: first the smaller minimum along x,
- *   then y, then z. Triangles and vertices keep their order.
+ *   then y, then z. Triangles keep their order; vertices
+ *   are numbered in order of use.
  * O(triangles), plus one scan of the enclosing shells a cavity.
  */
 export function splitIntoSolids(mesh: TriangleMesh): TriangleMesh[] {
@@ -163,30 +164,30 @@ function extract(
   groupUsing: Int32Array,
   vertices: Uint32Array,
 ): TriangleMesh {
-  let used = 0;
-  for (let i = 0; i < list.length; i++) {
-    for (let corner = 0; corner < 3; corner++) {
-      const vertex = mesh.indices[3 * list[i] + corner];
-      if (groupUsing[vertex] === group) continue;
-      groupUsing[vertex] = group;
-      vertices[used++] = vertex;
-    }
-  }
-  const own = vertices.slice(0, used).sort();
-  const positions = new Float64Array(3 * used);
-  for (let i = 0; i < used; i++) {
-    numberOf[own[i]] = i;
-    positions[3 * i] = mesh.positions[3 * own[i]];
-    positions[3 * i + 1] = mesh.positions[3 * own[i] + 1];
-    positions[3 * i + 2] = mesh.positions[3 * own[i] + 2];
-  }
   const indices = new Uint32Array(3 * list.length);
   const tags = new Int32Array(list.length);
-  for (let i = 0; i < list.length; i++) {
-    indices[3 * i] = numberOf[mesh.indices[3 * list[i]]];
-    indices[3 * i + 1] = numberOf[mesh.indices[3 * list[i] + 1]];
-    indices[3 * i + 2] = numberOf[mesh.indices[3 * list[i] + 2]];
-    if (mesh.tags !== undefined) tags[i] = mesh.tags[list[i]];
+  let used = 0;
+  for (let i = 0, at = 0; i < list.length; i++) {
+    const first = 3 * list[i];
+    for (let corner = first; corner < first + 3; corner++) {
+      const vertex = mesh.indices[corner];
+      if (groupUsing[vertex] !== group) {
+        groupUsing[vertex] = group;
+        numberOf[vertex] = used;
+        vertices[used++] = vertex;
+      }
+      indices[at++] = numberOf[vertex];
+    }
+  }
+  if (mesh.tags !== undefined) {
+    for (let i = 0; i < list.length; i++) tags[i] = mesh.tags[list[i]];
+  }
+  const positions = new Float64Array(3 * used);
+  for (let i = 0, at = 0; i < used; i++) {
+    const from = 3 * vertices[i];
+    positions[at++] = mesh.positions[from];
+    positions[at++] = mesh.positions[from + 1];
+    positions[at++] = mesh.positions[from + 2];
   }
   return { positions, indices, tags };
 }
