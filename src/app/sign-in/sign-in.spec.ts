@@ -9,6 +9,9 @@ import { SessionStore } from '../core/auth/session-store';
 import { ApiFailure } from '../core/http/api-failure';
 import { SignIn } from './sign-in';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 const accounts = [
   { email: 'ada@demo.invalid', password: 'demo', role: 'designer', name: 'Ada Larch' },
 ];

@@ -7,6 +7,9 @@ import { SessionStore } from '../auth/session-store';
 import { Shell } from './shell';
 import { ThemeStore } from './theme-store';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 async function setUp() {
   localStorage.clear();
   const signOut = vi.fn(() => Promise.resolve());

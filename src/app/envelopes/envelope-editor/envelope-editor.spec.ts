@@ -12,6 +12,9 @@ import { EnvelopesStore } from '../envelopes-store';
 import { makeRound } from '../testing/envelope-fixtures';
 import { EnvelopeEditor } from './envelope-editor';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 async function setUp(setting: {
   envelopeId?: string;
   mayWrite?: boolean;

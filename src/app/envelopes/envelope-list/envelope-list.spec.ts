@@ -10,6 +10,9 @@ import { EnvelopesStore } from '../envelopes-store';
 import { makeRectangular, makeRound } from '../testing/envelope-fixtures';
 import { EnvelopeList } from './envelope-list';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 async function setUp(setting: {
   mayWrite: boolean;
   envelopes: readonly EnvelopeResponse[];

@@ -15,6 +15,9 @@ import { idOf, makeModel } from '../testing/model-fixtures';
 import { UploadQueue } from '../upload-queue';
 import { ModelList } from './model-list';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 const heron = makeModel({ id: idOf('heron'), name: 'Heron' }, { scaleConfirmed: false });
 const bell = makeModel(
   { id: idOf('bell'), name: 'Harbour bell', planCount: 2 },

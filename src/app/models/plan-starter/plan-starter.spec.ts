@@ -7,6 +7,9 @@ import { MatSelectHarness } from '@angular/material/select/testing';
 import { makeRectangular, makeRound } from '../../envelopes/testing/envelope-fixtures';
 import { PlanStarter, type PlanOrder } from './plan-starter';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 const bench = makeRectangular({ id: 'bench'.padEnd(20, '0'), name: 'Bench' });
 const tall = makeRound({ id: 'tall'.padEnd(20, '0'), name: 'Tall' });
 

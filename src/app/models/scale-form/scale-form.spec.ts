@@ -7,6 +7,9 @@ import { MatRadioButtonHarness } from '@angular/material/radio/testing';
 import { type ModelScale } from '../../../../shared/api/model-scale.js';
 import { ScaleForm } from './scale-form';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 async function setUp(inputs: Record<string, unknown> = {}) {
   const fixture = TestBed.createComponent(ScaleForm);
   const all = {

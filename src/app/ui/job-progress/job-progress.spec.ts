@@ -5,6 +5,9 @@ import { MatProgressBarHarness } from '@angular/material/progress-bar/testing';
 import { type JobResponse } from '../../../../shared/api/jobs.contract.js';
 import { JobProgress } from './job-progress';
 
+// The first test compiles the templates, which takes its time on a busy machine.
+vi.setConfig({ testTimeout: 30_000 });
+
 const job: JobResponse = {
   id: 'j'.repeat(20),
   kind: 'plan.make',
