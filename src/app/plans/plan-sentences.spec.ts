@@ -22,6 +22,13 @@ describe('boundsSentence', () => {
     expect(boundsSentence(7, { ...bounds, reason: '' })).toContain('fewer than 4; the best');
   });
 
+  it('claims no bound where none was found', () => {
+    const found = { ...bounds, pieces: 1, reason: 'Nothing asks for more than one piece.' };
+    expect(boundsSentence(3, found)).toBe(
+      '3 pieces; that fewer cannot do is not proved, because nothing asks for more than one piece; the best axis grid makes 12.',
+    );
+  });
+
   it('says that there is nothing to cut', () => {
     expect(boundsSentence(1, { ...bounds, pieces: 1 })).toBe(
       'The model fits as it is; there is nothing to cut.',

@@ -7,10 +7,9 @@ import { writeLengthMm, writeSizeMm } from '../ui/format/quantities';
 export function boundsSentence(pieces: number, bounds: PlanOutput['bounds']): string {
   if (pieces === 1) return 'The model fits as it is; there is nothing to cut.';
   const reason = asClause(bounds.reason);
-  const least =
-    bounds.pieces >= pieces
-      ? `no plan can have fewer${reason}`
-      : `no plan can have fewer than ${bounds.pieces}${reason}`;
+  let least = `no plan can have fewer than ${bounds.pieces}${reason}`;
+  if (bounds.pieces >= pieces) least = `no plan can have fewer${reason}`;
+  else if (bounds.pieces <= 1) least = `that fewer cannot do is not proved${reason}`;
   return `${pieces} pieces; ${least}; the best axis grid makes ${bounds.gridPieces}.`;
 }
 

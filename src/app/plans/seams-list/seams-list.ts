@@ -35,12 +35,6 @@ const LEAST_CM2 = 100;
     :host {
       display: block;
     }
-    /* A caption in a table that is no table any more would be as narrow as a letter. */
-    @media (max-width: 700px) {
-      caption {
-        display: block;
-      }
-    }
     .selected td {
       font-weight: 500;
       box-shadow: inset 0 -1px 0 var(--sw-seam);

@@ -10,7 +10,7 @@ const DISTANCE = 6;
 /** Share of the picture that a fitted object may fill; the rest is for balloons or dimensions. */
 const fills = {
   usual: { width: 0.72, height: 0.86 },
-  wide: { width: 0.64, height: 0.68 },
+  wide: { width: 0.7, height: 0.76 },
 } as const;
 export type PictureMargin = keyof typeof fills;
 
