@@ -35,19 +35,32 @@ const NODE_SPACING = 0.14;
 /** Dividing cuts kept per direction. */
 const DIVIDING_CUTS = 3;
 
-/** Sweeps one body of a part along all its directions; returns cuts, the most promising first. */
+export interface SweptCuts {
+  /** The most promising first. */
+  readonly cuts: CutCandidate[];
+  /** Inner-loop steps that the sweeps took, for budgets. */
+  readonly work: number;
+}
+
+/** Steps per triangle of a sweep, in units of one comparison of a node with one extent. */
+const STEPS_PER_FACE = 12;
+
+/** Sweeps one body of a part along all its directions. */
 export function cutCandidates(
   part: PlanPart,
   body: PlanBody,
   space: SearchSpace,
   weights: CutWeights,
   random: () => number,
-): CutCandidate[] {
+): SweptCuts {
   const fit = space.aimFrames;
   const nodes = bodyNodes(body.mesh, body.outer, fit, NODE_SPACING * Math.min(...space.cell));
   const faces = bodyFaces(body.mesh);
   const found: CutCandidate[] = [];
+  const perSweep = nodes.count * fit.axisCount + STEPS_PER_FACE * faces.areas.length;
+  let work = 0;
   for (const normal of sweepDirections(body.mesh, random)) {
+    work += perSweep;
     const [low, high] = rangeAlong(body.mesh.positions, normal);
     const offsets = sweepOffsets(low, high, space.cell);
     if (offsets.length === 0) continue;
@@ -56,7 +69,7 @@ export function cutCandidates(
       ...judgeSweep(tables, { part, body, space, weights, nodes, surfaceMm2: faces.surfaceMm2 }),
     );
   }
-  return found.sort((a, b) => a.score - b.score);
+  return { cuts: found.sort((a, b) => a.score - b.score), work };
 }
 
 interface Judging {

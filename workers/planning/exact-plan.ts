@@ -6,9 +6,8 @@ import {
 } from '../../shared/geometry/cutting/apply-tree.js';
 import { type PolygonTriangulator } from '../../shared/geometry/cutting/cut-mesh.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
-import { candidateDowns } from '../../shared/geometry/fitting/candidate-downs.js';
-import { layOnBed } from '../../shared/geometry/fitting/lay-on-bed.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
+import { poseExactly } from './pose-exactly.js';
 import { type PlanNode } from './plan-node.js';
 
 /** A tree applied to the exact model. */
@@ -40,7 +39,7 @@ export function cutExactly(tree: PlaneTree, cutting: ExactCutting): ExactPlan {
   const over: { body: Body; byMm: number }[] = [];
   for (const [k, body] of bodies.entries()) {
     onStep(0.6 + (0.4 * k) / bodies.length);
-    const pose = layOnBed(body.mesh.positions, space, candidateDowns(body.mesh));
+    const pose = poseExactly(body.mesh, space);
     if (!pose.fits) over.push({ body, byMm: -pose.slackMm });
   }
   return { tree, bodies, offsets, over };

@@ -1,13 +1,11 @@
-import { restingDirections } from '../../shared/geometry/fitting/candidate-downs.js';
-import { convexHull3d, cornerPoints } from '../../shared/geometry/fitting/convex-hull-3d.js';
-import { layOnBed } from '../../shared/geometry/fitting/lay-on-bed.js';
+import { outerVertices } from '../../shared/geometry/fitting/outer-vertices.js';
 import { boundingBox, signedVolume } from '../../shared/geometry/mesh/measure.js';
 import { splitIntoSolids } from '../../shared/geometry/mesh/solids.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { cutMesh } from '../../shared/geometry/cutting/cut-mesh.js';
 import { type Plane } from '../../shared/geometry/vectors/plane.js';
-import { outerVertices } from './body-nodes.js';
 import { cellsInFrames, extentsOf, roomInFrames } from './fit-frames.js';
+import { poseExactly } from './pose-exactly.js';
 import { type SearchSpace } from './search-space.js';
 import { signedFan } from './signed-fan.js';
 
@@ -138,20 +136,10 @@ function measureBody(mesh: TriangleMesh, space: SearchSpace): PlanBody {
     extentsOf(fitFrames, mesh.positions, low, high);
     room = roomInFrames(fitFrames, low, high);
   }
-  const fits = room >= 0 || (isNear(room, space) && fitsExactly(mesh, outer, space));
+  const fits = room >= 0 || (isNear(room, space) && poseExactly(mesh, space.fit, outer).fits);
   return { mesh, outer, volumeMm3: signedVolume(mesh), fits, cells: fits ? 1 : cells };
 }
 
 function isNear(room: number, { cell }: SearchSpace): boolean {
   return room > -NEAR_SHARE * Math.min(...cell);
-}
-
-/** The test that the finished pieces will have to pass; the outer vertices alone come first. */
-function fitsExactly(mesh: TriangleMesh, outer: Float64Array, space: SearchSpace): boolean {
-  const hull = convexHull3d(outer);
-  const { standing, others } = restingDirections(mesh, outer, hull);
-  const downs = [...standing, ...others];
-  const pose = layOnBed(cornerPoints(outer, hull), space.fit, downs);
-  if (!pose.fits || outer === mesh.positions) return pose.fits;
-  return layOnBed(mesh.positions, space.fit, [pose.down, ...downs]).fits;
 }

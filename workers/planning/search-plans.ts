@@ -10,8 +10,8 @@ import { TreeSearch, type TreeSearchOptions } from './tree-search.js';
 
 /** Cuts tried at every node of the plan that is being improved, pass after pass. */
 const IMPROVE_WIDTHS = [5, 10, 20];
-/** Triangles swept or cut in one search: about three seconds on one core of 2024. */
-const WORK_BUDGET = 10e6;
+/** Inner-loop steps of one search: about three seconds on one core of 2024. */
+const WORK_BUDGET = 0.6e9;
 
 export interface FoundPlans {
   /** Plans on the proxy, the best first. */

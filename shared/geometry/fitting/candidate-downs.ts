@@ -1,6 +1,7 @@
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { type Vector3 } from '../vectors/plane.js';
 import { type ConvexHull, convexHull3d, cornerPoints } from './convex-hull-3d.js';
+import { outerVertices } from './outer-vertices.js';
 import { principalAxes } from './principal-axes.js';
 
 /** Faces whose normal is steeper than this below the horizon need support: sin 45°. */
@@ -47,12 +48,13 @@ export function candidateDowns(mesh: TriangleMesh, limit = 80): Vector3[] {
 /**
  * The same directions without an order of preference: enough to ask whether a piece fits at all.
  * `standing`: cut faces, large hull faces, coordinate axes; `others`: the rest.
- * @param points stand for the mesh's hull; its own vertices by default
+ * @param points stand for the mesh's hull; by default a selection of its vertices, so that a dense
+ *   mesh costs no more than a light one
  * @param hull of these points, when it is known already
  */
 export function restingDirections(
   mesh: TriangleMesh,
-  points: Float64Array = mesh.positions,
+  points: Float64Array = outerVertices(mesh.positions),
   hull: ConvexHull | null = convexHull3d(points),
 ): { standing: Vector3[]; others: Vector3[] } {
   const found = new DirectionSet();

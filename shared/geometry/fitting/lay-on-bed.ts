@@ -8,6 +8,9 @@ import { bedDiagonal, spaceDiagonal } from './space-measures.js';
 /** A piece may be over by this much and still counts as fitting: rounding of doubles, mm. */
 export const FIT_TOLERANCE_MM = 1e-6;
 
+/** For fewer resting directions, reducing the points to their hull first costs more than it saves. */
+const HULL_PAYS_FROM = 4;
+
 export interface BedPose {
   /**
    * From the assembled model to the bed: the piece rests on z = 0, centred on the bed; x in
@@ -36,7 +39,7 @@ export function layOnBed(
   space: BuildSpace,
   downs: readonly Vector3[],
 ): BedPose {
-  const support = supportPoints(points);
+  const support = downs.length >= HULL_PAYS_FROM ? supportPoints(points) : points;
   const tried: readonly Vector3[] = downs.length > 0 ? downs : [[0, 0, -1]];
   let best: BedPose | null = null;
   for (const down of tried) {
