@@ -48,6 +48,9 @@ export function findAnchor(
 
 /** Whether a body lies on the current ray. */
 function blocks(body: PieceBody): boolean {
+  const sphere = body.mesh.geometry.boundingSphere!;
+  world.copy(sphere.center).applyMatrix4(body.group.matrixWorld);
+  if (ray.distanceSqToPoint(world) > sphere.radius * sphere.radius) return false;
   inverse.copy(body.group.matrixWorld).invert();
   localRay.copy(ray).applyMatrix4(inverse);
   if (!localRay.intersectsBox(body.mesh.geometry.boundingBox!)) return false;

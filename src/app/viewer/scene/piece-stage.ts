@@ -17,6 +17,8 @@ export type SceneView = 'whole' | 'bed';
 
 /** Share of the model's height between the model and the ground, so that faces do not fight. */
 const GROUND_GAP_SHARE = 2e-3;
+/** Drawn seams keep this near to the true ones, as a share of the model: half a pixel in full view. */
+const SEAM_TOLERANCE_SHARE = 5e-4;
 const EDGE_WIDTH_PX = 1.2;
 /** Edges stay darker than the pieces on a dark sheet too. */
 const darkEdges = '#0b0e11';
@@ -75,7 +77,8 @@ export class PieceStage {
       this.root.add(body.group);
       this.modelBox.union(body.mesh.geometry.boundingBox!);
     }
-    this.seams = new SeamLines(seams, (name) => this.bodyOf(name)?.group);
+    const toleranceMm = longestSide(this.modelBox) * SEAM_TOLERANCE_SHARE;
+    this.seams = new SeamLines(seams, toleranceMm, (name) => this.bodyOf(name)?.group);
     this.applyTheme();
     this.aim();
     this.advance(1);

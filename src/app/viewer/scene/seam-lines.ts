@@ -2,6 +2,7 @@ import { type Group } from 'three';
 import { LineMaterial } from 'three/addons/lines/LineMaterial.js';
 import { LineSegments2 } from 'three/addons/lines/LineSegments2.js';
 import { LineSegmentsGeometry } from 'three/addons/lines/LineSegmentsGeometry.js';
+import { simplifyLines } from './simplify-lines';
 import { type SceneSeam } from './view-parts';
 
 const WIDTH_PX = 2.2;
@@ -17,10 +18,16 @@ export class SeamLines {
   private readonly geometries: LineSegmentsGeometry[] = [];
   private readonly lines: LineSegments2[] = [];
 
-  constructor(seams: readonly SceneSeam[], groupOf: (name: string) => Group | undefined) {
+  /** @param toleranceMm how far a drawn outline may be from the true one */
+  constructor(
+    seams: readonly SceneSeam[],
+    toleranceMm: number,
+    groupOf: (name: string) => Group | undefined,
+  ) {
     for (const seam of seams) {
       if (seam.positions.length === 0) continue;
-      const geometry = new LineSegmentsGeometry().setPositions(seam.positions);
+      const outline = simplifyLines(seam.positions, toleranceMm);
+      const geometry = new LineSegmentsGeometry().setPositions(outline);
       this.geometries.push(geometry);
       for (const name of seam.between) {
         const group = groupOf(name);
