@@ -7,9 +7,6 @@ import {
   MeshLambertMaterial,
   Vector3,
 } from 'three';
-import { LineSegments2 } from 'three/addons/lines/LineSegments2.js';
-import { LineSegmentsGeometry } from 'three/addons/lines/LineSegmentsGeometry.js';
-import { type LineMaterial } from 'three/addons/lines/LineMaterial.js';
 import { MeshBVH, acceleratedRaycast } from 'three-mesh-bvh';
 import { disposeTree } from './disposal';
 import { type Pose, identityPose, mixPoses } from './placement';
@@ -22,8 +19,7 @@ const OUTLINE_POINTS = 64;
 interface Prepared {
   readonly outlinePoints: readonly Vector3[];
   readonly surface: BufferGeometry;
-  /** Null for a surface without any edge. */
-  readonly lines: LineSegmentsGeometry | null;
+  readonly featureEdges: Float32Array;
 }
 
 /** Surfaces come and go on the screen; what was computed for one is kept as long as the surface. */
@@ -39,9 +35,8 @@ function prepare(part: SurfacePart): Prepared {
   surface.computeBoundingBox();
   surface.computeBoundingSphere();
   surface.boundsTree = new MeshBVH(surface, { indirect: true });
-  const edges = shaded.featureEdges;
-  const lines = edges.length > 0 ? new LineSegmentsGeometry().setPositions(edges) : null;
-  const made = { surface, lines, outlinePoints: extremePoints(part.positions) };
+  const { featureEdges } = shaded;
+  const made = { surface, featureEdges, outlinePoints: extremePoints(part.positions) };
   prepared.set(part, made);
   return made;
 }
@@ -69,11 +64,13 @@ function extremePoints(positions: Float32Array): Vector3[] {
   return points;
 }
 
-/** A piece in the scene: its surface, its edges as thin lines, its place and where it is going. */
+/** A piece in the scene: its surface, its place and where it is going. */
 export class PieceBody {
   readonly group = new Group();
   /** In the assembled model. */
   readonly outlinePoints: readonly Vector3[];
+  /** Flat xyz, two points a segment, in the assembled model. */
+  readonly featureEdges: Float32Array;
   readonly mesh: Mesh<BufferGeometry, MeshLambertMaterial>;
   private readonly pose: Pose;
   private from = identityPose();
@@ -82,10 +79,10 @@ export class PieceBody {
   constructor(
     readonly piece: ScenePiece,
     readonly colour: number,
-    edgeMaterial: LineMaterial,
   ) {
-    const { surface, lines, outlinePoints } = prepare(piece.surface);
+    const { surface, featureEdges, outlinePoints } = prepare(piece.surface);
     this.outlinePoints = outlinePoints;
+    this.featureEdges = featureEdges;
     this.mesh = new Mesh(
       surface,
       // Pushed back a little so that lines on the surface win.
@@ -99,7 +96,6 @@ export class PieceBody {
     this.mesh.raycast = acceleratedRaycast;
     this.mesh.name = piece.name;
     this.group.add(this.mesh);
-    if (lines) this.group.add(new LineSegments2(lines, edgeMaterial));
     this.pose = { position: this.group.position, rotation: this.group.quaternion };
   }
 

@@ -1,6 +1,6 @@
 import { Box3, Group, Vector3, type Mesh } from 'three';
-import { LineMaterial } from 'three/addons/lines/LineMaterial.js';
 import { type BuildSpace } from '../../../../shared/geometry/fitting/build-space.js';
+import { EdgeLines } from './edge-lines';
 import { EnvelopeBox } from './envelope-box';
 import { assignColours } from './palette';
 import { PaperGround } from './paper-ground';
@@ -19,7 +19,6 @@ export type SceneView = 'whole' | 'bed';
 const GROUND_GAP_SHARE = 2e-3;
 /** Drawn seams keep this near to the true ones, as a share of the model: half a pixel in full view. */
 const SEAM_TOLERANCE_SHARE = 5e-4;
-const EDGE_WIDTH_PX = 1.2;
 /** Edges stay darker than the pieces on a dark sheet too. */
 const darkEdges = '#0b0e11';
 
@@ -27,11 +26,7 @@ const darkEdges = '#0b0e11';
 export class PieceStage {
   readonly root = new Group();
   private readonly ground = new PaperGround();
-  private readonly edgeMaterial = new LineMaterial({
-    linewidth: EDGE_WIDTH_PX,
-    transparent: true,
-    opacity: 0.6,
-  });
+  private readonly edges = new EdgeLines();
   private _bodies: PieceBody[] = [];
   private seams: SeamLines | null = null;
   private envelope: EnvelopeBox | null = null;
@@ -70,13 +65,12 @@ export class PieceStage {
     const names = pieces.map((piece) => piece.name);
     const meetings = seams.map((seam) => seam.between);
     const colours = assignColours(names, meetings);
-    this._bodies = pieces.map(
-      (piece) => new PieceBody(piece, colours.get(piece.name)!, this.edgeMaterial),
-    );
+    this._bodies = pieces.map((piece) => new PieceBody(piece, colours.get(piece.name)!));
     for (const body of this._bodies) {
       this.root.add(body.group);
       this.modelBox.union(body.mesh.geometry.boundingBox!);
     }
+    this.edges.drawOn(this._bodies);
     const toleranceMm = longestSide(this.modelBox) * SEAM_TOLERANCE_SHARE;
     this.seams = new SeamLines(seams, toleranceMm, (name) => this.bodyOf(name)?.group);
     this.applyTheme();
@@ -171,12 +165,13 @@ export class PieceStage {
   }
 
   resize(widthPx: number, heightPx: number): void {
-    this.edgeMaterial.resolution.set(widthPx, heightPx);
+    this.edges.resize(widthPx, heightPx);
     this.envelope?.resize(widthPx, heightPx);
     this.seams?.resize(widthPx, heightPx);
   }
 
   clear(): void {
+    this.edges.clear();
     this.seams?.dispose();
     this.seams = null;
     for (const body of this._bodies) body.dispose();
@@ -188,7 +183,7 @@ export class PieceStage {
   dispose(): void {
     this.clear();
     this.envelope?.dispose();
-    this.edgeMaterial.dispose();
+    this.edges.dispose();
     this.ground.dispose();
   }
 
@@ -240,7 +235,7 @@ export class PieceStage {
       const tint = this.isOneBody ? bodyTint(theme.isDark) : pieceTint(body.colour, theme.isDark);
       body.setColour(tint);
     }
-    this.edgeMaterial.color.set(theme.isDark ? darkEdges : theme.graphite);
+    this.edges.setColour(theme.isDark ? darkEdges : theme.graphite);
     this.seams?.setColour(theme.copper);
     this.envelope?.setColour(theme.ink);
     this.ground.setColour(theme.grid);
