@@ -11,7 +11,7 @@ import { TreeSearch, type TreeSearchOptions } from './tree-search.js';
 /** Cuts tried at every node of the plan that is being improved, pass after pass. */
 const IMPROVE_WIDTHS = [5, 10, 20];
 /** Inner-loop steps of one search: about three seconds on one core of 2024. */
-const WORK_BUDGET = 0.6e9;
+const WORK_BUDGET = 0.42e9;
 
 export interface FoundPlans {
   /** Plans on the proxy, the best first. */
