@@ -86,6 +86,7 @@ export class Viewer {
       widthPx: measure.bar.widthPx,
       length: lengthLabel(measure.bar.lengthMm),
       grid: lengthLabel(measure.gridMm),
+      numbered: measure.numbered,
     };
   });
 
@@ -167,7 +168,9 @@ export class Viewer {
     const isSame =
       last?.bar.lengthMm === measure.bar.lengthMm &&
       last.bar.widthPx === measure.bar.widthPx &&
-      last.gridMm === measure.gridMm;
+      last.gridMm === measure.gridMm &&
+      last.numbered.shown === measure.numbered.shown &&
+      last.numbered.total === measure.numbered.total;
     if (!isSame) this.measure.set(measure);
   }
 }

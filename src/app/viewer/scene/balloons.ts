@@ -4,8 +4,18 @@ import { layOutBalloons, type BalloonAnchor } from './balloon-layout';
 import { BALLOON_RADIUS_PX, BalloonOverlay, type DrawnBalloon } from './balloon-overlay';
 import { type PieceBody } from './piece-body';
 
-/** More balloons than this hide what they name; the largest pieces keep theirs. */
+/** More balloons than this hide what they name. */
 const MOST_BALLOONS = 40;
+/** Among so many of the largest pieces those are looked for that nothing hides. */
+const MOST_LOOKED_AT = 120;
+/** The lower rim belongs to the scale bar. */
+const SCALE_ROOM_PX = 32;
+
+/** How many of the pieces in the picture bear a number. */
+export interface Numbered {
+  readonly shown: number;
+  readonly total: number;
+}
 
 const point = new Vector3();
 
@@ -29,7 +39,7 @@ export class Balloons {
 
   /** Looks anew for points that nothing hides; call when the camera or the pieces have come to rest. */
   settle(camera: OrthographicCamera, selected: string | null): void {
-    for (const body of this.shown(selected)) {
+    for (const body of this.candidates(selected)) {
       let samples = this.samples.get(body);
       if (!samples) this.samples.set(body, (samples = samplePoints(body)));
       this.anchors.set(body, findAnchor(body, this.bySize, camera, samples));
@@ -40,7 +50,7 @@ export class Balloons {
     camera: OrthographicCamera,
     size: { widthPx: number; heightPx: number },
     selected: string | null,
-  ): void {
+  ): Numbered {
     const toScreen = (world: Vector3) => {
       world.project(camera);
       return {
@@ -76,7 +86,7 @@ export class Balloons {
     }
     const placed = layOutBalloons(anchors, {
       width: size.widthPx,
-      height: size.heightPx,
+      height: size.heightPx - SCALE_ROOM_PX,
       left,
       right,
       radius: BALLOON_RADIUS_PX,
@@ -92,6 +102,10 @@ export class Balloons {
         };
       }),
     );
+    return {
+      shown: placed.length,
+      total: this.bySize.filter((body) => body.isShown).length,
+    };
   }
 
   clear(): void {
@@ -103,11 +117,20 @@ export class Balloons {
     this.setBodies([]);
   }
 
-  /** Bodies that get a balloon: the selected one first, then the largest. */
+  /** Bodies that get a balloon: the selected one first, then what can be seen, then the largest. */
   private shown(selected: string | null): PieceBody[] {
-    const shown = this.bySize.filter((body) => body.isShown);
-    const first = shown.filter((body) => body.piece.name === selected);
-    const rest = shown.filter((body) => body.piece.name !== selected);
-    return [...first, ...rest].slice(0, MOST_BALLOONS);
+    const candidates = this.candidates(selected);
+    const isSeen = (body: PieceBody) =>
+      body.piece.name === selected || !this.anchors.get(body)?.isHidden;
+    const seen = candidates.filter(isSeen);
+    const hidden = candidates.filter((body) => !isSeen(body));
+    return [...seen, ...hidden].slice(0, MOST_BALLOONS);
+  }
+
+  private candidates(selected: string | null): PieceBody[] {
+    const inPicture = this.bySize.filter((body) => body.isShown);
+    const first = inPicture.filter((body) => body.piece.name === selected);
+    const rest = inPicture.filter((body) => body.piece.name !== selected);
+    return [...first, ...rest].slice(0, MOST_LOOKED_AT);
   }
 }

@@ -9,7 +9,7 @@ import {
   type WebGLRenderer,
 } from 'three';
 import { type BuildSpace } from '../../../../shared/geometry/fitting/build-space.js';
-import { Balloons } from './balloons';
+import { Balloons, type Numbered } from './balloons';
 import { CameraRig, type CameraMove, type Framing } from './camera-rig';
 import { CutPlaneLayer, type CutPlane } from './cut-plane-layer';
 import { DimensionOverlay, boxDimensions } from './dimension-overlay';
@@ -38,6 +38,7 @@ export interface SceneHost {
 export interface SceneMeasure {
   readonly bar: ScaleBar;
   readonly gridMm: number;
+  readonly numbered: Numbered;
 }
 
 const SCALE_BAR_PX = 120;
@@ -282,10 +283,10 @@ export class ViewerScene {
     this.renderer.render(this.scene, camera);
     const selected = this.stage.isOneBody ? null : this.stage.selectedMesh();
     if (selected) this.outline.draw(this.renderer, camera, selected);
-    this.drawBalloons();
+    const numbered = this.drawBalloons();
     this.drawDimensions();
     const bar = scaleBarFor(this.rig.pixelsPerMm, SCALE_BAR_PX);
-    this.host.onMeasured({ bar, gridMm: this.visibleGridMm() });
+    this.host.onMeasured({ bar, gridMm: this.visibleGridMm(), numbered });
     this.host.onDrawn(++this.frames);
   };
 
@@ -296,14 +297,17 @@ export class ViewerScene {
     return spacingPx < LEAST_GRID_PX ? 10 * gridMm : gridMm;
   }
 
-  private drawBalloons(): void {
-    if (this.stage.isOneBody) return this.balloons.clear();
+  private drawBalloons(): Numbered {
+    if (this.stage.isOneBody) {
+      this.balloons.clear();
+      return { shown: 0, total: 0 };
+    }
     const { camera } = this.rig;
     if (this.isUnsettled && !this.glide.isRunning) {
       this.balloons.settle(camera, this.selected);
       this.isUnsettled = false;
     }
-    this.balloons.draw(camera, this.size, this.selected);
+    return this.balloons.draw(camera, this.size, this.selected);
   }
 
   private drawDimensions(): void {
