@@ -26,7 +26,7 @@ import { cutDirections, type CutDirection, type Tilt } from './cut-direction';
 import { CutPreviewStore } from './cut-preview-store';
 import { HalvesMaker } from './halves-maker';
 
-/** After the last key or step of the mouse wheel the plane counts as let go, ms. */
+/** Keys let go of the plane at every step; the cut waits for the last one, ms. */
 const RELEASE_MS = 250;
 const HALVES_APART = 0.3;
 
@@ -104,16 +104,20 @@ export class CutPreview {
 
   protected choose(direction: CutDirection): void {
     this.store.chooseDirection(direction);
-    this.released.next();
+    this.release();
   }
 
-  protected move(placeMm: number): void {
+  protected type(placeMm: number): void {
     this.store.movePlane(placeMm);
-    this.released.next();
+    this.release();
   }
 
   protected tilt(change: Partial<Tilt>): void {
     this.store.setTilt({ ...this.store.tilt(), ...change });
+  }
+
+  /** The plane was let go: cut where it is now. */
+  protected release(): void {
     this.released.next();
   }
 
