@@ -99,6 +99,9 @@ describe('an inspection', () => {
     const { revision } = modelResponse.parse((await designer.get(`/api/models/${model.id}`)).body);
     expect(revision.job).toMatchObject({ state: 'failed', error });
     expect((await designer.get(`/api/models/${model.id}/view`)).status).toBe(404);
+    const plan = await makePlan(model.id);
+    expect(plan.status).toBe(409);
+    expect(plan.body.error).toEqual({ code: 'model.notPlannable', message: error.message });
   });
 
   it('whose result breaks the contract fails in words, and later jobs still settle', async () => {

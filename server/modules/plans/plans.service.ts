@@ -97,7 +97,8 @@ export function createPlansService(deps: {
       const { workshopId, userId, modelId, seed } = order;
       const model = await deps.findModel({ id: modelId, workshopId });
       const envelope = await deps.findEnvelope({ id: order.envelopeId, workshopId });
-      const { solidKey, factor } = plannable(model);
+      const [inspection] = await jobs.findMany([model.revision.jobId]);
+      const { solidKey, factor } = plannable(model, inspection);
       const [id, jobId] = [createId(), createId()];
       await transact(async (repos) => {
         const number = await repos.models.nextPlanNumber({ id: modelId, workshopId });
@@ -146,8 +147,15 @@ export function createPlansService(deps: {
   };
 }
 
-function plannable({ revision }: ModelRow): { solidKey: string; factor: number } {
+function plannable(
+  { revision }: ModelRow,
+  inspection: JobRow | undefined,
+): { solidKey: string; factor: number } {
   const { report, solidKey, scale } = revision;
+  if (!report && inspection?.settledAt)
+    throw createModelNotPlannable(
+      inspection.error?.message ?? 'The inspection was cancelled. Upload the model again.',
+    );
   if (!report) throw createModelNotReady();
   if (!report.plannable || !solidKey)
     throw createModelNotPlannable(report.refusal ?? 'No plan can be made of this model.');
