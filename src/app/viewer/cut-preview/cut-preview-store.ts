@@ -145,19 +145,19 @@ export class CutPreviewStore {
 
   chooseDirection(direction: CutDirection): void {
     this._direction.set(direction);
-    this.halves.set(null);
+    this.dropHalves();
   }
 
   setTilt(tilt: Tilt): void {
     this._tilt.set(tilt);
-    this.halves.set(null);
+    this.dropHalves();
   }
 
   /** Moves the plane and shows where it is; `cut` makes the halves. */
   movePlane(placeMm: number): void {
     if (!Number.isFinite(placeMm)) return;
     this._placeMm.set(Math.min(Math.max(placeMm, 0), this.lengthMm()));
-    this.halves.set(null);
+    this.dropHalves();
   }
 
   /** Cuts where the plane is now. A later cut overtakes an earlier one. */
@@ -175,6 +175,13 @@ export class CutPreviewStore {
       this._isCutting.set(false);
       this._cutFailure.set('The preview could not cut here. Move the plane a little.');
     }
+  }
+
+  /** The plane has moved: what was cut, or is being cut, is of another place. */
+  private dropHalves(): void {
+    this.halves.set(null);
+    this._isCutting.set(false);
+    this._cutFailure.set('');
   }
 }
 
