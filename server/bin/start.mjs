@@ -136,6 +136,15 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'])
     void endAll(0);
   });
 
+// npm runs us in a shell that dies of a SIGTERM without passing it on: when the one that started us
+// is gone, we were meant.
+if (process.env.npm_lifecycle_event) {
+  const parent = process.ppid;
+  setInterval(() => {
+    if (process.ppid !== parent) void endAll(0);
+  }, 300).unref();
+}
+
 start().catch((error) => {
   if (isEnding) return;
   process.stderr.write(`${error.message}\n`);
