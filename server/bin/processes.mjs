@@ -34,9 +34,18 @@ function readProc(pid, name) {
  * process for ever, as numbers are used again. Null where there is no /proc or no such process.
  */
 export function startTicksOf(pid) {
-  // Field 22 of proc(5); the second may hold spaces, so count from its closing bracket.
+  return statField(pid, 22);
+}
+
+/** Who started a process. Null where there is no /proc or no such process. */
+export function parentOf(pid) {
+  return statField(pid, 4);
+}
+
+/** A number of proc(5) stat. The second field may hold spaces, so count from its closing bracket. */
+function statField(pid, number) {
   const fields = readProc(pid, 'stat').split(') ').at(-1)?.split(' ') ?? [];
-  return fields.length > 19 ? Number(fields[19]) : null;
+  return fields.length > 19 ? Number(fields[number - 3]) : null;
 }
 
 /** Asks a process to end and insists after `graceMs`. Resolves when it is gone. */

@@ -7,7 +7,7 @@ import { canInstall, ensureDebianPackages } from './debian.mjs';
 import { locateMariadb, startMariadb } from './mariadb.mjs';
 import { arePackagesCurrent, ensurePackagesWith } from './packages.mjs';
 import { whyPortIsUnusable } from './ports.mjs';
-import { endChild } from './processes.mjs';
+import { endChild, parentOf } from './processes.mjs';
 import { claimDataFolder } from './run-record.mjs';
 import { readSettings } from './settings.mjs';
 import { doneStep, step } from './steps.mjs';
@@ -136,12 +136,13 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'])
     void endAll(0);
   });
 
-// npm runs us in a shell that dies of a SIGTERM without passing it on: when the one that started us
-// is gone, we were meant.
+// npm runs us in a shell that dies of a SIGTERM without passing it on, and stays when npm is killed:
+// when either of those that started us is gone, we were meant.
 if (process.env.npm_lifecycle_event) {
-  const parent = process.ppid;
+  const ancestors = () => `${process.ppid} ${parentOf(process.ppid)}`;
+  const atFirst = ancestors();
   setInterval(() => {
-    if (process.ppid !== parent) void endAll(0);
+    if (ancestors() !== atFirst) void endAll(0);
   }, 300).unref();
 }
 
