@@ -21,6 +21,13 @@ describe('toApiFailure', () => {
     expect(failure.code).toBe('plan.notFound');
   });
 
+  it('reads a refusal that came as bytes, so that a picture too can ask for a new session', () => {
+    const body = JSON.stringify({ error: { code: 'session.required', message: 'Sign in.' } });
+    const error = Uint8Array.from(body, (letter) => letter.charCodeAt(0)).buffer;
+    const failure = toApiFailure(new HttpErrorResponse({ status: 401, error }));
+    expect(failure.code).toBe('session.required');
+  });
+
   it('names the network when no answer came', () => {
     const failure = toApiFailure(new HttpErrorResponse({ status: 0 }));
     expect(failure.code).toBe('network.unreachable');

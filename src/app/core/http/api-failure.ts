@@ -51,11 +51,12 @@ export function sentenceFor(error: unknown): string {
 
 const unexpectedAnswer = 'The server gave an answer that could not be read. Please try again.';
 
-/** A failed request for a file or a picture carries its JSON as text. */
+/** A failed request for a file or a picture carries its JSON as text or as bytes. */
 function asObject(body: unknown): unknown {
-  if (typeof body !== 'string') return body;
+  const text = body instanceof ArrayBuffer ? new TextDecoder().decode(body) : body;
+  if (typeof text !== 'string') return text;
   try {
-    return JSON.parse(body);
+    return JSON.parse(text);
   } catch {
     // Expected: a proxy's HTML page instead of our JSON.
     return null;
