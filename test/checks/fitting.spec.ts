@@ -161,9 +161,27 @@ describe('boxes and rods in the build space', () => {
   });
 
   it(`refuses the box once it is over by more than the tolerance of ${FIT_TOLERANCE_MM} mm`, () => {
-    expect(layOnBed(boxCorners(220 + 9e-7, 220, 250), space, cubeDirections).fits).toBe(true);
-    expect(layOnBed(boxCorners(220 + 2e-6, 220, 250), space, cubeDirections).fits).toBe(false);
+    expect(
+      layOnBed(boxCorners(220 + 0.9 * FIT_TOLERANCE_MM, 220, 250), space, cubeDirections).fits,
+    ).toBe(true);
+    expect(
+      layOnBed(boxCorners(220 + 2 * FIT_TOLERANCE_MM, 220, 250), space, cubeDirections).fits,
+    ).toBe(false);
     expect(layOnBed(boxCorners(220.2, 220, 250), space, cubeDirections).fits).toBe(false);
+  });
+
+  it('takes a disk of exactly the round bed’s size after its coordinates went through float32', () => {
+    const bed: BuildSpace = { shape: 'round', diameterMm: 200, heightMm: 300 };
+    const sides = 96;
+    const rim = Array.from({ length: 2 * sides }, (_, k) => {
+      const angle = (2 * Math.PI * (k % sides)) / sides;
+      return [100 * Math.cos(angle), 100 * Math.sin(angle), k < sides ? 0 : 300];
+    });
+    // Away from the origin single precision is coarser: 3e-5 mm at 300 mm.
+    const points = Float64Array.from(rim.flat(), (value, i) =>
+      Math.fround(value + (i % 3 < 2 ? 300 : 0)),
+    );
+    expect(layOnBed(points, bed, cubeDirections).fits).toBe(true);
   });
 
   it('lays a thin rod along the space diagonal of 399.1 mm and no longer one', () => {

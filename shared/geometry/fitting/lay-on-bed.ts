@@ -5,8 +5,11 @@ import { supportPoints } from './convex-hull-3d.js';
 import { fitFootprint } from './footprint.js';
 import { bedDiagonal, spaceDiagonal } from './space-measures.js';
 
-/** A piece may be over by this much and still counts as fitting: rounding of doubles, mm. */
-export const FIT_TOLERANCE_MM = 1e-6;
+/**
+ * A piece may be over by this much and still counts as fitting, mm. Files hold single precision,
+ * whose step reaches 3e-5 mm below 512 mm: a model of exactly the space's size must not be cut.
+ */
+export const FIT_TOLERANCE_MM = 5e-5;
 
 /** For fewer resting directions, reducing the points to their hull first costs more than it saves. */
 const HULL_PAYS_FROM = 4;
