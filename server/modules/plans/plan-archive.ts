@@ -30,7 +30,8 @@ export async function streamPlanArchive({
     if ((await storage.sizeOf(file.key)) !== file.bytes)
       throw new Error(`${file.key} is missing or was changed`);
 
-  const archive = new ZipArchive({ zlib: { level: LEVEL } });
+  // One file at a time: looked up side by side, entries come in the order the disk answers in.
+  const archive = new ZipArchive({ zlib: { level: LEVEL }, statConcurrency: 1 });
   res.setHeader('Content-Type', 'application/zip');
   res.setHeader('Content-Disposition', attachmentHeader(fileName));
   res.setHeader('Cache-Control', 'private, no-store');
