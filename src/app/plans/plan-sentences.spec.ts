@@ -25,7 +25,7 @@ describe('boundsSentence', () => {
   it('claims no bound where none was found', () => {
     const found = { ...bounds, pieces: 1, reason: 'Nothing asks for more than one piece.' };
     expect(boundsSentence(3, found)).toBe(
-      '3 pieces; that fewer cannot do is not proved, because nothing asks for more than one piece; the best axis grid makes 12.',
+      '3 pieces; fewer are not ruled out, because nothing asks for more than one piece; the best axis grid makes 12.',
     );
   });
 

@@ -9,7 +9,7 @@ export function boundsSentence(pieces: number, bounds: PlanOutput['bounds']): st
   const reason = asClause(bounds.reason);
   let least = `no plan can have fewer than ${bounds.pieces}${reason}`;
   if (bounds.pieces >= pieces) least = `no plan can have fewer${reason}`;
-  else if (bounds.pieces <= 1) least = `that fewer cannot do is not proved${reason}`;
+  else if (bounds.pieces <= 1) least = `fewer are not ruled out${reason}`;
   return `${pieces} pieces; ${least}; the best axis grid makes ${bounds.gridPieces}.`;
 }
 
