@@ -98,6 +98,7 @@ describe('every page at 390 and 1440 px, light and dark', () => {
         ['cut-preview', `/models/${made.model}/cut-preview`, 'canvas'],
         ['envelopes', '/envelopes', 'table'],
         ['envelope-new', '/envelopes/new', 'form'],
+        ['plans', `/plans?modelId=${made.model}`, 'table'],
         ['plan', `/plans/${made.plan}`, 'sw-proof-table'],
         ['not-found', '/nowhere', 'h1'],
       ];
