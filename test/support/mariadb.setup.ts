@@ -31,6 +31,6 @@ export default async function setup(project: TestProject): Promise<() => Promise
   project.provide('mariadbUrl', mariadb.urlOf('seamwright_test'));
   return async () => {
     await mariadb.stop();
-    rmSync(folder, { recursive: true, force: true });
+    rmSync(folder, { recursive: true, force: true, maxRetries: 20, retryDelay: 250 });
   };
 }

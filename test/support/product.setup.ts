@@ -38,6 +38,23 @@ async function answers(url: string, child: ChildProcess, deadlineMs: number): Pr
   throw new Error(`The product did not answer within ${deadlineMs / 1000} s`);
 }
 
+/** Whether any process of the group is left: npm itself may end before what it started has. */
+function isGroupAlive(leader: number): boolean {
+  try {
+    process.kill(-leader, 0);
+    return true;
+  } catch {
+    return false;
+  }
+}
+
+async function groupEnd(leader: number, deadlineMs: number): Promise<void> {
+  const end = Date.now() + deadlineMs;
+  while (isGroupAlive(leader) && Date.now() < end) {
+    await new Promise((resolve) => setTimeout(resolve, 100));
+  }
+}
+
 /** Starts the product with the command of the README on a port and data folder of its own. */
 export default async function setup(project: TestProject): Promise<() => Promise<void>> {
   const data = mkdtempSync(join(tmpdir(), 'sw-e2e-'));
@@ -60,6 +77,7 @@ export default async function setup(project: TestProject): Promise<() => Promise
   return async () => {
     if (child.pid && child.exitCode === null) process.kill(-child.pid, 'SIGTERM');
     await ended;
-    rmSync(data, { recursive: true, force: true });
+    if (child.pid) await groupEnd(child.pid, 30_000);
+    rmSync(data, { recursive: true, force: true, maxRetries: 20, retryDelay: 250 });
   };
 }
