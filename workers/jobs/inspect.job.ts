@@ -41,7 +41,7 @@ export const inspectModel: JobHandler<'model.inspect'> = async (input, { storage
   const solidKey = solid && (await write('solid.mesh', encodeMesh(solid)));
   return {
     report,
-    files: { solid: solidKey, view: viewKey, thumbnail },
+    files: { solid: solidKey, view: viewKey, thumbnail, proxy: null },
     viewTriangles: view.indices.length / 3,
   };
 };

@@ -12,7 +12,8 @@ import {
   type TriangleMesh,
 } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { weldTriangles } from '../../shared/geometry/mesh/weld.js';
-import type { MeshReport } from '../../shared/jobs/model-inspect.js';
+import { noChoices } from '../../shared/jobs/mending-choices.js';
+import type { MeshReport, SurfaceState } from '../../shared/jobs/model-inspect.js';
 import { countOf, refuseFile, spelledCount } from '../intake/refusal-words.js';
 import type { StlReading } from '../intake/stl-reader.js';
 import { portionOf, silentContext, type JobContext } from '../runtime/job-context.js';
@@ -80,25 +81,40 @@ export function inspectMesh(
 
   const refusal =
     refusalOf(shells, orientation) ?? (orientation ? null : openSurfaceRefusal(edges, duplicates));
-  const report: MeshReport = {
-    format: reading.format,
-    fileBytes,
-    facetsRead: reading.facetsRead,
+  const state: SurfaceState = {
     triangles: triangleCount(mesh),
     vertices: vertexCount(mesh),
-    degenerateDropped,
     duplicateFacets: duplicates,
     openEdges: edges.openEdges,
     nonManifoldEdges: edges.nonManifoldEdges,
     misorientedEdges: edges.misorientedEdges,
     shells: shells.count,
-    cavities: orientation?.cavities ?? 0,
     closed: edges.closed,
-    turnedOutward,
     volume: orientation ? signedVolume(mesh) : 0,
     area,
     size: [...box.size],
     min: [...box.min],
+  };
+  const report: MeshReport = {
+    ...state,
+    format: reading.format,
+    fileBytes,
+    facetsRead: reading.facetsRead,
+    fileUnit: null,
+    parts: [],
+    asRead: state,
+    mending: [],
+    holes: [],
+    holesFound: 0,
+    choices: noChoices,
+    remeshDeviation: null,
+    degenerateDropped,
+    cavities: orientation?.cavities ?? 0,
+    turnedOutward,
+    measures: null,
+    proxy: { triangles: 0, deviation: null },
+    places: [],
+    asks: [],
     plannable: refusal === null,
     refusal,
     notes: notesOf({ reading, mesh, degenerateDropped, duplicates, shells, orientation, box }),

@@ -1,4 +1,5 @@
 import { millimetresPerUnit } from '../../../shared/api/model-scale.js';
+import { noChoices } from '../../../shared/jobs/mending-choices.js';
 import type { ModelResponse } from '../../../shared/api/models.contract.js';
 import { toJobResponse } from '../jobs/jobs.mapper.js';
 import type { ModelView } from './models.service.js';
@@ -21,7 +22,11 @@ export function toModelResponse({
       number: revision.number,
       fileName: revision.fileName,
       fileBytes: revision.fileBytes,
+      createdAt: model.createdAt.toISOString(),
       report: revision.report,
+      choices: noChoices,
+      isAccepted: false,
+      isPlannable: revision.report?.plannable ?? false,
       scaleConfirmed: revision.scaleConfirmed,
       scale: revision.scale,
       scaleReason: revision.scaleReason,
@@ -34,14 +39,18 @@ export function toModelResponse({
   };
 }
 
-type Scaled = Pick<ModelResponse['revision'], 'sizeMm' | 'volumeMm3' | 'areaMm2'>;
+type Scaled = Pick<
+  ModelResponse['revision'],
+  'millimetresPerUnit' | 'sizeMm' | 'volumeMm3' | 'areaMm2'
+>;
 
 /** Length, area and volume in millimetres: the factor, its square and its cube. */
 function scaledMeasures({ report, scale }: ModelView['model']['revision']): Scaled {
-  if (!report) return { sizeMm: null, volumeMm3: null, areaMm2: null };
+  if (!report) return { millimetresPerUnit: null, sizeMm: null, volumeMm3: null, areaMm2: null };
   const factor = millimetresPerUnit(scale, report.size);
   const [x, y, z] = report.size;
   return {
+    millimetresPerUnit: factor,
     sizeMm: [x * factor, y * factor, z * factor],
     volumeMm3: report.volume * factor ** 3,
     areaMm2: report.area * factor ** 2,

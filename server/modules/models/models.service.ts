@@ -1,4 +1,5 @@
 import { type ModelScale } from '../../../shared/api/model-scale.js';
+import { noChoices } from '../../../shared/jobs/mending-choices.js';
 import type { Transact } from '../../platform/db/transaction.js';
 import type { CreateId } from '../../platform/ids/create-id.js';
 import type { FileStorage } from '../../platform/storage/disk-storage.js';
@@ -109,7 +110,7 @@ export function createModelsService(deps: {
             workshopId,
             kind: 'model.inspect',
             subjectId: revisionId,
-            input: { sourceKey, fileName, outputPrefix },
+            input: { sourceKey, fileName, outputPrefix, choices: noChoices },
           });
         });
       } catch (error) {

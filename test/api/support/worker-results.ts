@@ -1,7 +1,9 @@
 import { mkdir, writeFile } from 'node:fs/promises';
 import { dirname } from 'node:path';
 import type { RowDataPacket } from 'mysql2/promise';
+import { noChoices } from '../../../shared/jobs/mending-choices.js';
 import type { JobError, JobMap, JobState } from '../../../shared/jobs/job-map.js';
+import type { SurfaceState } from '../../../shared/jobs/model-inspect.js';
 import type { ApiClient } from './api-client.js';
 import type { TestProduct } from './test-product.js';
 
@@ -61,28 +63,44 @@ export async function inspectionResult(
     solid: `${outputPrefix}/solid.mesh`,
     view: `${outputPrefix}/view.glb`,
     thumbnail: `${outputPrefix}/thumbnail.png`,
+    proxy: `${outputPrefix}/proxy.mesh`,
   };
   for (const key of Object.values(files)) await put(product, key, Buffer.from(`bytes of ${key}`));
+  const surface: SurfaceState = {
+    triangles: 12,
+    vertices: 8,
+    openEdges: 0,
+    nonManifoldEdges: 0,
+    misorientedEdges: 0,
+    duplicateFacets: 0,
+    shells: 1,
+    closed: true,
+    volume: 300 * 400 * 500,
+    area: 2 * (300 * 400 + 300 * 500 + 400 * 500),
+    size: [300, 400, 500],
+    min: [0, 0, 0],
+  };
   return {
     report: {
+      ...surface,
       format: 'stl-binary',
       fileBytes: 684,
       facetsRead: 12,
-      triangles: 12,
-      vertices: 8,
+      fileUnit: null,
+      parts: [],
+      asRead: surface,
+      mending: [],
+      holes: [],
+      holesFound: 0,
+      choices: noChoices,
+      remeshDeviation: null,
       degenerateDropped: 0,
-      duplicateFacets: 0,
-      openEdges: 0,
-      nonManifoldEdges: 0,
-      misorientedEdges: 0,
-      shells: 1,
       cavities: 0,
-      closed: true,
       turnedOutward: false,
-      volume: 300 * 400 * 500,
-      area: 2 * (300 * 400 + 300 * 500 + 400 * 500),
-      size: [300, 400, 500],
-      min: [0, 0, 0],
+      measures: null,
+      proxy: { triangles: 12, deviation: null },
+      places: [],
+      asks: [],
       plannable: true,
       refusal: null,
       notes: [],

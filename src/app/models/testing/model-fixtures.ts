@@ -1,6 +1,7 @@
 import { type ModelResponse } from '../../../../shared/api/models.contract.js';
 import { type JobResponse } from '../../../../shared/api/jobs.contract.js';
-import { type MeshReport } from '../../../../shared/jobs/model-inspect.js';
+import { noChoices } from '../../../../shared/jobs/mending-choices.js';
+import { type MeshReport, type SurfaceState } from '../../../../shared/jobs/model-inspect.js';
 
 /** An identifier that begins with readable letters. */
 export function idOf(start: string): string {
@@ -19,27 +20,47 @@ export function makeJob(change: Partial<JobResponse> = {}): JobResponse {
   };
 }
 
-/** The report of a closed box of 10 × 20 × 40 file units. */
-export function makeReport(change: Partial<MeshReport> = {}): MeshReport {
+/** The surface of a closed box of 10 × 20 × 40 file units. */
+export function makeSurface(change: Partial<SurfaceState> = {}): SurfaceState {
   return {
-    format: 'stl-binary',
-    fileBytes: 684,
-    facetsRead: 12,
     triangles: 12,
     vertices: 8,
-    degenerateDropped: 0,
-    duplicateFacets: 0,
     openEdges: 0,
     nonManifoldEdges: 0,
     misorientedEdges: 0,
+    duplicateFacets: 0,
     shells: 1,
-    cavities: 0,
     closed: true,
-    turnedOutward: false,
     volume: 8_000,
     area: 2_800,
     size: [10, 20, 40],
     min: [0, 0, 0],
+    ...change,
+  };
+}
+
+/** The report of a closed box of 10 × 20 × 40 file units. */
+export function makeReport(change: Partial<MeshReport> = {}): MeshReport {
+  return {
+    ...makeSurface(),
+    format: 'stl-binary',
+    fileBytes: 684,
+    facetsRead: 12,
+    fileUnit: null,
+    parts: [],
+    asRead: makeSurface(),
+    mending: [],
+    holes: [],
+    holesFound: 0,
+    choices: noChoices,
+    remeshDeviation: null,
+    degenerateDropped: 0,
+    cavities: 0,
+    turnedOutward: false,
+    measures: null,
+    proxy: { triangles: 12, deviation: null },
+    places: [],
+    asks: [],
     plannable: true,
     refusal: null,
     notes: [],
@@ -64,10 +85,15 @@ export function makeModel(
       number: 1,
       fileName: 'heron.stl',
       fileBytes: 684,
+      createdAt: '2031-03-04T13:05:00.000Z',
       report: makeReport(),
+      choices: noChoices,
+      isAccepted: false,
+      isPlannable: true,
       scaleConfirmed: true,
       scale: { unit: 'mm', factor: 1, target: null },
       scaleReason: '',
+      millimetresPerUnit: 1,
       sizeMm: [10, 20, 40],
       volumeMm3: 8_000,
       areaMm2: 2_800,

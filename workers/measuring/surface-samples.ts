@@ -1,0 +1,68 @@
+import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
+
+/** Points spread evenly by area over a surface. */
+export interface SurfaceSamples {
+  readonly count: number;
+  /** Flat xyz. */
+  readonly points: Float64Array;
+  /** Triangle that each point lies on. */
+  readonly triangles: Uint32Array;
+}
+
+/** The fractional parts of multiples of these fill a square evenly: M. Roberts, "The unreasonable
+ *  effectiveness of quasirandom sequences", 2018 (the plastic number's powers). */
+const firstShare = 0.7548776662466927;
+const secondShare = 0.5698402909980532;
+
+/**
+ * Spreads points over the surface: equal steps of area along the list of triangles, places within a
+ * triangle by a low-discrepancy sequence. The same mesh gives the same points. Triangles without
+ * area get none; a mesh without area gives no points.
+ */
+export function sampleSurface(mesh: TriangleMesh, wanted: number): SurfaceSamples {
+  const { positions, indices } = mesh;
+  const triangleCount = indices.length / 3;
+  const reached = new Float64Array(triangleCount);
+  let sum = 0;
+  for (let triangle = 0; triangle < triangleCount; triangle++) {
+    sum += triangleArea(positions, indices, 3 * triangle);
+    reached[triangle] = sum;
+  }
+  const count = sum > 0 && Number.isFinite(sum) ? wanted : 0;
+  const points = new Float64Array(3 * count);
+  const triangles = new Uint32Array(count);
+  let triangle = 0;
+  for (let i = 0; i < count; i++) {
+    const along = ((i + 0.5) / count) * sum;
+    while (triangle < triangleCount - 1 && reached[triangle] < along) triangle++;
+    let u = (0.5 + firstShare * (i + 1)) % 1;
+    let v = (0.5 + secondShare * (i + 1)) % 1;
+    if (u + v > 1) {
+      u = 1 - u;
+      v = 1 - v;
+    }
+    const a = 3 * indices[3 * triangle];
+    const b = 3 * indices[3 * triangle + 1];
+    const c = 3 * indices[3 * triangle + 2];
+    for (let axis = 0; axis < 3; axis++) {
+      const start = positions[a + axis];
+      points[3 * i + axis] =
+        start + u * (positions[b + axis] - start) + v * (positions[c + axis] - start);
+    }
+    triangles[i] = triangle;
+  }
+  return { count, points, triangles };
+}
+
+function triangleArea(positions: Float64Array, indices: Uint32Array, at: number): number {
+  const a = 3 * indices[at];
+  const b = 3 * indices[at + 1];
+  const c = 3 * indices[at + 2];
+  const ux = positions[b] - positions[a];
+  const uy = positions[b + 1] - positions[a + 1];
+  const uz = positions[b + 2] - positions[a + 2];
+  const vx = positions[c] - positions[a];
+  const vy = positions[c + 1] - positions[a + 1];
+  const vz = positions[c + 2] - positions[a + 2];
+  return Math.hypot(uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx) / 2;
+}
