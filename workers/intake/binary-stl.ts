@@ -1,4 +1,6 @@
+import { FacetWelder } from './facet-welder.js';
 import { largestCoordinate, refuseCoordinates } from './coordinate-limits.js';
+import type { MeshReading } from './mesh-reading.js';
 import { countOf, refuseFile, spelledCount } from './refusal-words.js';
 
 /**
@@ -9,7 +11,8 @@ import { countOf, refuseFile, spelledCount } from './refusal-words.js';
 const headerBytes = 84;
 const facetBytes = 50;
 const normalBytes = 12;
-const reportEvery = 1 << 16;
+/** Facets that are taken at once: bounds what is held beside the file and the mesh. */
+const chunkFacets = 1 << 15;
 
 const magnitudeMask = 0x7fffffff;
 const infinityBits = 0x7f800000;
@@ -35,13 +38,14 @@ export function isProvenBinary(bytes: Uint8Array): boolean {
 /**
  * Reads a binary STL. Trailing bytes are left alone and noted; a count that the file does not hold,
  * or whole facets beyond the count, are refused, because nobody can tell which of the two is wrong.
- * A file in the other byte order is known by its count, and noted.
+ * A file in the other byte order is known by its count, and noted. Facets are welded as they come, so
+ * beside the file and the mesh only a chunk of them is held.
  */
 export function readBinaryStl(
   bytes: Uint8Array,
   fileName: string,
   onProgress: (fraction: number) => void,
-): { soup: Float32Array; facetsRead: number; notes: string[] } {
+): Pick<MeshReading, 'mesh' | 'facetsRead' | 'degenerateDropped' | 'notes' | 'timingsMs'> {
   const isReversed = !hasExactSize(bytes, true) && hasExactSize(bytes, false);
   const stated = statedFacets(bytes, !isReversed) ?? 0;
   const held = Math.floor((bytes.length - headerBytes) / facetBytes);
@@ -59,29 +63,56 @@ export function readBinaryStl(
       `The file goes on for ${countOf(left, 'byte')} after its last facet. Nothing there was read.`,
     );
   }
-  const soup = copyCorners(bytes, stated, onProgress);
-  const words = new Int32Array(soup.buffer);
-  if (isReversed) {
-    for (let i = 0; i < words.length; i++) words[i] = reversed(words[i]);
+  if (isReversed)
     notes.push('The numbers in the file stand in reversed byte order. They were turned round.');
-  }
-  const unusable = countUnusable(words);
-  if (unusable !== null) throw refuseCoordinates(fileName, unusable);
-  return { soup, facetsRead: stated, notes };
+  const welded = weldFacets(bytes, stated, isReversed, { fileName, onProgress });
+  return { ...welded, facetsRead: stated, notes };
 }
 
-/** Copies the nine coordinates of every facet bit by bit: no float is decoded, so this runs at memory speed. */
-function copyCorners(
+interface Unusable {
+  notNumbers: number;
+  tooLarge: number;
+  /** From 1; 0 while there is none. */
+  firstFacet: number;
+}
+
+/** Welds chunk by chunk; a coordinate that cannot be used ends the welding, but all are counted. */
+function weldFacets(
   bytes: Uint8Array,
   facets: number,
-  onProgress: (fraction: number) => void,
-): Float32Array {
+  isReversed: boolean,
+  { fileName, onProgress }: { fileName: string; onProgress: (fraction: number) => void },
+): Pick<MeshReading, 'mesh' | 'degenerateDropped' | 'timingsMs'> {
+  const welder = new FacetWelder(facets);
   const aligned = bytes.byteOffset % 4 === 0 ? bytes : bytes.slice();
+  const chunk = new Int32Array(9 * Math.min(chunkFacets, facets));
+  const unusable: Unusable = { notNumbers: 0, tooLarge: 0, firstFacet: 0 };
+  let parseMs = 0;
+  let weldMs = 0;
+  for (let first = 0; first < facets; first += chunkFacets) {
+    const count = Math.min(chunkFacets, facets - first);
+    const start = performance.now();
+    copyCorners(aligned, first, count, chunk);
+    if (isReversed) reverseWords(chunk, 9 * count);
+    countUnusable(chunk, 9 * count, first, unusable);
+    const copied = performance.now();
+    if (unusable.firstFacet === 0) welder.take(chunk, count);
+    parseMs += copied - start;
+    weldMs += performance.now() - copied;
+    onProgress((first + count) / facets);
+  }
+  if (unusable.firstFacet > 0) throw refuseCoordinates(fileName, unusable);
+  const start = performance.now();
+  const welded = welder.finish();
+  weldMs += performance.now() - start;
+  return { ...welded, timingsMs: { parse: parseMs, weld: weldMs } };
+}
+
+/** Copies nine coordinates a facet bit by bit: no float is decoded, so this runs at memory speed. */
+function copyCorners(aligned: Uint8Array, first: number, count: number, target: Int32Array): void {
   const words = new Int32Array(aligned.buffer, aligned.byteOffset, aligned.length >> 2);
   const halves = new Uint16Array(aligned.buffer, aligned.byteOffset, aligned.length >> 1);
-  const soup = new Float32Array(9 * facets);
-  const target = new Int32Array(soup.buffer);
-  for (let facet = 0, to = 0; facet < facets; facet++, to += 9) {
+  for (let facet = first, to = 0; facet < first + count; facet++, to += 9) {
     const from = headerBytes + normalBytes + facetBytes * facet;
     // 50 bytes a facet: every other one starts on a 4-byte border, the rest on a 2-byte border.
     if ((facet & 1) === 0) {
@@ -92,26 +123,22 @@ function copyCorners(
       for (let k = 0; k < 9; k++)
         target[to + k] = halves[h + 2 * k] | (halves[h + 2 * k + 1] << 16);
     }
-    if ((facet & (reportEvery - 1)) === 0) onProgress(facet / facets);
   }
-  return soup;
 }
 
-/** Counts coordinates that are not finite or beyond the limit, by their bits; null when there are none. */
-function countUnusable(
-  words: Int32Array,
-): { notNumbers: number; tooLarge: number; firstFacet: number } | null {
-  let notNumbers = 0;
-  let tooLarge = 0;
-  let first = -1;
-  for (let i = 0; i < words.length; i++) {
+function reverseWords(words: Int32Array, end: number): void {
+  for (let i = 0; i < end; i++) words[i] = reversed(words[i]);
+}
+
+/** Adds up coordinates that are not finite or beyond the limit, by their bits. */
+function countUnusable(words: Int32Array, end: number, firstFacet: number, found: Unusable): void {
+  for (let i = 0; i < end; i++) {
     const magnitude = words[i] & magnitudeMask;
     if (magnitude <= largestCoordinateBits) continue;
-    if (magnitude >= infinityBits) notNumbers++;
-    else tooLarge++;
-    if (first < 0) first = i;
+    if (magnitude >= infinityBits) found.notNumbers++;
+    else found.tooLarge++;
+    found.firstFacet ||= firstFacet + Math.floor(i / 9) + 1;
   }
-  return first < 0 ? null : { notNumbers, tooLarge, firstFacet: Math.floor(first / 9) + 1 };
 }
 
 function reversed(word: number): number {
@@ -127,8 +154,11 @@ function isPadding(bytes: Uint8Array, from: number): boolean {
 function refuseMissing(bytes: Uint8Array, fileName: string, stated: number, held: number) {
   const sample = Math.min(held, 200);
   if (sample > 0) {
-    const unusable = countUnusable(new Int32Array(copyCorners(bytes, sample, () => {}).buffer));
-    const share = unusable ? (unusable.notNumbers + unusable.tooLarge) / (9 * sample) : 0;
+    const words = new Int32Array(9 * sample);
+    copyCorners(bytes.byteOffset % 4 === 0 ? bytes : bytes.slice(), 0, sample, words);
+    const unusable: Unusable = { notNumbers: 0, tooLarge: 0, firstFacet: 0 };
+    countUnusable(words, words.length, 0, unusable);
+    const share = (unusable.notNumbers + unusable.tooLarge) / (9 * sample);
     // A count and corners that make no sense together: other bytes under an STL's name.
     if (share > 0.05) return refuseFile(fileName, 'is not an STL file, neither binary nor text.');
   }
