@@ -10,6 +10,8 @@ export interface ShellNesting {
   readonly depths: Int32Array;
   /** Shells that lie partly inside another one. Only those whose box lies inside the other's box are found. */
   readonly crossing: number;
+  /** 1 for each of them. */
+  readonly crosses: Uint8Array;
   /** Whether every pair that could be nested was tested; with very many shells the rest is left out. */
   readonly complete: boolean;
 }
@@ -26,7 +28,8 @@ const mostWork = 2e9;
 export function nestShells(mesh: TriangleMesh, shells: Shells): ShellNesting {
   const volumes = shellVolumes(mesh, shells);
   const depths = new Int32Array(shells.count);
-  if (shells.count === 1) return { volumes, depths, crossing: 0, complete: true };
+  const crosses = new Uint8Array(shells.count);
+  if (shells.count === 1) return { volumes, depths, crossing: 0, crosses, complete: true };
   const { triangles, start } = listByShell(shells);
   const boxes = Array.from({ length: shells.count }, (_, shell) =>
     boxOf(mesh, triangles, start[shell], start[shell + 1]),
@@ -46,7 +49,7 @@ export function nestShells(mesh: TriangleMesh, shells: Shells): ShellNesting {
       work++;
       if (!contains(boxes[outer], boxes[inner])) continue;
       work += sampleCount * (start[outer + 1] - start[outer]);
-      if (work > mostWork) return { volumes, depths, crossing, complete: false };
+      if (work > mostWork) return { volumes, depths, crossing, crosses, complete: false };
       samples ??= samplePoints(mesh, triangles, start[inner], start[inner + 1]);
       let within = 0;
       for (let k = 0; k < samples.length; k += 3) {
@@ -65,9 +68,11 @@ export function nestShells(mesh: TriangleMesh, shells: Shells): ShellNesting {
       if (within === samples.length / 3) depths[inner]++;
       else if (within > 0) isCrossing = true;
     }
-    if (isCrossing) crossing++;
+    if (!isCrossing) continue;
+    crossing++;
+    crosses[inner] = 1;
   }
-  return { volumes, depths, crossing, complete: true };
+  return { volumes, depths, crossing, crosses, complete: true };
 }
 
 /** Middles of facets, evenly through the shell's list. */
