@@ -12,7 +12,16 @@ import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { fewestTriangles, simplifyForView, type ViewMesh } from './simplify-for-view.js';
 
 export interface ViewContent {
-  readonly meshes: readonly { readonly name: string; readonly mesh: TriangleMesh }[];
+  readonly meshes: readonly {
+    readonly name: string;
+    readonly mesh: TriangleMesh;
+    /**
+     * One number a vertex, written as the attribute `_NAME` (glTF 2.0, 3.7.2.1: application-specific
+     * names begin with an underscore); three's GLTFLoader offers it as `_name`. Only for a mesh
+     * within the budget, whose vertices stay.
+     */
+    readonly scalars?: { readonly name: string; readonly values: Float32Array };
+  }[];
   /** Line sets: flat xyz, two points a segment. */
   readonly lines?: readonly { readonly name: string; readonly positions: Float32Array }[];
   /** For all meshes together; shared by their triangle counts. */
@@ -45,9 +54,10 @@ export async function makeViewGlb(content: ViewContent): Promise<Uint8Array> {
 
   const total = content.meshes.reduce((sum, { mesh }) => sum + mesh.indices.length / 3, 0);
   const share = Math.min(1, content.triangleBudget / Math.max(1, total));
-  for (const { name, mesh } of content.meshes) {
+  for (const { name, mesh, scalars } of content.meshes) {
     const budget = Math.max(fewestTriangles, Math.floor((mesh.indices.length / 3) * share));
-    const view = orderForCompression(await simplifyForView(mesh, budget));
+    const simple = await simplifyForView(mesh, budget);
+    const view = orderForCompression(simple, scalars?.values);
     roundToGrid(view.positions, step);
     const primitive = document
       .createPrimitive()
@@ -59,6 +69,11 @@ export async function makeViewGlb(content: ViewContent): Promise<Uint8Array> {
           .setType('SCALAR')
           .setArray(view.indices as Uint32Array<ArrayBuffer>)
           .setBuffer(buffer),
+      );
+    if (scalars && view.scalars)
+      primitive.setAttribute(
+        `_${scalars.name}`,
+        document.createAccessor().setType('SCALAR').setArray(view.scalars).setBuffer(buffer),
       );
     add(name, primitive);
   }
@@ -89,16 +104,21 @@ function pointsOf(document: Document, buffer: Buffer, positions: Float32Array): 
 }
 
 /** Numbers vertices in the order in which triangles meet them and leaves out the unused ones. */
-function orderForCompression(view: ViewMesh): ViewMesh {
+function orderForCompression(
+  view: ViewMesh,
+  values?: Float32Array,
+): ViewMesh & { scalars?: Float32Array<ArrayBuffer> } {
   const indices = view.indices.slice();
   const [remap, count] = MeshoptEncoder.reorderMesh(indices, true, true);
   const positions = new Float32Array(3 * count);
+  const scalars = values && new Float32Array(count);
   for (let i = 0; i < remap.length; i++) {
     const to = remap[i];
     if (to >= count) continue;
     for (let axis = 0; axis < 3; axis++) positions[3 * to + axis] = view.positions[3 * i + axis];
+    if (scalars && values) scalars[to] = values[i];
   }
-  return { positions, indices };
+  return { positions, indices, ...(scalars && { scalars }) };
 }
 
 function gridStep({ meshes, lines = [] }: ViewContent): number {

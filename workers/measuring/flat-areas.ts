@@ -1,0 +1,144 @@
+import { matesOf } from '../../shared/geometry/mesh/edge-mates.js';
+import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
+import type { FlatArea } from '../../shared/jobs/model-inspect.js';
+
+const mostFlats = 12;
+/** A flat area has at least this share of the surface. */
+const leastShare = 0.01;
+/** Facets whose normals differ by less than this sine belong to one plane: a tenth of a degree. Own choice. */
+const sineTolerance = 0.00175;
+/** How far a corner may lie off the plane, as a share of the box's diagonal. Own choice. */
+const offsetShare = 2e-5;
+/** Facets are first sorted roughly by direction into bins of about this sine. */
+const binSine = 0.02;
+
+/**
+ * The largest plane regions of a surface, connected over edges: at most 12, each with 1 % of the
+ * surface or more, the largest first. Lengths in the mesh's unit. O(triangles).
+ */
+export function findFlats(mesh: TriangleMesh, diagonal: number): FlatArea[] {
+  const { normals, areas, total } = facetPlanes(mesh);
+  const candidates = candidateFacets(normals, areas, total);
+  if (candidates.length === 0) return [];
+  const { mates } = matesOf(mesh);
+  const seen = new Uint8Array(areas.length);
+  const queue: number[] = [];
+  const flats: FlatArea[] = [];
+  // Large facets give the steadiest normals.
+  candidates.sort((a, b) => areas[b] - areas[a] || a - b);
+  for (const seed of candidates) {
+    if (seen[seed] === 1) continue;
+    queue.length = 0;
+    queue.push(seed);
+    seen[seed] = 1;
+    const sum = { area: 0, x: 0, y: 0, z: 0 };
+    for (let at = 0; at < queue.length; at++) {
+      const triangle = queue[at];
+      addMiddle(mesh, triangle, areas[triangle], sum);
+      for (let side = 3 * triangle; side < 3 * triangle + 3; side++) {
+        const other = mates[side] < 0 ? -1 : (mates[side] / 3) | 0;
+        if (other < 0 || seen[other] === 1) continue;
+        if (!liesInPlane(mesh, normals, seed, other, offsetShare * diagonal)) continue;
+        seen[other] = 1;
+        queue.push(other);
+      }
+    }
+    if (sum.area < leastShare * total) continue;
+    flats.push({
+      area: sum.area,
+      normal: [normals[3 * seed], normals[3 * seed + 1], normals[3 * seed + 2]],
+      centre: [sum.x / sum.area, sum.y / sum.area, sum.z / sum.area],
+    });
+  }
+  return flats.sort((a, b) => b.area - a.area).slice(0, mostFlats);
+}
+
+function facetPlanes({ positions: p, indices }: TriangleMesh) {
+  const triangles = indices.length / 3;
+  const normals = new Float64Array(3 * triangles);
+  const areas = new Float64Array(triangles);
+  let total = 0;
+  for (let triangle = 0; triangle < triangles; triangle++) {
+    const a = 3 * indices[3 * triangle];
+    const b = 3 * indices[3 * triangle + 1];
+    const c = 3 * indices[3 * triangle + 2];
+    const ux = p[b] - p[a];
+    const uy = p[b + 1] - p[a + 1];
+    const uz = p[b + 2] - p[a + 2];
+    const vx = p[c] - p[a];
+    const vy = p[c + 1] - p[a + 1];
+    const vz = p[c + 2] - p[a + 2];
+    const x = uy * vz - uz * vy;
+    const y = uz * vx - ux * vz;
+    const z = ux * vy - uy * vx;
+    const length = Math.sqrt(x * x + y * y + z * z);
+    if (length === 0) continue;
+    areas[triangle] = length / 2;
+    total += length / 2;
+    normals[3 * triangle] = x / length;
+    normals[3 * triangle + 1] = y / length;
+    normals[3 * triangle + 2] = z / length;
+  }
+  return { normals, areas, total };
+}
+
+/** Facets in directions that have enough area for a flat; a plane may straddle up to eight bins. */
+function candidateFacets(normals: Float64Array, areas: Float64Array, total: number): number[] {
+  const side = Math.ceil(2 / binSine) + 1;
+  const bins = new Float64Array(side ** 3);
+  const binOf = (triangle: number) => {
+    const x = Math.floor((normals[3 * triangle] + 1) / binSine);
+    const y = Math.floor((normals[3 * triangle + 1] + 1) / binSine);
+    const z = Math.floor((normals[3 * triangle + 2] + 1) / binSine);
+    return (x * side + y) * side + z;
+  };
+  for (let triangle = 0; triangle < areas.length; triangle++)
+    bins[binOf(triangle)] += areas[triangle];
+  const found: number[] = [];
+  for (let triangle = 0; triangle < areas.length; triangle++)
+    if (areas[triangle] > 0 && bins[binOf(triangle)] >= (leastShare * total) / 8)
+      found.push(triangle);
+  return found;
+}
+
+function liesInPlane(
+  { positions, indices }: TriangleMesh,
+  normals: Float64Array,
+  seed: number,
+  other: number,
+  tolerance: number,
+): boolean {
+  const nx = normals[3 * seed];
+  const ny = normals[3 * seed + 1];
+  const nz = normals[3 * seed + 2];
+  const cosine =
+    nx * normals[3 * other] + ny * normals[3 * other + 1] + nz * normals[3 * other + 2];
+  // Facets without area have no normal and go by their corners alone.
+  if (cosine !== 0 && !(cosine > 0 && 1 - cosine * cosine < sineTolerance * sineTolerance))
+    return false;
+  const origin = 3 * indices[3 * seed];
+  for (let corner = 0; corner < 3; corner++) {
+    const at = 3 * indices[3 * other + corner];
+    const offset =
+      nx * (positions[at] - positions[origin]) +
+      ny * (positions[at + 1] - positions[origin + 1]) +
+      nz * (positions[at + 2] - positions[origin + 2]);
+    if (Math.abs(offset) > tolerance) return false;
+  }
+  return true;
+}
+
+function addMiddle(
+  { positions, indices }: TriangleMesh,
+  triangle: number,
+  area: number,
+  sum: { area: number; x: number; y: number; z: number },
+): void {
+  sum.area += area;
+  for (let corner = 0; corner < 3; corner++) {
+    const at = 3 * indices[3 * triangle + corner];
+    sum.x += (area * positions[at]) / 3;
+    sum.y += (area * positions[at + 1]) / 3;
+    sum.z += (area * positions[at + 2]) / 3;
+  }
+}
