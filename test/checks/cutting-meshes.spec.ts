@@ -8,7 +8,6 @@ import { roundAndWeld } from '../../shared/geometry/mesh/rounded.js';
 import { splitIntoSolids } from '../../shared/geometry/mesh/solids.js';
 import { edgeReport } from '../../shared/geometry/mesh/topology.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
-import { weldTriangles } from '../../shared/geometry/mesh/weld.js';
 import { type Plane } from '../../shared/geometry/vectors/plane.js';
 import { identityMotion } from '../../shared/geometry/vectors/rigid-motion.js';
 import { readStl } from '../../workers/intake/stl-reader.js';
@@ -74,8 +73,7 @@ function faultsOf(mesh: TriangleMesh, whole: number, plane: Plane): string[] {
 
 describe.skipIf(!isPresent)(`cuts of real meshes, seed ${SEED}`, () => {
   it.each(names)('%s', (name) => {
-    const { soup } = readStl(readFileSync(join(folder, `${name}.stl`)), `${name}.stl`);
-    const { mesh } = weldTriangles(soup);
+    const { mesh } = readStl(readFileSync(join(folder, `${name}.stl`)), `${name}.stl`);
     expect(edgeReport(mesh).closed).toBe(true);
     const whole = signedVolume(mesh);
     const planes = planesThrough(mesh, seededRandom(SEED), 4, 2);

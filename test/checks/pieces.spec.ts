@@ -85,7 +85,8 @@ async function planned({ title, mesh, space }: Case, run = 'first') {
   const file = { positions: Float32Array.from(mesh.positions), indices: mesh.indices };
   await writeFile(modelPath, writeStl(file, 'a test model'));
   const outFolder = join(folder, `${title}, ${run}`);
-  const command = { modelPath, space, seed: 1, millimetresPerUnit: 1, outFolder };
+  const choices = { fillHolesUpToMm: null, remeshCells: null, parts: null, accept: false };
+  const command = { modelPath, space, seed: 1, millimetresPerUnit: 1, outFolder, ...choices };
   return { report: await planModel(command, silentContext), outFolder };
 }
 

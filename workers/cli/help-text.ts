@@ -1,14 +1,22 @@
 /** What --help prints. */
-export const helpText = `seamwright plan MODEL.stl --envelope SIZE [options]
+export const helpText = `seamwright plan MODEL --envelope SIZE [options]
 
-Plans where to cut a model that is larger than the printer, cuts it exactly, lays every piece on the
-bed and proves the written files. Needs no server and no database.
+MODEL is an STL, OBJ or 3MF file. It is mended first; what was done is listed. Then a plan is made of
+where to cut it, the pieces are cut exactly and laid on the bed, and the written files are proven.
+Needs no server and no database.
 
   --envelope SIZE   usable build volume, mm: 220x220x250 is width, depth, height of a rectangular
                     bed; round:300x400 is diameter and height of a round one
   --margin MM       kept free on every side of the bed (default 0)
   --seed N          whole number; the same seed gives the same plan, byte for byte (default 1)
-  --unit UNIT       what one unit of the file is: mm (default), inch, or a number of millimetres
+  --unit UNIT       what one unit of the file is: mm, inch, or a number of millimetres (default: what
+                    the file states, else mm)
+  --parts LIST      of a file with several parts only these, for example 1,3 (default: all)
+  --fill-holes MM   closes holes with a rim of up to this length, or all (default: pinholes only)
+  --remesh CELLS    rebuilds the surface on a grid with this many cells along the longest side, for
+                    files that cannot be mended otherwise; finer details vanish
+  --accept          takes a mended solid whose size, or whose volume by over 0.5 %, differs from the
+                    file; without it such a file is refused with the numbers
   --out DIR         keep the pieces: DIR/pieces/P01.stl ..., DIR/manifest.json, DIR/cut-list.csv.
                     DIR is made when missing. A folder that holds anything but an earlier result of
                     this command is left alone; an earlier result is replaced as a whole. Without

@@ -18,10 +18,29 @@ describe('parseArguments', () => {
       modelPath: 'cube.stl',
       space: { shape: 'rectangular', widthMm: 220, depthMm: 220, heightMm: 250 },
       seed: 1,
-      millimetresPerUnit: 1,
+      millimetresPerUnit: null,
+      fillHolesUpToMm: null,
+      remeshCells: null,
+      parts: null,
+      accept: false,
       outFolder: null,
       json: false,
     });
+  });
+
+  it('takes what a person decided about a broken file', () => {
+    expect(
+      plan('--envelope=9x9x9', '--fill-holes', '12.5', '--remesh=300', '--parts=1,3', '--accept'),
+    ).toMatchObject({ fillHolesUpToMm: 12.5, remeshCells: 300, parts: [0, 2], accept: true });
+    expect(plan('--envelope=9x9x9', '--fill-holes=all')).toMatchObject({ fillHolesUpToMm: 1e9 });
+  });
+
+  it.each([
+    [['--fill-holes', 'some'], /the rim length “some” is neither “all” nor a number/],
+    [['--remesh', '20'], /the grid “20” is not a whole number of cells from 50 to 800/],
+    [['--parts', '0,1'], /the parts “0,1” are not whole numbers from 1/],
+  ])('refuses %j', (words, sentence) => {
+    expect(complaint('plan', 'cube.stl', '--envelope', '9x9x9', ...words)).toMatch(sentence);
   });
 
   it('takes the margin off every side of the bed and not off the height', () => {
@@ -86,6 +105,6 @@ describe('parseArguments', () => {
   it('says what is missing when there is no command or no file', () => {
     expect(complaint()).toMatch(/Say what to do/);
     expect(complaint('print', 'x.stl')).toMatch(/“print” is not a command/);
-    expect(complaint('plan')).toMatch(/Name the STL file/);
+    expect(complaint('plan')).toMatch(/Name the file to plan/);
   });
 });

@@ -1,4 +1,5 @@
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
+import { fewestRemeshCells, mostRemeshCells } from '../../shared/jobs/mending-choices.js';
 import { parseEnvelope } from './parse-envelope.js';
 import { UsageError } from './usage-error.js';
 
@@ -8,20 +9,39 @@ export interface PlanCommand {
   modelPath: string;
   space: BuildSpace;
   seed: number;
-  millimetresPerUnit: number;
+  /** Null when the person named no unit: then it is the file's own, or mm. */
+  millimetresPerUnit: number | null;
+  /** Longest rim that is filled, mm; null fills only pinholes. */
+  fillHolesUpToMm: number | null;
+  remeshCells: number | null;
+  /** Numbers of the parts to take, from 0; null takes all. */
+  parts: number[] | null;
+  /** Whether a change by mending is taken without asking. */
+  accept: boolean;
   outFolder: string | null;
   json: boolean;
 }
 export type Command = { kind: 'help' } | PlanCommand;
 
-const TAKING_VALUES = ['--envelope', '--margin', '--seed', '--unit', '--out'] as const;
+const TAKING_VALUES = [
+  '--envelope',
+  '--margin',
+  '--seed',
+  '--unit',
+  '--fill-holes',
+  '--remesh',
+  '--parts',
+  '--out',
+] as const;
 type ValueOption = (typeof TAKING_VALUES)[number];
 const LARGEST_SEED = 2 ** 31 - 1;
+/** What “all” holes means: longer than any rim in a file that is read. */
+const longestRimMm = 1e9;
 
 /** What the words after the program's name ask for. Throws a UsageError with one sentence. */
 export function parseArguments(words: readonly string[]): Command {
   if (words.includes('--help') || words.includes('-h')) return { kind: 'help' };
-  const { names, values, json } = sortWords(words);
+  const { names, values, json, accept } = sortWords(words);
   const [verb, modelPath, ...more] = names;
   if (verb !== 'plan')
     throw new UsageError(
@@ -29,7 +49,7 @@ export function parseArguments(words: readonly string[]): Command {
         ? 'Say what to do, for example: plan MODEL.stl --envelope 220x220x250 (--help shows everything).'
         : `“${verb}” is not a command; the one there is, is: plan (--help shows everything).`,
     );
-  if (modelPath === undefined) throw new UsageError('Name the STL file to plan after “plan”.');
+  if (modelPath === undefined) throw new UsageError('Name the file to plan after “plan”.');
   return naming(modelPath, () => {
     if (more.length > 0) throw new UsageError(`“${more[0]}” is one file too many`);
     const envelope = values.get('--envelope');
@@ -40,11 +60,19 @@ export function parseArguments(words: readonly string[]): Command {
       modelPath,
       space: parseEnvelope(envelope, values.get('--margin') ?? '0'),
       seed: parseSeed(values.get('--seed') ?? '1'),
-      millimetresPerUnit: parseUnit(values.get('--unit') ?? 'mm'),
+      millimetresPerUnit: given(values.get('--unit'), parseUnit),
+      fillHolesUpToMm: given(values.get('--fill-holes'), parseRim),
+      remeshCells: given(values.get('--remesh'), parseCells),
+      parts: given(values.get('--parts'), parseParts),
+      accept,
       outFolder: values.get('--out') ?? null,
       json,
     };
   });
+}
+
+function given<V>(text: string | undefined, read: (text: string) => V): V | null {
+  return text === undefined ? null : read(text);
 }
 
 function naming<R>(modelPath: string, parse: () => R): R {
@@ -65,11 +93,13 @@ function sortWords(words: readonly string[]) {
   const names: string[] = [];
   const values = new Map<ValueOption, string>();
   let json = false;
+  let accept = false;
   for (let i = 0; i < words.length; i++) {
     const word = words[i];
     const equals = word.indexOf('=');
     const name = word.startsWith('--') && equals > 0 ? word.slice(0, equals) : word;
     if (word === '--json') json = true;
+    else if (word === '--accept') accept = true;
     else if (isValueOption(name)) {
       const value = name === word ? words[++i] : word.slice(equals + 1);
       if (value === undefined || value === '' || value.startsWith('--'))
@@ -83,7 +113,7 @@ function sortWords(words: readonly string[]) {
       );
     else names.push(word);
   }
-  return { names, values, json };
+  return { names, values, json, accept };
 }
 
 function forFile(names: readonly string[]): string {
@@ -98,6 +128,30 @@ function parseSeed(text: string): number {
   const seed = /^\d+$/.test(text) ? Number(text) : NaN;
   if (seed <= LARGEST_SEED) return seed;
   throw new UsageError(`the seed “${text}” is not a whole number from 0 to ${LARGEST_SEED}`);
+}
+
+function parseRim(text: string): number {
+  if (text === 'all') return longestRimMm;
+  const lengthMm = /^\d+(\.\d+)?$/.test(text) ? Number(text) : NaN;
+  if (lengthMm > 0 && lengthMm <= 1e6) return lengthMm;
+  throw new UsageError(
+    `the rim length “${text}” is neither “all” nor a number of millimetres above 0 and up to 1000000`,
+  );
+}
+
+function parseCells(text: string): number {
+  const cells = /^\d+$/.test(text) ? Number(text) : NaN;
+  if (cells >= fewestRemeshCells && cells <= mostRemeshCells) return cells;
+  throw new UsageError(
+    `the grid “${text}” is not a whole number of cells from ${fewestRemeshCells} to ${mostRemeshCells}`,
+  );
+}
+
+/** People count parts from 1. */
+function parseParts(text: string): number[] {
+  const numbers = text.split(',').map((part) => (/^\d{1,6}$/.test(part) ? Number(part) : 0));
+  if (numbers.every((number) => number >= 1)) return numbers.map((number) => number - 1);
+  throw new UsageError(`the parts “${text}” are not whole numbers from 1, parted by commas`);
 }
 
 function parseUnit(text: string): number {

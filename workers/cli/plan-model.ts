@@ -3,8 +3,9 @@ import { tmpdir } from 'node:os';
 import { basename, join } from 'node:path';
 import { scaleMesh, signedVolume } from '../../shared/geometry/mesh/measure.js';
 import { makePieces } from '../building/make-pieces.js';
-import { readStl } from '../intake/stl-reader.js';
-import { type Inspection, inspectMesh } from '../measuring/mesh-report.js';
+import { type MendingChoices } from '../../shared/jobs/mending-choices.js';
+import { mayBePlanned, type MeshReport } from '../../shared/jobs/model-inspect.js';
+import { inspectFile } from '../inspecting/inspect-file.js';
 import { type JobContext, portionOf } from '../runtime/job-context.js';
 import { JobRefusal } from '../runtime/job-refusal.js';
 import { loadSolids } from '../solids/solid-kernel.js';
@@ -40,11 +41,14 @@ export async function planModel(
   const fileName = basename(modelPath);
   // WebAssembly compiles beside the reading.
   const loading = loadSolids();
-  const { inspection, parseMs } = inspect(bytes, fileName, portionOf(context, 0, 0.15));
-  const { report, solid, timingsMs } = inspection;
-  if (!solid)
-    throw new JobRefusal(namedRefusal(fileName, report.refusal ?? 'It cannot be planned.'));
-  const { millimetresPerUnit, space, seed } = command;
+  const { report, solid, timingsMs } = inspectFile(
+    { bytes, fileName, choices: choicesOf(command) },
+    { solids: await loading, context: portionOf(context, 0, 0.15) },
+  );
+  if (!solid || !mayBePlanned(report, command.accept))
+    throw new JobRefusal(namedRefusal(fileName, whyNot(report)));
+  const { space, seed } = command;
+  const millimetresPerUnit = command.millimetresPerUnit ?? report.fileUnit?.millimetres ?? 1;
   const mesh = millimetresPerUnit === 1 ? solid : scaleMesh(solid, millimetresPerUnit);
 
   const folder = createLazyFolder(() =>
@@ -63,6 +67,7 @@ export async function planModel(
         sizeMm: scaled(report.size, millimetresPerUnit),
         closed: report.closed,
       },
+      mending: report.mending,
       pieces: made.plan.pieces.map(({ name, triangles, volumeMm3, sizeMm, fits, file }) => ({
         name,
         triangles,
@@ -74,7 +79,7 @@ export async function planModel(
       seams: made.plan.seams.map(({ between, areaMm2 }) => ({ between, areaMm2 })),
       bounds: { pieces: made.plan.bounds.pieces },
       proof: made.plan.proof,
-      timingsMs: { parse: parseMs, ...timingsMs, ...made.timingsMs },
+      timingsMs: { ...timingsMs, ...made.timingsMs },
       // Linux counts the peak in kilobytes; Node passes it on as it is.
       peakMemoryMb: process.resourceUsage().maxRSS / 1024,
     };
@@ -113,18 +118,23 @@ async function readModel(modelPath: string): Promise<Uint8Array> {
   }
 }
 
-function inspect(
-  bytes: Uint8Array,
-  fileName: string,
-  context: JobContext,
-): { inspection: Inspection; parseMs: number } {
-  const start = performance.now();
-  const reading = readStl(bytes, fileName, (fraction) =>
-    portionOf(context, 0, 0.4).progress('Reading', fraction),
-  );
-  const parseMs = performance.now() - start;
-  const file = { reading, fileName, fileBytes: bytes.byteLength };
-  return { inspection: inspectMesh(file, portionOf(context, 0.4, 1)), parseMs };
+/** Rims are measured in the file's unit; a unit that only the file knows is taken as mm. */
+function choicesOf(command: Omit<PlanCommand, 'kind' | 'json'>): MendingChoices {
+  const { parts, remeshCells, fillHolesUpToMm } = command;
+  const fillHolesUpTo = fillHolesUpToMm && fillHolesUpToMm / (command.millimetresPerUnit ?? 1);
+  return { parts, remeshCells, fillHolesUpTo };
+}
+
+/** Why there is no plan, and which option would answer the question. */
+function whyNot({ refusal, asks }: MeshReport): string {
+  const option = {
+    'fill-holes': 'Give --fill-holes MM or --remesh CELLS.',
+    remesh: 'Give --remesh CELLS.',
+    accept: 'Give --accept to take it.',
+  };
+  if (refusal !== null) return refusal;
+  const [ask] = asks;
+  return ask ? `${ask.sentence} ${option[ask.kind]}` : 'It cannot be planned.';
 }
 
 /** A refusal that begins with the file's name. */

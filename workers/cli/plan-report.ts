@@ -1,3 +1,4 @@
+import { type MendingStep } from '../../shared/jobs/model-inspect.js';
 import { type ProofRow, type Seam } from '../../shared/jobs/plan-make.js';
 
 /** What `--json` prints. The field names are a contract with scripts: they stay. */
@@ -8,6 +9,8 @@ export interface PlanReport {
     sizeMm: readonly [number, number, number];
     closed: boolean;
   };
+  /** What was done to the file before it was planned, step by step. */
+  mending: Pick<MendingStep, 'kind' | 'count' | 'sentence'>[];
   pieces: {
     name: string;
     triangles: number;

@@ -6,11 +6,12 @@ export function showTables(
   report: PlanReport,
   outFolder: string | null,
 ): string {
-  const { model, pieces, seams, proof, bounds, timingsMs } = report;
+  const { model, mending, pieces, seams, proof, bounds, timingsMs } = report;
   const size = model.sizeMm.map((side) => side.toFixed(1)).join(' × ');
   const times = Object.entries(timingsMs).map(([step, ms]) => `${step} ${Math.round(ms)} ms`);
   const sections = [
     `${modelName}: ${size} mm, ${model.triangles} triangles, ${cm3(model.volumeMm3)} cm³`,
+    ...(mending.length > 0 ? [mending.map((step) => `- ${step.sentence}`).join('\n')] : []),
     `${counted(pieces.length, 'piece')} (no plan can have fewer than ${bounds.pieces})`,
     table(
       ['piece', 'size on the bed, mm', 'volume, cm³', 'triangles', 'fits'],

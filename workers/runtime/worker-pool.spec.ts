@@ -33,11 +33,12 @@ describe('a job in its thread', () => {
       solid: 'models/m1/r1/solid.mesh',
       view: 'models/m1/r1/view.glb',
       thumbnail: 'models/m1/r1/thumbnail.png',
+      proxy: 'models/m1/r1/proxy.mesh',
     });
     expect(output.viewTriangles).toBe(mesh.indices.length / 3);
     const solid = decodeMesh(await storage.read(output.files.solid!));
     expect(solid.indices.length).toBe(mesh.indices.length);
-    expect(stages).toContain('Welding');
+    expect(stages).toContain('Measuring walls');
     expect(stages[0]).toBe('Reading');
 
     await storage.write('empty.stl', new Uint8Array(0));
