@@ -10,6 +10,7 @@ import type { IntakeLine } from './support/intake-child.js';
 const folder = fileURLToPath(new URL('../../../shared/meshes/stl', import.meta.url));
 const child = fileURLToPath(new URL('support/intake-child.ts', import.meta.url));
 const longestSeconds = 60;
+const longestReason = 70;
 
 /** Every open test mesh through the intake, with every question answered by yes. */
 export async function bench(): Promise<BenchTable> {
@@ -30,7 +31,7 @@ export async function bench(): Promise<BenchTable> {
       line.file.replace(/\.stl$/, ''),
       line.end,
       line.decisions.join(', ') || '–',
-      line.end === 'solid' ? line.steps.join(', ') || '–' : (line.reason ?? ''),
+      line.end === 'solid' ? line.steps.join(', ') || '–' : shortened(line.reason ?? ''),
       line.end === 'solid' ? changeOf(line) : '–',
       line.manifold || '–',
       line.admeshOpen === null ? '–' : line.admeshOpen,
@@ -63,6 +64,12 @@ export async function bench(): Promise<BenchTable> {
       ),
     ],
   };
+}
+
+/** Without the file's name, and not so long that the table gets out of hand. */
+function shortened(reason: string): string {
+  const bare = reason.replace(/^“[^”]*” /, '');
+  return bare.length <= longestReason ? bare : `${bare.slice(0, longestReason - 1)}…`;
 }
 
 function changeOf({ volumeBefore, volumeAfter }: IntakeLine): string {

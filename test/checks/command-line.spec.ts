@@ -16,8 +16,11 @@ beforeAll(async () => {
   folder = await mkdtemp(join(tmpdir(), 'seamwright-command-'));
   const { positions, indices } = box([0, 0, 0], [300, 40, 30]).mesh;
   const bar = writeStl({ positions: Float32Array.from(positions), indices }, 'bar');
+  const isBottom = (facet: number) =>
+    [0, 1, 2].every((k) => positions[3 * indices[3 * facet + k] + 2] === 0);
+  const withoutBottom = indices.filter((_, i) => !isBottom(Math.floor(i / 3)));
   const open = writeStl(
-    { positions: Float32Array.from(positions), indices: indices.slice(3) },
+    { positions: Float32Array.from(positions), indices: withoutBottom },
     'open',
   );
   const notANumber = bar.slice();
@@ -61,6 +64,7 @@ describe('the command line', () => {
       'proof',
       'timingsMs',
       'peakMemoryMb',
+      'mending',
     ]);
     expect(report.model).toEqual({
       triangles: 12,
@@ -98,6 +102,16 @@ describe('the command line', () => {
     ]);
   });
 
+  it('takes a broken file once it is told how, and lists what was done', async () => {
+    const { code, out } = await run(
+      ...['plan', 'open.stl', '--envelope', '220x220x250', '--fill-holes=all', '--json'],
+    );
+    expect(code).toBe(0);
+    const report = JSON.parse(out);
+    expect(report.model).toMatchObject({ volumeMm3: 360_000, closed: true });
+    expect(report.mending).toMatchObject([{ kind: 'fill-holes', count: 1 }]);
+  });
+
   it('explains itself', async () => {
     const { code, out } = await run('--help');
     expect(code).toBe(0);
@@ -112,7 +126,11 @@ describe('the command line', () => {
     ['a web page', ['page.stl', ...size], /“page.stl” is a web page/],
     ['a truncated file', ['short.stl', ...size], /“short.stl”/],
     ['a coordinate that is no number', ['nan.stl', ...size], /“nan.stl”/],
-    ['an open surface', ['open.stl', ...size], /“open.stl” .*not closed.*3 edges/],
+    [
+      'an open surface',
+      ['open.stl', ...size],
+      /“open.stl” .*has a hole with a rim of up to [\d.]+ mm: give --fill-holes/,
+    ],
     ['an envelope of 0', ['bar.stl', '--envelope', '0x220x250'], /“bar.stl”: .*width of 0 mm/],
     ['a negative envelope', ['bar.stl', '--envelope', '220x220x-1'], /height of -1 mm/],
     ['an envelope over 10 m', ['bar.stl', '--envelope', '220x220x10000.5'], /10000.5 mm/],

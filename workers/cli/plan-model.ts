@@ -46,7 +46,7 @@ export async function planModel(
     { solids: await loading, context: portionOf(context, 0, 0.15) },
   );
   if (!solid || !mayBePlanned(report, command.accept))
-    throw new JobRefusal(namedRefusal(fileName, whyNot(report)));
+    throw new JobRefusal(namedRefusal(fileName, whyNot(report, command.millimetresPerUnit ?? 1)));
   const { space, seed } = command;
   const millimetresPerUnit = command.millimetresPerUnit ?? report.fileUnit?.millimetres ?? 1;
   const mesh = millimetresPerUnit === 1 ? solid : scaleMesh(solid, millimetresPerUnit);
@@ -67,7 +67,6 @@ export async function planModel(
         sizeMm: scaled(report.size, millimetresPerUnit),
         closed: report.closed,
       },
-      mending: report.mending,
       pieces: made.plan.pieces.map(({ name, triangles, volumeMm3, sizeMm, fits, file }) => ({
         name,
         triangles,
@@ -82,6 +81,7 @@ export async function planModel(
       timingsMs: { ...timingsMs, ...made.timingsMs },
       // Linux counts the peak in kilobytes; Node passes it on as it is.
       peakMemoryMb: process.resourceUsage().maxRSS / 1024,
+      mending: report.mending,
     };
   } catch (error) {
     if (isFileSystemError(error))
@@ -125,16 +125,19 @@ function choicesOf(command: Omit<PlanCommand, 'kind' | 'json'>): MendingChoices 
   return { parts, remeshCells, fillHolesUpTo };
 }
 
-/** Why there is no plan, and which option would answer the question. */
-function whyNot({ refusal, asks }: MeshReport): string {
-  const option = {
-    'fill-holes': 'Give --fill-holes MM or --remesh CELLS.',
-    remesh: 'Give --remesh CELLS.',
-    accept: 'Give --accept to take it.',
-  };
+/** Why there is no plan, and which option would answer the question, in one sentence. */
+function whyNot({ refusal, asks, asRead, volume }: MeshReport, millimetresPerUnit: number): string {
   if (refusal !== null) return refusal;
   const [ask] = asks;
-  return ask ? `${ask.sentence} ${option[ask.kind]}` : 'It cannot be planned.';
+  if (!ask) return 'It cannot be planned.';
+  if (ask.kind === 'fill-holes') {
+    const longestMm = (ask.longest * millimetresPerUnit).toFixed(1);
+    return `Its surface has ${ask.count === 1 ? 'a hole' : `${ask.count} holes`} with a rim of up to ${longestMm} mm: give --fill-holes MM or --remesh CELLS.`;
+  }
+  if (ask.kind === 'remesh')
+    return 'Its surface cannot be mended without changing its shape: give --remesh CELLS to rebuild it.';
+  const percent = asRead.volume > 0 ? (100 * (volume / asRead.volume - 1)).toFixed(2) : '100';
+  return `Mending changes its volume by ${percent} % or its outer size: give --accept to take that.`;
 }
 
 /** A refusal that begins with the file's name. */

@@ -9,8 +9,6 @@ export interface PlanReport {
     sizeMm: readonly [number, number, number];
     closed: boolean;
   };
-  /** What was done to the file before it was planned, step by step. */
-  mending: Pick<MendingStep, 'kind' | 'count' | 'sentence'>[];
   pieces: {
     name: string;
     triangles: number;
@@ -32,4 +30,6 @@ export interface PlanReport {
     write: number;
   };
   peakMemoryMb: number;
+  /** What was done to the file before it was planned, step by step. */
+  mending: Pick<MendingStep, 'kind' | 'count' | 'sentence'>[];
 }
