@@ -38,18 +38,48 @@ export function capFlatRims(
   return { caps, done };
 }
 
+/** Flat rims that lie in one plane and near each other: of others none can lie inside another. */
 function groupByPlane(holes: readonly Hole[], tolerance: number): FlatRim[][] {
-  const groups: FlatRim[][] = [];
+  const rims: FlatRim[] = [];
   for (const hole of holes) {
     const plane = rimPlane(hole.rim, 2 * tolerance);
-    if (!plane) continue;
-    const rim: FlatRim = { hole, plane, loop: new Float64Array(0) };
-    const group = groups.find(([first]) => isSamePlane(first, rim, tolerance));
-    if (group) group.push(rim);
-    else groups.push([rim]);
+    if (plane) rims.push({ hole, plane, loop: new Float64Array(0) });
   }
-  for (const group of groups) layFlat(group);
-  return groups;
+  const groupOf = rims.map((_, i) => i);
+  const rootOf = (i: number): number => {
+    while (groupOf[i] !== i) i = groupOf[i] = groupOf[groupOf[i]];
+    return i;
+  };
+  // Sweeps along x over the spheres around the rims; those still open may reach the next one.
+  const from = (i: number) => rims[i].hole.centre[0] - rims[i].hole.reach;
+  const order = rims.map((_, i) => i).sort((a, b) => from(a) - from(b) || a - b);
+  let open: number[] = [];
+  for (const i of order) {
+    const start = from(i) - tolerance;
+    open = open.filter((j) => rims[j].hole.centre[0] + rims[j].hole.reach >= start);
+    for (const j of open) {
+      if (!areNear(rims[i].hole, rims[j].hole, tolerance)) continue;
+      if (!isSamePlane(rims[j], rims[i], tolerance)) continue;
+      const [a, b] = [rootOf(i), rootOf(j)];
+      groupOf[Math.max(a, b)] = Math.min(a, b);
+    }
+    open.push(i);
+  }
+  const groups = new Map<number, FlatRim[]>();
+  rims.forEach((rim, i) => {
+    const group = groups.get(rootOf(i));
+    if (group) group.push(rim);
+    else groups.set(rootOf(i), [rim]);
+  });
+  for (const group of groups.values()) layFlat(group);
+  return [...groups.values()];
+}
+
+function areNear(one: Hole, other: Hole, tolerance: number): boolean {
+  const reach = one.reach + other.reach + tolerance;
+  const [x, y, z] = one.centre;
+  const [a, b, c] = other.centre;
+  return (x - a) * (x - a) + (y - b) * (y - b) + (z - c) * (z - c) <= reach * reach;
 }
 
 /** In one plane, facing the same or the opposite way. */
@@ -91,20 +121,20 @@ function unit([x, y, z]: number[]): number[] {
   return [x / length, y / length, z / length];
 }
 
-/** Every outline with the opposite outlines right inside it; opposite ones outside of all stand alone. */
+/** Every outline with those right inside it that run the other way; all others stand for themselves. */
 function separateCaps(group: readonly FlatRim[]): FlatRim[][] {
-  const outers = group.filter((rim) => areaOf(rim.loop) > 0);
-  const parts = new Map<FlatRim, FlatRim[]>(outers.map((outer) => [outer, [outer]]));
-  const alone: FlatRim[][] = [];
-  for (const rim of group) {
-    if (areaOf(rim.loop) > 0) continue;
-    const around = outers
-      .filter((outer) => isInside(outer.loop, rim.loop[0], rim.loop[1]))
-      .sort((a, b) => areaOf(a.loop) - areaOf(b.loop))[0];
-    if (around) parts.get(around)!.push(rim);
-    else alone.push([rim]);
-  }
-  return [...parts.values(), ...alone];
+  if (group.length === 1) return [[...group]];
+  const rims = group.map((rim) => ({ rim, area: areaOf(rim.loop) }));
+  rims.sort((a, b) => Math.abs(b.area) - Math.abs(a.area) || a.rim.hole.id - b.rim.hole.id);
+  const parts = new Map<FlatRim, FlatRim[]>();
+  rims.forEach(({ rim, area }, i) => {
+    let around = i - 1;
+    while (around >= 0 && !isInside(rims[around].rim.loop, rim.loop[0], rim.loop[1])) around--;
+    const part = around >= 0 ? parts.get(rims[around].rim) : undefined;
+    if (part && rims[around].area * area < 0) part.push(rim);
+    else parts.set(rim, [rim]);
+  });
+  return [...parts.values()];
 }
 
 function capOf(

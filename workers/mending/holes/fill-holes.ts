@@ -41,17 +41,17 @@ export function fillHoles(
   const points: number[] = [];
   const flat = chosen.filter((hole) => hole.isFlat && hole.edges > 3);
   const capped = capFlatRims(flat, tolerance, triangulate, edges.has);
-  for (const triangles of capped.caps) {
-    added.push(...triangles);
+  // One by one: a call takes no list as long as a large cap.
+  const add = (triangles: readonly number[]): void => {
+    for (const vertex of triangles) added.push(vertex);
     edges.addAll(triangles);
-  }
-  let closed = 0;
-  for (const hole of chosen) {
-    context.progress('Filling holes', closed++ / chosen.length);
+  };
+  capped.caps.forEach(add);
+  for (const [closed, hole] of chosen.entries()) {
     if (capped.done.has(hole.id)) continue;
-    const triangles = patchOf(hole, edges.has) ?? fanOf(hole, mesh, points);
-    added.push(...triangles);
-    edges.addAll(triangles);
+    const report = (part: number) =>
+      context.progress('Filling holes', (closed + part) / chosen.length);
+    add(patchOf(hole, edges.has, report) ?? fanOf(hole, mesh, points));
   }
   const filled = new Set(chosen.map((hole) => hole.id));
   return {
@@ -95,12 +95,16 @@ function edgesAmong(mesh: TriangleMesh, holes: readonly Hole[]) {
 }
 
 /** The patch runs against the rim. */
-function patchOf(hole: Hole, isEdge: (a: number, b: number) => boolean): number[] | null {
+function patchOf(
+  hole: Hole,
+  isEdge: (a: number, b: number) => boolean,
+  report: (fraction: number) => void,
+): number[] | null {
   const vertices = [...hole.vertices].reverse();
   const loop = new Float64Array(hole.rim.length);
   for (let i = 0; i < vertices.length; i++)
     loop.set(hole.rim.subarray(hole.rim.length - 3 * i - 3, hole.rim.length - 3 * i), 3 * i);
-  const triangles = patchLoop(loop, (i, j) => !isEdge(vertices[i], vertices[j]));
+  const triangles = patchLoop(loop, (i, j) => !isEdge(vertices[i], vertices[j]), report);
   return triangles && triangles.map((place) => vertices[place]);
 }
 

@@ -1,5 +1,7 @@
 /** Loops up to this long are triangulated as a whole: the work grows with the cube of their length. */
 const longestWhole = 120;
+/** Of longer loops about this many corners are tried as ends of a chord: bounds the search. */
+const chordEnds = 2000;
 
 /** Whether a new edge may join two corners of the loop, given by their places in it. */
 export type MayJoin = (i: number, j: number) => boolean;
@@ -8,23 +10,32 @@ export type MayJoin = (i: number, j: number) => boolean;
  * Triangulates a closed loop in space with the patch of least area among those whose sharpest fold is
  * least (G. Barequet and M. Sharir, CAGD 12, 1995; P. Liepa, "Filling Holes in Meshes", SGP 2003), by
  * dynamic programming. Long loops are first parted by short chords. Null when forbidden edges leave
- * no way. @param loop flat xyz; triangles run as the loop does @returns places in the loop, three each
+ * no way. @param loop flat xyz; triangles run as the loop does
+ * @param onProgress called with the share of the loop that is done, once a part
+ * @returns places in the loop, three each
  */
-export function patchLoop(loop: Float64Array, mayJoin: MayJoin): number[] | null {
-  const places = Array.from({ length: loop.length / 3 }, (_, i) => i);
-  return patch(loop, places, mayJoin);
-}
-
-function patch(loop: Float64Array, places: readonly number[], mayJoin: MayJoin): number[] | null {
-  const count = places.length;
-  if (count === 3) return [...places];
-  if (count <= longestWhole) return leastPatch(loop, places, mayJoin);
-  const chord = bestChord(loop, places, mayJoin);
-  if (!chord) return null;
-  const [i, j] = chord;
-  const one = patch(loop, places.slice(i, j + 1), mayJoin);
-  const other = patch(loop, [...places.slice(j), ...places.slice(0, i + 1)], mayJoin);
-  return one && other && [...one, ...other];
+export function patchLoop(
+  loop: Float64Array,
+  mayJoin: MayJoin,
+  onProgress: (fraction: number) => void = () => {},
+): number[] | null {
+  const corners = loop.length / 3;
+  const triangles: number[] = [];
+  const open = [Array.from({ length: corners }, (_, i) => i)];
+  for (let places = open.pop(); places; places = open.pop()) {
+    onProgress(triangles.length / 3 / corners);
+    if (places.length <= longestWhole) {
+      const part = places.length === 3 ? places : leastPatch(loop, places, mayJoin);
+      if (!part) return null;
+      for (const place of part) triangles.push(place);
+      continue;
+    }
+    const chord = bestChord(loop, places, mayJoin);
+    if (!chord) return null;
+    const [i, j] = chord;
+    open.push([...places.slice(j), ...places.slice(0, i + 1)], places.slice(i, j + 1));
+  }
+  return triangles;
 }
 
 /** The chord that is shortest for the way round that it saves; parts of at least an eighth each. */
@@ -37,9 +48,10 @@ function bestChord(
   const least = Math.max(2, count >> 3);
   let best: [number, number] | null = null;
   let shortest = Infinity;
-  for (let i = 0; i < count; i++)
+  const stride = Math.max(1, Math.floor(count / chordEnds));
+  for (let i = 0; i < count; i += stride)
     for (let j = i + least; j < count && count - (j - i) >= least; j++) {
-      const length = distance(loop, places[i], places[j]);
+      const length = squareDistance(loop, places[i], places[j]);
       if (length >= shortest || !mayJoin(places[i], places[j])) continue;
       shortest = length;
       best = [i, j];
@@ -47,9 +59,7 @@ function bestChord(
   return best;
 }
 
-/**
- * Angles count in steps, so that the least area decides between folds that look the same.
- */
+/** Angles count in steps, so that the least area decides between folds that look the same. */
 const foldSteps = 64;
 
 function leastPatch(
@@ -132,6 +142,9 @@ function bend(a: Float64Array, b: Float64Array): number {
   return Math.round((foldSteps * (1 - (a[0] * b[0] + a[1] * b[1] + a[2] * b[2]))) / 2);
 }
 
-function distance(p: Float64Array, a: number, b: number): number {
-  return Math.hypot(p[3 * a] - p[3 * b], p[3 * a + 1] - p[3 * b + 1], p[3 * a + 2] - p[3 * b + 2]);
+function squareDistance(p: Float64Array, a: number, b: number): number {
+  const x = p[3 * a] - p[3 * b];
+  const y = p[3 * a + 1] - p[3 * b + 1];
+  const z = p[3 * a + 2] - p[3 * b + 2];
+  return x * x + y * y + z * z;
 }
