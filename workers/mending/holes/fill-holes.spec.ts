@@ -190,10 +190,11 @@ describe('fillHoles', () => {
         [18, floor],
         [0, floor],
       ] as const;
-    const low = facetedTurning('low', profile(-30, -28), 64);
-    const high = facetedTurning('high', profile(30, 28).slice().reverse(), 48);
+    // Square ones, corner to the axes: apart from each other, but within each other's reach.
+    const low = facetedTurning('low', profile(-30, -28), 4);
+    const high = facetedTurning('high', profile(30, 28).slice().reverse(), 4);
     const moved = {
-      positions: high.mesh.positions.map((value, i) => value + (i % 3 === 0 ? 35 : 0)),
+      positions: high.mesh.positions.map((value, i) => value + (i % 3 === 2 ? 0 : 25)),
       indices: high.mesh.indices,
     };
     const whole = join([low.mesh, moved]);
