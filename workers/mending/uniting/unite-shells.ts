@@ -1,37 +1,35 @@
-import { boundingBox } from '../../../shared/geometry/mesh/measure.js';
 import { surfacesOf } from '../../../shared/geometry/mesh/edge-mates.js';
+import { boundingBox } from '../../../shared/geometry/mesh/measure.js';
 import { roundAndWeld } from '../../../shared/geometry/mesh/rounded.js';
-import { listByShell, shellVolumes } from '../../../shared/geometry/mesh/shells.js';
 import { edgeReport } from '../../../shared/geometry/mesh/topology.js';
 import type { TriangleMesh } from '../../../shared/geometry/mesh/triangle-mesh.js';
-import { identityMotion } from '../../../shared/geometry/vectors/rigid-motion.js';
 import type { MendingStep } from '../../../shared/jobs/model-inspect.js';
 import { countOf } from '../../intake/refusal-words.js';
-import { type JobContext, silentContext } from '../../runtime/job-context.js';
+import { findCrossings } from '../../measuring/find-crossings.js';
+import { buildBvh } from '../../measuring/triangle-bvh.js';
+import { type JobContext, portionOf, silentContext } from '../../runtime/job-context.js';
 import type { Solids } from '../../solids/solid-kernel.js';
-import { joinMeshes, pickTriangles } from './mesh-parts.js';
+import { groupShells, type ShellGroups } from './group-shells.js';
+import { listShells, placeOf, type Shell } from './list-shells.js';
+import { joinMeshes } from './mesh-parts.js';
 import { partSelfCrossing } from './part-self-crossing.js';
-import { uniteMeshes } from './unite-meshes.js';
+import { isSameInside } from './same-inside.js';
+import { uniteMeshes, type UnionPart } from './unite-meshes.js';
 
 export type UnitedShells =
   { readonly mesh: TriangleMesh; readonly steps: MendingStep[] } | { readonly refusal: string };
 
-/** A shell with what belongs to it. */
-interface Shell {
-  readonly number: number;
-  readonly volume: number;
-  readonly min: readonly number[];
-  readonly max: readonly number[];
-  readonly mesh: TriangleMesh;
-}
+const cannotUnite =
+  'The surface crosses itself in a way that cannot be united exactly. Have the surface rebuilt on a grid.';
 
 /**
- * Makes one solid of shells that overlap: inside is where the winding number is positive. Shells that
- * touch no other come through untouched, vertex for vertex. Cavities go with the smallest shell
- * around them. A shell that crosses itself is first cut into parts that do not, and those are united
- * again. Refused when that does not work, in a sentence that names the way out.
- * @param mesh closed, each shell facing outward or, as a cavity, inward
- * @param tools.crossingTriangles pairs of triangles that cross, as `findCrossings` gives them
+ * Makes one solid of shells that overlap: inside is where they wind more than zero times around a
+ * point. Shells that share no space with others come through untouched, vertex for vertex. Hollows go
+ * with the smallest shell around them. A shell that crosses itself is first cut into parts that do not,
+ * and those are united again. The result is closed, also in single precision, and is checked against
+ * the winding of the input; when that fails it is refused in a sentence that names the way out.
+ * @param mesh closed, each shell facing outward or, as a hollow, inward; it is not changed
+ * @param tools.crossingTriangles pairs of triangles that cross; found here when they are not given
  */
 export function uniteShells(
   mesh: TriangleMesh,
@@ -41,133 +39,106 @@ export function uniteShells(
     readonly context?: JobContext;
   },
 ): UnitedShells {
-  const { solids, crossingTriangles = new Uint32Array(0), context = silentContext } = tools;
-  const { labels } = surfacesOf(mesh);
+  const { solids, context = silentContext } = tools;
+  if (mesh.indices.length === 0) return { mesh, steps: [] };
+  const crossingTriangles =
+    tools.crossingTriangles ?? findCrossings(mesh, buildBvh(mesh), { context }).triangles;
+  context.progress('Uniting', 0);
   const shells = listShells(mesh);
-  const selfCrossing = new Set<number>();
-  const link = new Int32Array(shells.length).map((_, i) => i);
-  for (let i = 0; i < crossingTriangles.length; i += 2) {
-    const [a, b] = [labels[crossingTriangles[i]], labels[crossingTriangles[i + 1]]];
-    if (a === b) selfCrossing.add(a);
-    else unite(link, a, b);
-  }
-  const groups = groupTouching(shells, link, selfCrossing);
-  const untouched = shells.filter((shell) => !groups.some((group) => group.includes(shell)));
-  const results: TriangleMesh[] = [];
-  let united = 0;
-  for (const [number, group] of groups.entries()) {
-    context.progress('Uniting', number / groups.length);
-    const solid = uniteGroup(group, selfCrossing, { solids, context });
-    if ('refusal' in solid) return solid;
-    results.push(solid.mesh);
-    united += group.length;
-  }
+  const found = groupShells(shells, surfacesOf(mesh).labels, crossingTriangles);
+  const { groups } = found;
   if (groups.length === 0) return { mesh, steps: [] };
+  const results: TriangleMesh[] = [];
+  for (const [number, group] of groups.entries()) {
+    const part = portionOf(context, number / groups.length, (number + 1) / groups.length);
+    const solid = uniteGroup(group, found, { solids, context: part });
+    if (!solid) return { refusal: cannotUnite };
+    results.push(solid);
+  }
+  const inGroup = new Set(groups.flat());
+  const untouched = shells.filter((shell) => !inGroup.has(shell));
   const whole = joinMeshes([...untouched.map((shell) => shell.mesh), ...results]);
-  if (!edgeReport(whole).closed || !roundAndWeld(whole, identityMotion).report.closed)
-    return { refusal: cannotUnite };
-  const sentence =
-    united === 1
-      ? 'A surface that crosses itself was united into one solid.'
-      : `${countOf(united, 'shell')} that ran into each other were united into ${countOf(groups.length, 'solid')}.`;
-  return { mesh: whole, steps: [{ kind: 'unite', count: united, sentence }] };
+  if (!isClosedWhenRounded(whole)) return { refusal: cannotUnite };
+  return { mesh: whole, steps: [stepOf(groups)] };
 }
 
-const cannotUnite =
-  'The surface crosses itself in a way that cannot be united exactly. Have the surface rebuilt on a grid.';
-
-function listShells(mesh: TriangleMesh): Shell[] {
-  const surfaces = surfacesOf(mesh);
-  const volumes = shellVolumes(mesh, surfaces);
-  const { triangles, start } = listByShell(surfaces);
-  return Array.from(volumes, (volume, number) => {
-    const part = pickTriangles(mesh, triangles.subarray(start[number], start[number + 1]));
-    const { min, max } = boundingBox(part.positions);
-    return { number, volume, min, max, mesh: part };
-  });
+function stepOf(groups: ShellGroups['groups']): MendingStep {
+  const count = groups.flat().length;
+  const lone = groups.filter((group) => group.length === 1).length;
+  const several = count - lone;
+  const solids = groups.length - lone;
+  const sentences: string[] = [];
+  if (several > 0)
+    sentences.push(
+      `${countOf(several, 'shell')} that ran into each other were united into ${countOf(solids, 'solid')}.`,
+    );
+  if (lone > 0)
+    sentences.push(
+      lone === 1
+        ? 'A shell that crossed itself was made one solid.'
+        : `${countOf(lone, 'shell')} that crossed themselves were each made one solid.`,
+    );
+  return { kind: 'unite', count, sentence: sentences.join(' ') };
 }
 
-/** Shells that cross, each group with all other shells whose boxes touch one of it. */
-function groupTouching(
-  shells: readonly Shell[],
-  link: Int32Array,
-  selfCrossing: ReadonlySet<number>,
-): Shell[][] {
-  const isLinked = new Set<number>(selfCrossing);
-  shells.forEach((shell) => {
-    const root = findRoot(link, shell.number);
-    if (root !== shell.number) isLinked.add(root).add(shell.number);
-  });
-  // What lies near a crossing may be swallowed by the union, so it has to take part.
-  for (let isGrowing = true; isGrowing;) {
-    isGrowing = false;
-    for (const shell of shells) {
-      if (isLinked.has(shell.number)) continue;
-      const other = shells.find((one) => isLinked.has(one.number) && boxesTouch(one, shell));
-      if (!other) continue;
-      unite(link, other.number, shell.number);
-      isLinked.add(shell.number);
-      isGrowing = true;
-    }
-  }
-  const groups = new Map<number, Shell[]>();
-  for (const shell of shells) {
-    if (!isLinked.has(shell.number)) continue;
-    const root = findRoot(link, shell.number);
-    const group = groups.get(root);
-    if (group) group.push(shell);
-    else groups.set(root, [shell]);
-  }
-  return [...groups.values()];
+/** Closed by its numbers, and still so in single precision about its middle. */
+function isClosedWhenRounded(mesh: TriangleMesh): boolean {
+  if (!edgeReport(mesh).closed) return false;
+  const { min, size } = boundingBox(mesh.positions);
+  const [x, y, z] = min.map((value, axis) => -value - size[axis] / 2);
+  return roundAndWeld(mesh, [1, 0, 0, x, 0, 1, 0, y, 0, 0, 1, z]).report.closed;
 }
 
+/** Null when it cannot be done, or the result does not hold the same points. */
 function uniteGroup(
   group: readonly Shell[],
-  selfCrossing: ReadonlySet<number>,
+  found: ShellGroups,
   { solids, context }: { solids: Solids; context: JobContext },
-): { mesh: TriangleMesh } | { refusal: string } {
-  const outers = group.filter((shell) => shell.volume > 0);
-  const cavitiesOf = new Map<Shell, Shell[]>(outers.map((outer) => [outer, []]));
-  for (const cavity of group.filter((shell) => shell.volume <= 0)) {
-    const around = outers
-      .filter((outer) => contains(outer, cavity))
-      .sort((a, b) => a.volume - b.volume)[0];
-    if (around) cavitiesOf.get(around)!.push(cavity);
-  }
-  const parts: TriangleMesh[] = [];
-  for (const [outer, cavities] of cavitiesOf) {
-    const solid = joinMeshes([outer, ...cavities].map((shell) => shell.mesh));
-    if (![outer, ...cavities].some((shell) => selfCrossing.has(shell.number))) {
-      parts.push(solid);
+): TriangleMesh | null {
+  const parts: UnionPart[] = [];
+  for (const [outer, hollows] of hollowsByOuter(group)) {
+    const crossing = hollows.filter((hollow) => doCross(outer, hollow, found));
+    const nested = hollows.filter((hollow) => !crossing.includes(hollow));
+    const mesh = joinMeshes([outer, ...nested].map((shell) => shell.mesh));
+    const without = crossing.map((hollow) => turned(hollow.mesh));
+    if (![outer, ...hollows].some((shell) => found.selfCrossing.has(shell.number))) {
+      parts.push({ mesh, without });
       continue;
     }
-    const separated = partSelfCrossing(solid, solids, context);
-    if (!separated) return { refusal: cannotUnite };
-    parts.push(...separated);
+    const separated = crossing.length === 0 ? partSelfCrossing(mesh, solids, context) : null;
+    if (!separated) return null;
+    for (const part of separated) parts.push({ mesh: part, without: [] });
   }
-  const mesh = uniteMeshes(parts, solids);
-  return mesh ? { mesh } : { refusal: cannotUnite };
+  if (parts.length === 0) return null;
+  context.progress('Uniting', 0.8);
+  const united = uniteMeshes(parts, solids);
+  if (!united) return null;
+  context.progress('Uniting', 0.9);
+  return isSameInside(joinMeshes(group.map((shell) => shell.mesh)), united) ? united : null;
 }
 
-function boxesTouch(a: Shell, b: Shell): boolean {
-  return [0, 1, 2].every((axis) => a.min[axis] <= b.max[axis] && b.min[axis] <= a.max[axis]);
-}
-
-function contains(outer: Shell, inner: Shell): boolean {
-  return [0, 1, 2].every(
-    (axis) => outer.min[axis] <= inner.min[axis] && inner.max[axis] <= outer.max[axis],
-  );
-}
-
-function unite(link: Int32Array, a: number, b: number): void {
-  const [x, y] = [findRoot(link, a), findRoot(link, b)];
-  link[Math.max(x, y)] = Math.min(x, y);
-}
-
-function findRoot(link: Int32Array, at: number): number {
-  while (link[at] !== at) {
-    link[at] = link[link[at]];
-    at = link[at];
+/** Hollows of the group by the smallest shell around them; those around which no shell lies are left out. */
+function hollowsByOuter(group: readonly Shell[]): Map<Shell, Shell[]> {
+  const outers = group.filter((shell) => shell.volume > 0).sort((a, b) => a.volume - b.volume);
+  const hollowsOf = new Map<Shell, Shell[]>(outers.map((outer) => [outer, []]));
+  for (const hollow of group) {
+    if (hollow.volume > 0) continue;
+    const around = outers.find((outer) => placeOf(hollow, outer) !== 'outside');
+    if (around) hollowsOf.get(around)!.push(hollow);
   }
-  return at;
+  return hollowsOf;
+}
+
+function doCross(one: Shell, other: Shell, { pairs }: ShellGroups): boolean {
+  const [a, b] = [one.number, other.number];
+  return pairs.has(a < b ? `${a},${b}` : `${b},${a}`);
+}
+
+function turned({ positions, indices }: TriangleMesh): TriangleMesh {
+  const other = indices.slice();
+  for (let i = 0; i < other.length; i += 3) {
+    other[i + 1] = indices[i + 2];
+    other[i + 2] = indices[i + 1];
+  }
+  return { positions, indices: other };
 }
