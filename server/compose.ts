@@ -50,6 +50,7 @@ export function compose(deps: Dependencies) {
     models: repos.models,
     jobs: repos.jobs,
     countPlans: repos.plans.countByModel,
+    countPlansOf: repos.plans.countByRevision,
     transact,
     storage,
     namesOf,
@@ -74,6 +75,7 @@ export function compose(deps: Dependencies) {
     transact,
     settlements: { 'model.inspect': settleInspection, 'plan.make': settlePlan },
     removeFilesOf: (job) => storage.remove(folderOf(job)),
+    removeFile: (key) => storage.remove(key),
     logger,
   });
   const monitor = createJobMonitor({ jobs: repos.jobs, settler, logger });
@@ -111,7 +113,8 @@ export function compose(deps: Dependencies) {
 
 /** The folder of a record that was deleted while its job ran. */
 function folderOf(job: FinalJob): string {
-  const { outputPrefix } = jobSchemas[job.kind].input.parse(job.input);
-  // A revision's folder lies in its model's, which is gone as well.
-  return job.kind === 'model.inspect' ? dirname(outputPrefix) : outputPrefix;
+  if (job.kind === 'plan.make') return jobSchemas[job.kind].input.parse(job.input).outputPrefix;
+  const { sourceKey } = jobSchemas[job.kind].input.parse(job.input);
+  // The source lies in its revision's folder, that in its model's, which is gone as well.
+  return dirname(dirname(sourceKey));
 }

@@ -128,6 +128,7 @@ async function addModels(
     transact: (work) => work(repos),
     namesOf: repos.accounts.namesOf,
     countPlans: repos.plans.countByModel,
+    countPlansOf: repos.plans.countByRevision,
   });
   for (const { name, fileName, make } of demoModels) {
     const bytes = toBinaryStl(make(), `Seamwright demo: ${name}`);

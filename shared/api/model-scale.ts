@@ -47,3 +47,44 @@ export function guessUnit(fileSize: Size): { scale: ModelScale; reason: string }
     reason: `The longest side is ${shown} in the file: plausible as metres.`,
   };
 }
+
+/** A unit that a workshop uses for files that state none. */
+export const usualUnit = modelScale.pick({ unit: true, factor: true });
+export type UsualUnit = z.infer<typeof usualUnit>;
+
+/** Longest sides that are plausible for something too large for a printer, mm. Common practice, no source. */
+const plausibleMm = { least: 20, most: 10_000 };
+
+/**
+ * The scale of a file about which nobody decided: the unit that the file states; else the one that the
+ * workshop chose last, when it gives a plausible size; else a guess from the size. With its reason.
+ */
+export function firstScale(
+  fileSize: Size,
+  fileUnit: { readonly name: string; readonly millimetres: number } | null,
+  usual: UsualUnit | null,
+): { scale: ModelScale; reason: string } {
+  if (fileUnit)
+    return {
+      scale: scaleOfFactor(fileUnit.millimetres),
+      reason: `The file states its unit: ${fileUnit.name}.`,
+    };
+  if (usual) {
+    const scale: ModelScale = { ...usual, target: null };
+    const longestMm = Math.max(...fileSize) * millimetresPerUnit(scale, fileSize);
+    if (longestMm >= plausibleMm.least && longestMm <= plausibleMm.most)
+      return { scale, reason: `Your workshop last chose ${nameOfUnit(usual)}.` };
+  }
+  return guessUnit(fileSize);
+}
+
+function scaleOfFactor(millimetres: number): ModelScale {
+  if (millimetres === 1) return { unit: 'mm', factor: 1, target: null };
+  if (millimetres === 25.4) return { unit: 'inch', factor: 25.4, target: null };
+  return { unit: 'other', factor: millimetres, target: null };
+}
+
+function nameOfUnit({ unit, factor }: UsualUnit): string {
+  if (unit === 'mm') return 'millimetres';
+  return unit === 'inch' ? 'inches' : `${factor} mm for a unit of the file`;
+}

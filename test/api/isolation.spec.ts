@@ -29,6 +29,7 @@ afterAll(() => product.stop());
 const bodies: Record<string, object> = {
   'put /api/envelopes/:id': { ...boxEnvelope, name: 'Taken over' },
   'patch /api/models/:id': { name: 'Taken over' },
+  'post /api/models/:id/mending': { choices: { remeshCells: 100 } },
 };
 
 function addressOf(path: string): string {

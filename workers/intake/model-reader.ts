@@ -1,6 +1,7 @@
 import type { MeshReading } from './mesh-reading.js';
 import { looksLikeObj, readObj } from './obj-reader.js';
 import { refuseFile } from './refusal-words.js';
+import { isProvenBinary } from './binary-stl.js';
 import { readStl } from './stl-reader.js';
 import { isZip, readThreeMf } from './threemf/threemf-reader.js';
 
@@ -23,7 +24,7 @@ export function readModel(
 ): MeshReading {
   if (bytes.length === 0) throw refuseFile(fileName, 'is empty.');
   const report = (fraction: number) => onProgress('Reading', fraction);
-  const reading = isZip(bytes)
+  const reading = isZip(bytes) && !isProvenBinary(bytes)
     ? readThreeMf(bytes, fileName, parts, report)
     : looksLikeObj(bytes)
       ? readObj(bytes, fileName, parts, report)

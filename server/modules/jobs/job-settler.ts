@@ -10,7 +10,10 @@ import type { FinalJob, JobsRepository } from './jobs.repository.js';
  * @returns `orphaned` when the record was deleted meanwhile; its files are removed then
  * @throws UnusableResult when the worker's output is not what the contract says
  */
-export type Settlement<R> = (job: FinalJob, repos: R) => Promise<'stored' | 'orphaned'>;
+export type Settlement<R> = (job: FinalJob, repos: R) => Promise<Settled>;
+
+/** `replaced` names files that the stored result has made useless; they are removed afterwards. */
+export type Settled = 'stored' | 'orphaned' | { readonly replaced: readonly string[] };
 
 /** The worker's output does not hold what the contract promises. */
 export class UnusableResult extends Error {
@@ -27,6 +30,7 @@ export function createJobSettler<R extends { jobs: JobsRepository }>(deps: {
   settlements: Record<JobName, Settlement<R>>;
   /** Removes what an orphaned job left in the file storage. */
   removeFilesOf: (job: FinalJob) => Promise<void>;
+  removeFile: (key: string) => Promise<void>;
   logger: Logger;
 }) {
   const { transact, settlements, logger } = deps;
@@ -42,6 +46,8 @@ export function createJobSettler<R extends { jobs: JobsRepository }>(deps: {
       return { job, outcome };
     });
     if (settled?.outcome === 'orphaned') await deps.removeFilesOf(settled.job);
+    if (settled && typeof settled.outcome === 'object')
+      for (const key of settled.outcome.replaced) await deps.removeFile(key);
     return settled !== null;
   }
 

@@ -21,4 +21,18 @@ export const createModelInUse = (planCount: number) =>
       : `The model has ${planCount} plans. Delete them first.`,
   );
 
-export const createNotAnStl = (reason: string) => createWrongContentType(reason);
+export const createRevisionInUse = (planCount: number) =>
+  new ApiError(
+    409,
+    'model.inUse',
+    `This revision has ${planCount === 1 ? 'a plan' : `${planCount} plans`}. Upload the file as a new revision to mend it in another way.`,
+  );
+
+export const createNothingToAccept = () =>
+  new ApiError(
+    409,
+    'model.notPlannable',
+    'There is nothing to accept: the model is in order, or something else has to be decided first.',
+  );
+
+export const createNotAModel = (reason: string) => createWrongContentType(reason);

@@ -1,5 +1,6 @@
-import { and, desc, eq, inArray, sql } from 'drizzle-orm';
+import { and, desc, eq, inArray, isNotNull, max, sql } from 'drizzle-orm';
 import type { ModelScale } from '../../../shared/api/model-scale.js';
+import type { MendingChoices } from '../../../shared/jobs/mending-choices.js';
 import type { MeshReport } from '../../../shared/jobs/model-inspect.js';
 import type { Db } from '../../platform/db/client.js';
 import { models } from './models.table.js';
@@ -32,6 +33,11 @@ const columns = {
     thumbnailKey: revisions.thumbnailKey,
     viewTriangles: revisions.viewTriangles,
     jobId: revisions.jobId,
+    createdAt: revisions.createdAt,
+    sourceKey: revisions.sourceKey,
+    proxyKey: revisions.proxyKey,
+    choices: revisions.choices,
+    isAccepted: revisions.isAccepted,
   },
 };
 
@@ -83,9 +89,85 @@ export function createModelsRepository({ db }: { db: Db }) {
       },
     ): Promise<void> {
       await db.insert(models).values(model);
+      const { createdAt, createdBy } = model;
       await db
         .insert(revisions)
-        .values({ ...revision, modelId: model.id, number: 1, createdAt: model.createdAt });
+        .values({ ...revision, modelId: model.id, number: 1, createdAt, createdBy });
+    },
+
+    /**
+     * Adds a revision behind the newest one. The model's row is locked until the transaction ends, so
+     * two of them get two numbers. @returns false when there is no such model (any more)
+     */
+    async addRevision(
+      key: Key,
+      revision: {
+        id: string;
+        fileName: string;
+        fileBytes: number;
+        sourceKey: string;
+        scale: ModelScale;
+        scaleReason: string;
+        jobId: string;
+        createdAt: Date;
+        createdBy: string;
+      },
+    ): Promise<boolean> {
+      const locked = await db
+        .select({ id: models.id })
+        .from(models)
+        .where(isKey(key))
+        .for('update');
+      if (locked.length === 0) return false;
+      const newest = await db
+        .select({ number: max(revisions.number) })
+        .from(revisions)
+        .where(eq(revisions.modelId, key.id));
+      const number = (newest[0]?.number ?? 0) + 1;
+      await db.insert(revisions).values({ ...revision, modelId: key.id, number });
+      return true;
+    },
+
+    /** All revisions of a model, the newest first. */
+    listRevisions: (modelId: string) =>
+      db
+        .select({
+          id: revisions.id,
+          number: revisions.number,
+          fileName: revisions.fileName,
+          fileBytes: revisions.fileBytes,
+          report: revisions.report,
+          scale: revisions.scale,
+          jobId: revisions.jobId,
+          createdAt: revisions.createdAt,
+          createdBy: sql<string>`coalesce(${revisions.createdBy}, ${models.createdBy})`,
+        })
+        .from(revisions)
+        .innerJoin(models, eq(models.id, revisions.modelId))
+        .where(eq(revisions.modelId, modelId))
+        .orderBy(desc(revisions.number)),
+
+    /** Puts a new inspection with other choices in the place of the last one. */
+    async startMending(
+      revisionId: string,
+      next: { choices: MendingChoices; jobId: string },
+    ): Promise<void> {
+      await db
+        .update(revisions)
+        .set({ ...next, isAccepted: false })
+        .where(eq(revisions.id, revisionId));
+    },
+
+    /** Goes back to the choices of the report that still stands. */
+    async dropChoices(revisionId: string): Promise<void> {
+      await db
+        .update(revisions)
+        .set({ choices: sql`json_extract(${revisions.report}, '$.choices')` })
+        .where(eq(revisions.id, revisionId));
+    },
+
+    async accept(revisionId: string): Promise<void> {
+      await db.update(revisions).set({ isAccepted: true }).where(eq(revisions.id, revisionId));
     },
 
     async rename(key: Key, name: string): Promise<void> {
@@ -109,8 +191,20 @@ export function createModelsRepository({ db }: { db: Db }) {
     /** Locks a revision until the transaction ends; null when its model was deleted. */
     async lockRevision(id: string) {
       const rows = await db
-        .select({ id: revisions.id, scaleConfirmed: revisions.scaleConfirmed })
+        .select({
+          id: revisions.id,
+          workshopId: models.workshopId,
+          scaleConfirmed: revisions.scaleConfirmed,
+          scaleReason: revisions.scaleReason,
+          hasReport: isNotNull(revisions.report),
+          jobId: revisions.jobId,
+          solidKey: revisions.solidKey,
+          viewKey: revisions.viewKey,
+          thumbnailKey: revisions.thumbnailKey,
+          proxyKey: revisions.proxyKey,
+        })
         .from(revisions)
+        .innerJoin(models, eq(models.id, revisions.modelId))
         .where(eq(revisions.id, id))
         .for('update');
       return rows[0] ?? null;
@@ -124,6 +218,8 @@ export function createModelsRepository({ db }: { db: Db }) {
         solidKey: string | null;
         viewKey: string | null;
         thumbnailKey: string | null;
+        proxyKey: string | null;
+        choices: MendingChoices;
         viewTriangles: number;
         scale?: ModelScale;
         scaleReason?: string;

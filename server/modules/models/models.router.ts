@@ -1,13 +1,13 @@
 import type { Request, RequestHandler, Response } from 'express';
 import { z } from 'zod';
-import { modelPatchRequest } from '../../../shared/api/models.contract.js';
+import { mendRequest, modelPatchRequest } from '../../../shared/api/models.contract.js';
 import { idOf, parse, parseBody } from '../../platform/http/parse.js';
 import type { Route } from '../../platform/http/routes.js';
 import { sendStored } from '../../platform/http/send-stored.js';
 import { currentSession } from '../../platform/http/session-context.js';
 import type { FileStorage } from '../../platform/storage/disk-storage.js';
 import { createModelNotFound, createNoPictureYet } from './models.errors.js';
-import { toModelResponse } from './models.mapper.js';
+import { toModelResponse, toRevisionSummary } from './models.mapper.js';
 import type { ModelsService } from './models.service.js';
 import { discardUpload, receivedFile } from './receive-upload.js';
 
@@ -24,18 +24,39 @@ export function createModelsRoutes(deps: {
     workshopId: currentSession().workshopId,
   });
 
+  /** Said before a byte of the file has come. */
+  const requireModel: RequestHandler = (req, _res, next) => {
+    models.find(keyOf(req)).then(() => next(), next);
+  };
+
+  /** Whatever the refusal is, the file goes. After it was taken in, this finds nothing. */
+  async function orDiscard(req: Request, work: () => Promise<void>): Promise<void> {
+    try {
+      await work();
+    } catch (error) {
+      await discardUpload(req);
+      throw error;
+    }
+  }
+
   async function upload(req: Request, res: Response): Promise<void> {
     const { userId, workshopId } = currentSession();
-    try {
+    await orDiscard(req, async () => {
       const file = await receivedFile(req);
       const { name } = parse(uploadFields, { ...req.body });
       const key = await models.add({ workshopId, userId, file, name });
       res.status(201).json(toModelResponse(await models.get(key)));
-    } catch (error) {
-      // Whatever the refusal is, the file goes. After it was taken in, this finds nothing.
-      await discardUpload(req);
-      throw error;
-    }
+    });
+  }
+
+  async function uploadRevision(req: Request, res: Response): Promise<void> {
+    const { userId } = currentSession();
+    await orDiscard(req, async () => {
+      const key = keyOf(req);
+      const file = await receivedFile(req);
+      await models.addRevision(key, { userId, file });
+      res.status(201).json(toModelResponse(await models.get(key)));
+    });
   }
 
   function sendFile(which: 'thumbnailKey' | 'viewKey', type: string) {
@@ -78,6 +99,32 @@ export function createModelsRoutes(deps: {
       handle: async (req, res) => {
         const changes = parseBody(modelPatchRequest, req);
         await models.change(keyOf(req), changes);
+        res.json(toModelResponse(await models.get(keyOf(req))));
+      },
+    },
+    {
+      method: 'get',
+      path: '/api/models/:id/revisions',
+      access: 'model.read',
+      handle: async (req, res) => {
+        const revisions = await models.revisions(keyOf(req));
+        res.json({ revisions: revisions.map(toRevisionSummary) });
+      },
+    },
+    {
+      method: 'post',
+      path: '/api/models/:id/revisions',
+      access: 'model.write',
+      before: [requireModel, ...deps.receiveUpload],
+      handle: uploadRevision,
+    },
+    {
+      method: 'post',
+      path: '/api/models/:id/mending',
+      access: 'model.write',
+      handle: async (req, res) => {
+        const { choices } = parseBody(mendRequest, req);
+        await models.mend(keyOf(req), choices);
         res.json(toModelResponse(await models.get(keyOf(req))));
       },
     },

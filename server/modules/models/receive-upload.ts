@@ -8,9 +8,9 @@ import {
   createWrongContentType,
 } from '../../platform/http/api-error.js';
 import type { CreateId } from '../../platform/ids/create-id.js';
-import { createNotAnStl } from './models.errors.js';
+import { createNotAModel } from './models.errors.js';
 import type { ReceivedFile } from './models.service.js';
-import { SNIFFED_BYTES, sniffStl } from './sniff-stl.js';
+import { SNIFFED_BYTES, sniffModel } from './sniff-model.js';
 
 /** Room for the form around the file. */
 const FORM_BYTES = 64 * 1024;
@@ -76,12 +76,12 @@ function translate(error: unknown, tooLarge: () => ApiError): unknown {
 
 /**
  * The file that was received.
- * @throws 400 when there is none or it is empty, 415 when it is certainly no STL; it is gone then
+ * @throws 400 when there is none or it is empty, 415 when it is certainly no model; it is gone then
  */
 export async function receivedFile(req: Request): Promise<ReceivedFile> {
   const { file } = req;
   if (!file) throw createRequestInvalid('Choose a file to upload.');
-  const refusal = await refusalOf(file);
+  const refusal = await refusalOf({ ...file, name: file.originalname });
   if (refusal) {
     await discardUpload(req);
     throw refusal;
@@ -94,7 +94,11 @@ export async function discardUpload(req: Request): Promise<void> {
   if (req.file) await rm(req.file.path, { force: true });
 }
 
-async function refusalOf(file: { path: string; size: number }): Promise<ApiError | null> {
+async function refusalOf(file: {
+  path: string;
+  size: number;
+  name: string;
+}): Promise<ApiError | null> {
   if (file.size === 0) return createRequestInvalid('The file is empty.');
   const handle = await open(file.path);
   try {
@@ -104,8 +108,8 @@ async function refusalOf(file: { path: string; size: number }): Promise<ApiError
       SNIFFED_BYTES,
       0,
     );
-    const reason = sniffStl(buffer.subarray(0, bytesRead), file.size);
-    return reason ? createNotAnStl(reason) : null;
+    const reason = sniffModel(buffer.subarray(0, bytesRead), file.size, file.name);
+    return reason ? createNotAModel(reason) : null;
   } finally {
     await handle.close();
   }

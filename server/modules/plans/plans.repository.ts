@@ -64,6 +64,16 @@ export function createPlansRepository({ db }: { db: Db }) {
       return new Map(rows.map((row) => [row.modelId, row.count]));
     },
 
+    async countByRevision(revisionIds: readonly string[]): Promise<Map<string, number>> {
+      if (revisionIds.length === 0) return new Map();
+      const rows = await db
+        .select({ revisionId: plans.revisionId, count: count() })
+        .from(plans)
+        .where(inArray(plans.revisionId, [...revisionIds]))
+        .groupBy(plans.revisionId);
+      return new Map(rows.map((row) => [row.revisionId, row.count]));
+    },
+
     async add(plan: {
       id: string;
       workshopId: string;

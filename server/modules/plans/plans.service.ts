@@ -1,3 +1,4 @@
+import { mayBePlanned } from '../../../shared/jobs/model-inspect.js';
 import { millimetresPerUnit } from '../../../shared/api/model-scale.js';
 import type { Transact } from '../../platform/db/transaction.js';
 import type { CreateId } from '../../platform/ids/create-id.js';
@@ -151,13 +152,17 @@ function plannable(
   { revision }: ModelRow,
   inspection: JobRow | undefined,
 ): { solidKey: string; factor: number } {
-  const { report, solidKey, scale } = revision;
+  const { report, solidKey, scale, isAccepted } = revision;
   if (!report && inspection?.settledAt)
     throw createModelNotPlannable(
       inspection.error?.message ?? 'The inspection was cancelled. Upload the model again.',
     );
   if (!report) throw createModelNotReady();
-  if (!report.plannable || !solidKey)
-    throw createModelNotPlannable(report.refusal ?? 'No plan can be made of this model.');
+  // The report at hand is that of the choices before.
+  if (inspection && !inspection.settledAt) throw createModelNotReady();
+  if (!mayBePlanned(report, isAccepted) || !solidKey)
+    throw createModelNotPlannable(
+      report.refusal ?? report.asks[0]?.sentence ?? 'No plan can be made of this model.',
+    );
   return { solidKey, factor: millimetresPerUnit(scale, report.size) };
 }

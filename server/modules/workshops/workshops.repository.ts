@@ -1,4 +1,5 @@
 import { and, asc, eq } from 'drizzle-orm';
+import type { UsualUnit } from '../../../shared/api/model-scale.js';
 import type { Role } from '../../../shared/api/roles.js';
 import type { Db } from '../../platform/db/client.js';
 import { memberships } from './memberships.table.js';
@@ -15,6 +16,20 @@ export function createWorkshopsRepository({ db }: { db: Db }) {
         .where(eq(workshops.id, id))
         .limit(1);
       return rows[0] ?? null;
+    },
+
+    /** The unit that was chosen last; null when none was yet. */
+    async usualUnit(id: string): Promise<UsualUnit | null> {
+      const rows = await db
+        .select({ usualUnit: workshops.usualUnit })
+        .from(workshops)
+        .where(eq(workshops.id, id))
+        .limit(1);
+      return rows[0]?.usualUnit ?? null;
+    },
+
+    async rememberUnit(id: string, usualUnit: UsualUnit): Promise<void> {
+      await db.update(workshops).set({ usualUnit }).where(eq(workshops.id, id));
     },
 
     async hasAny(): Promise<boolean> {

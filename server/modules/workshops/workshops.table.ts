@@ -1,4 +1,5 @@
-import { boolean, mysqlTable, varchar } from 'drizzle-orm/mysql-core';
+import { boolean, json, mysqlTable, varchar } from 'drizzle-orm/mysql-core';
+import type { UsualUnit } from '../../../shared/api/model-scale.js';
 import { momentColumn, recordIdColumn } from '../../platform/db/columns.js';
 
 export const workshops = mysqlTable('workshops', {
@@ -6,4 +7,6 @@ export const workshops = mysqlTable('workshops', {
   name: varchar('name', { length: 120 }).notNull(),
   isDemo: boolean('is_demo').notNull().default(false),
   createdAt: momentColumn('created_at').notNull(),
+  /** The unit that a person chose last for a file that states none. */
+  usualUnit: json('usual_unit').$type<UsualUnit>(),
 });

@@ -18,12 +18,13 @@ export interface FileStorage {
   readonly remove: (key: string) => Promise<void>;
 }
 
-/** Opens the storage and clears uploads that an earlier, killed server left half received. */
+/** Opens the storage and clears what killed servers and workers left half received or half written. */
 export async function openDiskStorage(folder: string): Promise<FileStorage> {
   const root = resolve(folder);
   const incomingFolder = join(root, 'incoming');
   await mkdir(incomingFolder, { recursive: true });
   await clearLeftOvers(incomingFolder);
+  await clearUnfinished(root);
 
   function pathOf(key: string): string {
     if (!isStorageKey(key)) throw new Error(`Not a storage key: ${key.slice(0, 80)}`);
@@ -59,5 +60,19 @@ async function clearLeftOvers(folder: string): Promise<void> {
     const path = join(folder, name);
     const { mtimeMs } = await stat(path);
     if (Date.now() - mtimeMs > ABANDONED_AFTER_MS) await rm(path, { recursive: true, force: true });
+  }
+}
+
+/** Workers write a file under a name that ends like this until it is whole. */
+const UNFINISHED = '.part';
+/** The largest file is written in minutes. */
+const UNFINISHED_AFTER_MS = 60 * 60 * 1000;
+
+async function clearUnfinished(root: string): Promise<void> {
+  for (const entry of await readdir(root, { recursive: true, withFileTypes: true })) {
+    if (!entry.isFile() || !entry.name.endsWith(UNFINISHED)) continue;
+    const path = join(entry.parentPath, entry.name);
+    const { mtimeMs } = await stat(path);
+    if (Date.now() - mtimeMs > UNFINISHED_AFTER_MS) await rm(path, { force: true });
   }
 }
