@@ -11,51 +11,26 @@ export interface SurfaceCells {
   readonly inside: Uint8Array;
 }
 
-const OUTSIDE = 1;
-const INSIDE = 2;
-const SEEN = 4;
 const reportEvery = 1 << 11;
 
 /**
  * Finds all cells whose corners differ in side: from every edge that a triangle crosses, then on through
  * the faces whose corners differ, so that the surface is followed across holes where no triangle is. Asks
- * for the side of a node once, and of no node far from the surface. One byte a node.
+ * for no node far from the surface. One bit a node.
  */
 export function findSurfaceCells(
   grid: SampleGrid,
   { edges }: GridCrossings,
-  isInside: (x: number, y: number, z: number) => boolean,
+  isInside: (node: number) => boolean,
   context: JobContext,
 ): SurfaceCells {
-  const { nodes, step, origin, spacing } = grid;
-  const state = new Uint8Array(nodes[0] * nodes[1] * nodes[2]);
-  let asked = 0;
-  let share = 0;
-  const sideOf = (node: number): number => {
-    const known = state[node] & 3;
-    if (known !== 0) return known;
-    if ((++asked & (reportEvery - 1)) === 0) context.progress('Telling inside from outside', share);
-    const z = Math.floor(node / step[2]);
-    const y = Math.floor((node - z * step[2]) / step[1]);
-    const x = node - z * step[2] - y * step[1];
-    const isRim =
-      x === 0 ||
-      y === 0 ||
-      z === 0 ||
-      x === nodes[0] - 1 ||
-      y === nodes[1] - 1 ||
-      z === nodes[2] - 1;
-    const side =
-      !isRim && isInside(origin[0] + x * spacing, origin[1] + y * spacing, origin[2] + z * spacing)
-        ? INSIDE
-        : OUTSIDE;
-    state[node] |= side;
-    return side;
-  };
+  const { nodes, step } = grid;
+  const seen = new Uint8Array(Math.ceil((nodes[0] * nodes[1] * nodes[2]) / 8));
   const cells = new CellList();
   const see = (node: number): void => {
-    if ((state[node] & SEEN) !== 0) return;
-    state[node] |= SEEN;
+    const bit = 1 << (node & 7);
+    if ((seen[node >>> 3] & bit) !== 0) return;
+    seen[node >>> 3] |= bit;
     cells.push(node);
   };
   const corner = Array.from(
@@ -63,9 +38,10 @@ export function findSurfaceCells(
     (_, c) => (c & 1) * step[0] + ((c >> 1) & 1) * step[1] + (c >> 2) * step[2],
   );
   const follow = (at: number): void => {
+    if ((at & (reportEvery - 1)) === 0) context.progress('Telling inside from outside', share);
     const node = cells.node[at];
     let inside = 0;
-    for (let c = 0; c < 8; c++) if (sideOf(node + corner[c]) === INSIDE) inside |= 1 << c;
+    for (let c = 0; c < 8; c++) if (isInside(node + corner[c])) inside |= 1 << c;
     cells.inside[at] = inside;
     for (let axis = 0; axis < 3; axis++) {
       const near = inside & lowFace[axis];
@@ -74,13 +50,15 @@ export function findSurfaceCells(
       if (far !== 0 && far !== lowFace[axis]) see(node + step[axis]);
     }
   };
+  let share = 0;
   let done = 0;
   for (let edge = 0; edge < edges.count; edge++) {
     share = edge / edges.count;
+    if ((edge & (reportEvery - 1)) === 0) context.progress('Telling inside from outside', share);
     const key = edges.keys[edge];
     const node = Math.floor(key / 3);
     const axis = key - 3 * node;
-    if (sideOf(node) === sideOf(node + step[axis])) continue;
+    if (isInside(node) === isInside(node + step[axis])) continue;
     const [u, v] = [step[(axis + 1) % 3], step[(axis + 2) % 3]];
     see(node);
     see(node - u);

@@ -1,17 +1,24 @@
-import type { TriangleMesh } from '../../../shared/geometry/mesh/triangle-mesh.js';
 import { Vector3 } from 'three';
 import type { MeshBVH } from 'three-mesh-bvh';
-import { type MeasuredDeviation } from '../../measuring/surface-deviation.js';
-import { sampleSurface } from '../../measuring/surface-samples.js';
+import type { TriangleMesh } from '../../../shared/geometry/mesh/triangle-mesh.js';
+import type { MeasuredDeviation } from '../../measuring/surface-deviation.js';
+import { sampleSurface, type SurfaceSamples } from '../../measuring/surface-samples.js';
 import { buildBvh } from '../../measuring/triangle-bvh.js';
-import type { JobContext } from '../../runtime/job-context.js';
+import { type JobContext, portionOf } from '../../runtime/job-context.js';
 import type { PatchedCells } from './patch-cells.js';
 
 const sampleCount = 20_000;
 const reportEvery = 1 << 9;
+/** Only samples farther off than this share of a cell are asked whether they are buried. */
+const farShare = 0.25;
+const stage = 'Measuring the deviation';
 
-/** Whether a point of the original, with the normal there, lies within the solid. */
-export type BuriedTest = (points: Float64Array, at: number, normal: Float64Array) => boolean;
+export interface RemeshMeasuring {
+  readonly isInsideAt: (x: number, y: number, z: number) => boolean;
+  /** Side of a cell. */
+  readonly spacing: number;
+  readonly context: JobContext;
+}
 
 /**
  * How far original and rebuilt surface lie apart, both ways: mean, 95th percentile and maximum are the
@@ -21,25 +28,29 @@ export type BuriedTest = (points: Float64Array, at: number, normal: Float64Array
 export function measureRemesh(
   original: TriangleMesh,
   { mesh, isAcross }: PatchedCells,
-  { isBuried, context }: { readonly isBuried: BuriedTest; readonly context: JobContext },
+  { isInsideAt, spacing, context }: RemeshMeasuring,
 ): MeasuredDeviation {
-  context.progress('Measuring the deviation', 0);
-  const there = distances(samplesOf(original, isBuried), buildBvh(mesh), (share) =>
-    context.progress('Measuring the deviation', 0.3 + 0.3 * share),
-  );
+  context.progress(stage, 0);
+  const samples = sampleSurface(original, sampleCount);
+  const away = distancesFrom(samples, buildBvh(mesh), portionOf(context, 0.25, 0.5));
+  const isBuried = buriedTest(original, samples, isInsideAt, 0.05 * spacing);
+  const seen = samplesWhere(samples.count, (i) => {
+    if ((i & (reportEvery - 1)) === 0) context.progress(stage, 0.5 + (0.1 * i) / samples.count);
+    return away[i] <= farShare * spacing || !isBuried(i);
+  });
+  const there = summary(samples, away, seen);
   const onFacets = mesh.indices.filter((_, i) => {
     const first = i - (i % 3);
-    return (
-      isAcross[mesh.indices[first]] +
-        isAcross[mesh.indices[first + 1]] +
-        isAcross[mesh.indices[first + 2]] ===
-      0
-    );
+    const [a, b, c] = [mesh.indices[first], mesh.indices[first + 1], mesh.indices[first + 2]];
+    return isAcross[a] + isAcross[b] + isAcross[c] === 0;
   });
-  const { points } = sampleSurface({ positions: mesh.positions, indices: onFacets }, sampleCount);
-  context.progress('Measuring the deviation', 0.6);
-  const back = distances(points, buildBvh(original), (share) =>
-    context.progress('Measuring the deviation', 0.7 + 0.3 * share),
+  const own = sampleSurface({ positions: mesh.positions, indices: onFacets }, sampleCount);
+  context.progress(stage, 0.65);
+  const off = distancesFrom(own, buildBvh(original), portionOf(context, 0.7, 1));
+  const back = summary(
+    own,
+    off,
+    samplesWhere(own.count, () => true),
   );
   const farther = back.max > there.max ? back : there;
   return {
@@ -51,58 +62,73 @@ export function measureRemesh(
   };
 }
 
-/** Samples of the original that are not buried. */
-function samplesOf(original: TriangleMesh, isBuried: BuriedTest): Float64Array {
-  const { count, points, triangles } = sampleSurface(original, sampleCount);
-  const normal = new Float64Array(3);
-  const kept = new Float64Array(points.length);
-  let filled = 0;
-  for (let i = 0; i < count; i++) {
-    unitNormal(original, 3 * triangles[i], normal);
-    if (isBuried(points, 3 * i, normal)) continue;
-    kept.set(points.subarray(3 * i, 3 * i + 3), filled);
-    filled += 3;
-  }
-  return kept.subarray(0, filled);
+function samplesWhere(count: number, isKept: (i: number) => boolean): Uint32Array {
+  return new Uint32Array(count).map((_, i) => i).filter((i) => isKept(i));
 }
 
-function distances(
-  points: Float64Array,
-  to: MeshBVH,
-  report: (share: number) => void,
-): MeasuredDeviation {
-  const count = points.length / 3;
-  const found = new Float64Array(count);
-  const point = new Vector3();
-  const target = { point: new Vector3(), distance: 0, faceIndex: 0 };
-  let farthest = 0;
-  let sum = 0;
-  for (let i = 0; i < count; i++) {
-    if ((i & (reportEvery - 1)) === 0) report(i / count);
-    point.set(points[3 * i], points[3 * i + 1], points[3 * i + 2]);
-    found[i] = to.closestPointToPoint(point, target)?.distance ?? 0;
-    sum += found[i];
-    if (found[i] > found[farthest]) farthest = i;
-  }
-  const max = count > 0 ? found[farthest] : 0;
-  const at = count > 0 ? points.subarray(3 * farthest, 3 * farthest + 3) : [0, 0, 0];
-  found.sort();
-  return {
-    mean: count > 0 ? sum / count : 0,
-    p95: count > 0 ? found[Math.min(count - 1, Math.ceil(0.95 * count) - 1)] : 0,
-    max,
-    samples: count,
-    farthestAt: [at[0], at[1], at[2]],
+/** Whether both sides of the surface at a sample lie inside: the solid has swallowed such facets. */
+function buriedTest(
+  mesh: TriangleMesh,
+  { points, triangles }: SurfaceSamples,
+  isInsideAt: RemeshMeasuring['isInsideAt'],
+  off: number,
+): (i: number) => boolean {
+  return (i) => {
+    const [nx, ny, nz] = unitNormal(mesh, 3 * triangles[i]);
+    const [x, y, z] = [points[3 * i], points[3 * i + 1], points[3 * i + 2]];
+    return (
+      isInsideAt(x + off * nx, y + off * ny, z + off * nz) &&
+      isInsideAt(x - off * nx, y - off * ny, z - off * nz)
+    );
   };
 }
 
-function unitNormal({ positions: p, indices }: TriangleMesh, at: number, target: Float64Array) {
+function distancesFrom(
+  { count, points }: SurfaceSamples,
+  to: MeshBVH,
+  context: JobContext,
+): Float64Array {
+  const distances = new Float64Array(count);
+  const point = new Vector3();
+  const target = { point: new Vector3(), distance: 0, faceIndex: 0 };
+  for (let i = 0; i < count; i++) {
+    if ((i & (reportEvery - 1)) === 0) context.progress(stage, i / count);
+    point.set(points[3 * i], points[3 * i + 1], points[3 * i + 2]);
+    distances[i] = to.closestPointToPoint(point, target)?.distance ?? 0;
+  }
+  return distances;
+}
+
+/** Of the chosen samples; all zeros when there is none. */
+function summary(
+  { points }: SurfaceSamples,
+  distances: Float64Array,
+  chosen: Uint32Array,
+): MeasuredDeviation {
+  const samples = chosen.length;
+  if (samples === 0) return { mean: 0, p95: 0, max: 0, samples, farthestAt: [0, 0, 0] };
+  let farthest = chosen[0];
+  let sum = 0;
+  for (const i of chosen) {
+    sum += distances[i];
+    if (distances[i] > distances[farthest]) farthest = i;
+  }
+  const sorted = Float64Array.from(chosen, (i) => distances[i]).sort();
+  return {
+    mean: sum / samples,
+    p95: sorted[Math.min(samples - 1, Math.ceil(0.95 * samples) - 1)],
+    max: distances[farthest],
+    samples,
+    farthestAt: [points[3 * farthest], points[3 * farthest + 1], points[3 * farthest + 2]],
+  };
+}
+
+/** (0, 0, 0) for a triangle without area. */
+function unitNormal({ positions: p, indices }: TriangleMesh, at: number): number[] {
   const [a, b, c] = [3 * indices[at], 3 * indices[at + 1], 3 * indices[at + 2]];
   const [ux, uy, uz] = [p[b] - p[a], p[b + 1] - p[a + 1], p[b + 2] - p[a + 2]];
   const [vx, vy, vz] = [p[c] - p[a], p[c + 1] - p[a + 1], p[c + 2] - p[a + 2]];
   const [x, y, z] = [uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx];
   const length = Math.hypot(x, y, z) || 1;
-  target[0] = x / length;
-  target[1] = y / length;
-  target[2] = z / length;
+  return [x / length, y / length, z / length];
 }

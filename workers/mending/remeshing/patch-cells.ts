@@ -4,6 +4,7 @@ import { makeCellPatches } from './cell-patches.js';
 import { EdgeTable } from './edge-table.js';
 import type { GridCrossings } from './grid-crossings.js';
 import type { SurfaceCells } from './grid-sides.js';
+import type { NodeSides } from './node-sides.js';
 import type { SampleGrid } from './sample-grid.js';
 
 export interface PatchedCells {
@@ -28,7 +29,7 @@ export function patchCells(
   grid: SampleGrid,
   cells: SurfaceCells,
   crossings: GridCrossings,
-  isInside: (x: number, y: number, z: number) => boolean,
+  sides: Pick<NodeSides, 'isInsideOn' | 'isInsideAt'>,
   context: JobContext,
 ): PatchedCells {
   const { triangles, edgeStart } = makeCellPatches();
@@ -51,7 +52,7 @@ export function patchCells(
   }
   const positions = new Float64Array(3 * vertices.count);
   const isAcross = new Uint8Array(vertices.count);
-  const place = placer(grid, crossings, isInside);
+  const place = placer(grid, crossings, sides);
   for (let vertex = 0; vertex < vertices.count; vertex++) {
     if ((vertex & (reportEvery - 1)) === 0)
       context.progress('Drawing the surface', 0.4 + (0.6 * vertex) / vertices.count);
@@ -64,7 +65,7 @@ export function patchCells(
 function placer(
   { origin, spacing, step }: SampleGrid,
   { edges, first, last }: GridCrossings,
-  isInside: (x: number, y: number, z: number) => boolean,
+  { isInsideOn, isInsideAt }: Pick<NodeSides, 'isInsideOn' | 'isInsideAt'>,
 ) {
   const point = new Float64Array(3);
   return (key: number, target: Float64Array, at: number): boolean => {
@@ -81,8 +82,9 @@ function placer(
     else {
       const start = point[axis];
       const sideAt = (along: number): boolean => {
+        if (edge < 0) return isInsideOn(node, axis, along);
         point[axis] = start + along;
-        return isInside(
+        return isInsideAt(
           origin[0] + point[0] * spacing,
           origin[1] + point[1] * spacing,
           origin[2] + point[2] * spacing,

@@ -144,7 +144,7 @@ describe('remeshSurface on sound shapes', () => {
     const { volume, mesh, deviation } = rebuild(join([one, other]), 60);
     expect(volume / 1880).toBeCloseTo(1, 2);
     expect(surfacesOf(mesh).count).toBe(1);
-    expect(deviation.max).toBeLessThan(0.2);
+    expect(deviation.max).toBeLessThan(cellOf(mesh, 60));
   });
 });
 

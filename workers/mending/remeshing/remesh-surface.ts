@@ -14,7 +14,7 @@ import { findSurfaceCells } from './grid-sides.js';
 import { patchCells, type PatchedCells } from './patch-cells.js';
 import { measureRemesh } from './measure-remesh.js';
 import { layGrid } from './sample-grid.js';
-import { buildWindingTree } from './winding-tree.js';
+import { tellNodeSides } from './node-sides.js';
 
 export type RemeshedSurface =
   | {
@@ -27,8 +27,6 @@ export type RemeshedSurface =
 
 /** Shells of less than this many cells' volume are strays. Own choice. */
 const strayCells = 4;
-/** A point is inside where the surface winds around it more than this often. */
-const insideFrom = 0.5;
 
 const nothingInside =
   'The facets enclose no space that a grid of this size could find, so no surface can be rebuilt from them.';
@@ -51,18 +49,22 @@ export function remeshSurface(
   const grid = layGrid(used.positions, cells);
   const { min, size } = boundingBox(used.positions);
   const middle = min.map((value, axis) => value + size[axis] / 2);
-  const { windingAt } = buildWindingTree(used, middle, portionOf(context, 0, 0.05));
   const facing = signedVolume(about(used, middle)) < 0 ? -1 : 1;
-  const isInside = (x: number, y: number, z: number) => facing * windingAt(x, y, z) > insideFrom;
-  const crossings = findGridCrossings(used, grid, portionOf(context, 0.05, 0.1));
-  const surface = findSurfaceCells(grid, crossings, isInside, portionOf(context, 0.1, 0.75));
-  const patched = patchCells(grid, surface, crossings, isInside, portionOf(context, 0.75, 0.85));
+  const crossings = findGridCrossings(used, grid, portionOf(context, 0, 0.1));
+  const sides = tellNodeSides(used, grid, crossings, {
+    middle,
+    facing,
+    context: portionOf(context, 0.1, 0.2),
+  });
+  const surface = findSurfaceCells(grid, crossings, sides.isInside, portionOf(context, 0.2, 0.6));
+  const patched = patchCells(grid, surface, crossings, sides, portionOf(context, 0.6, 0.75));
   const { kept, strays } = dropStrays(patched, strayCells * grid.spacing ** 3);
   if (kept.mesh.indices.length === 0 || !edgeReport(kept.mesh).closed)
     return { refusal: nothingInside };
   const deviation = measureRemesh(used, kept, {
-    isBuried: buriedTest(isInside, grid.spacing),
-    context: portionOf(context, 0.85, 1),
+    isInsideAt: sides.isInsideAt,
+    spacing: grid.spacing,
+    context: portionOf(context, 0.75, 1),
   });
   return {
     mesh: kept.mesh,
@@ -107,14 +109,6 @@ function about({ positions, indices }: TriangleMesh, middle: readonly number[]):
   moved.set(middle, 0);
   moved.set(positions, 3);
   return { positions: moved, indices: indices.map((vertex) => vertex + 1) };
-}
-
-/** Whether both sides of the surface lie inside: such facets are swallowed by the solid. */
-function buriedTest(isInside: (x: number, y: number, z: number) => boolean, spacing: number) {
-  const off = 0.05 * spacing;
-  return (p: Float64Array, at: number, normal: Float64Array): boolean =>
-    isInside(p[at] + off * normal[0], p[at + 1] + off * normal[1], p[at + 2] + off * normal[2]) &&
-    isInside(p[at] - off * normal[0], p[at + 1] - off * normal[1], p[at + 2] - off * normal[2]);
 }
 
 /** Leaves out shells and hollows that are tiny, but never the largest shell. */
