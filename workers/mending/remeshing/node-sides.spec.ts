@@ -104,7 +104,7 @@ describe('closing cones', () => {
 
 describe('sides of nodes', () => {
   it.each(soups)('are those of the winding number on a surface %s', (_, mesh) => {
-    const grid = layGrid(mesh.positions, 30);
+    const grid = layGrid(mesh.positions, 20);
     const crossings = findGridCrossings(mesh, grid, silentContext);
     const middle = middleOf(mesh);
     const { isInside } = tellNodeSides(mesh, grid, crossings, {
@@ -117,7 +117,7 @@ describe('sides of nodes', () => {
     for (let node = 0; node < count; node++) {
       const side = isInside(node);
       // All are asked, so that numbers are handed on; some are compared.
-      if (randomInteger(random, 40) > 0) continue;
+      if (randomInteger(random, 20) > 0) continue;
       const at = [
         node % grid.nodes[0],
         Math.floor(node / grid.step[1]) % grid.nodes[1],

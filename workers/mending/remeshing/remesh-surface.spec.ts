@@ -61,8 +61,8 @@ function damaged(mesh: TriangleMesh): TriangleMesh {
   return duplicateFacets(flipFacets(removeFacets(mesh, 12, random), 0.005, random), 0.05, random);
 }
 
-const ball = sphere(50, 96, 48);
-const ring = torus(50, 20, 96, 48);
+const ball = sphere(50, 64, 32);
+const ring = torus(50, 20, 64, 32);
 /** A box with 12,288 facets. */
 const block = (() => {
   let { mesh } = box([0, 0, 0], [40, 30, 20]);
@@ -99,8 +99,8 @@ describe('remeshSurface on sound shapes', () => {
     ['ring', ring.mesh, ring.volumeMm3],
     ['box', block, 24_000],
   ])('keeps a %s within a fraction of a cell', (name, mesh, volume) => {
-    const { volume: rebuilt, deviation, steps, places } = rebuild(mesh, 60);
-    const cell = cellOf(mesh, 60);
+    const { volume: rebuilt, deviation, steps, places } = rebuild(mesh, 48);
+    const cell = cellOf(mesh, 48);
     expect(rebuilt / volume).toBeCloseTo(1, 2);
     expect(deviation.mean).toBeLessThan(0.05 * cell);
     expect(deviation.p95).toBeLessThan(0.15 * cell);
@@ -120,13 +120,13 @@ describe('remeshSurface on sound shapes', () => {
   it('comes closer with the square of the cells', () => {
     const at = (cells: number) => rebuild(ball.mesh, cells).deviation.mean;
     // The facets are flat, so only their edges are cut; an honest sphere would give a factor of 4.
-    expect(at(30) / at(60)).toBeGreaterThan(2);
+    expect(at(24) / at(48)).toBeGreaterThan(2);
   });
 
   it('keeps hollows and turns what faces inward', () => {
     const hollow = boxWithCavity(20, 8);
-    expect(rebuild(hollow.mesh, 60).volume / hollow.volumeMm3).toBeCloseTo(1, 2);
-    expect(rebuild(turnInsideOut(ball.mesh), 60).volume / ball.volumeMm3).toBeCloseTo(1, 2);
+    expect(rebuild(hollow.mesh, 48).volume / hollow.volumeMm3).toBeCloseTo(1, 2);
+    expect(rebuild(turnInsideOut(ball.mesh), 48).volume / ball.volumeMm3).toBeCloseTo(1, 2);
   });
 
   it('keeps both sides of a thin wall', () => {
@@ -141,10 +141,10 @@ describe('remeshSurface on sound shapes', () => {
   it('unites what overlaps and does not count what the solid swallows', () => {
     const one = box([0, 0, 0], [10, 10, 10]).mesh;
     const other = box([6, 5, 4], [16, 15, 14]).mesh;
-    const { volume, mesh, deviation } = rebuild(join([one, other]), 60);
+    const { volume, mesh, deviation } = rebuild(join([one, other]), 48);
     expect(volume / 1880).toBeCloseTo(1, 2);
     expect(surfacesOf(mesh).count).toBe(1);
-    expect(deviation.max).toBeLessThan(cellOf(mesh, 60));
+    expect(deviation.max).toBeLessThan(cellOf(mesh, 48));
   });
 });
 
@@ -154,8 +154,8 @@ describe('remeshSurface on soups', () => {
     ['ring', ring.mesh, ring.volumeMm3],
     ['box', block, 24_000],
   ])('makes a solid of a %s with holes, copies and turned facets', (name, mesh, volume) => {
-    const { volume: rebuilt, mesh: solid, deviation } = rebuild(damaged(mesh), 60);
-    const cell = cellOf(mesh, 60);
+    const { volume: rebuilt, mesh: solid, deviation } = rebuild(damaged(mesh), 48);
+    const cell = cellOf(mesh, 48);
     expect(Math.abs(rebuilt / volume - 1)).toBeLessThan(0.015);
     expect(deviation.p95).toBeLessThan(0.6 * cell);
     expect(surfaceDeviation(solid, buildBvh(mesh), 5000)!.p95).toBeLessThan(0.6 * cell);
@@ -243,7 +243,7 @@ describe.skipIf(!existsSync(folder))('real meshes', () => {
     'm06_box_assembly',
   ])('makes a solid of %s', (name) => {
     const { mesh } = readStl(readFileSync(`${folder}/${name}.stl`), `${name}.stl`);
-    const { deviation } = rebuild(mesh, 80);
-    expect(deviation.p95).toBeLessThan(0.6 * cellOf(mesh, 80));
+    const { deviation } = rebuild(mesh, 60);
+    expect(deviation.p95).toBeLessThan(0.6 * cellOf(mesh, 60));
   });
 });
