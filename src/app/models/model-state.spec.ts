@@ -26,6 +26,9 @@ describe('modelState', () => {
     expect(modelState(makeModel()).kind).toBe('ready');
     const report = makeReport({ plannable: false, refusal: 'Open.' });
     expect(modelState(makeModel({}, { report })).kind).toBe('refused');
+    const asks = [{ kind: 'remesh', sentence: 'Rebuild it.' } as const];
+    const asking = makeModel({}, { report: makeReport({ plannable: false, asks }) });
+    expect(modelState(asking)).toMatchObject({ kind: 'asking', words: 'Needs a decision' });
     expect(isInspecting(makeModel())).toBe(false);
   });
 });

@@ -3,7 +3,7 @@ import { isFinal } from '../../../shared/jobs/job-map.js';
 
 /** How a model stands, as a word for tables and an icon. */
 export interface ModelState {
-  readonly kind: 'inspecting' | 'ready' | 'refused' | 'failed' | 'cancelled';
+  readonly kind: 'inspecting' | 'ready' | 'asking' | 'refused' | 'failed' | 'cancelled';
   readonly words: string;
   readonly icon: string;
 }
@@ -15,17 +15,20 @@ export function modelState(model: ModelResponse): ModelState {
     const words = job.state === 'queued' ? 'Waiting for inspection' : `Inspecting, ${percent} %`;
     return { kind: 'inspecting', words, icon: 'hourglass_empty' };
   }
-  if (job.state === 'cancelled') {
+  if (job.state === 'cancelled' && !report) {
     return { kind: 'cancelled', words: 'Inspection cancelled', icon: 'block' };
   }
-  if (job.state === 'failed' || !report) {
+  if (!report) {
     const isRefusal = job.error?.code === 'refused';
     return isRefusal
       ? { kind: 'refused', words: 'File refused', icon: 'error' }
       : { kind: 'failed', words: 'Inspection failed', icon: 'error' };
   }
-  return report.plannable
-    ? { kind: 'ready', words: 'Ready to plan', icon: 'check_circle' }
+  if (model.revision.isPlannable) {
+    return { kind: 'ready', words: 'Ready to plan', icon: 'check_circle' };
+  }
+  return report.asks.length > 0
+    ? { kind: 'asking', words: 'Needs a decision', icon: 'help' }
     : { kind: 'refused', words: 'Cannot be planned', icon: 'error' };
 }
 

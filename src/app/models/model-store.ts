@@ -2,6 +2,7 @@ import { Injectable, computed, inject, signal } from '@angular/core';
 import { takeUntilDestroyed } from '@angular/core/rxjs-interop';
 import { EMPTY, Subject, catchError, concat, defer, from, switchMap, tap } from 'rxjs';
 import { type ModelPatchRequest, type ModelResponse } from '../../../shared/api/models.contract.js';
+import { type MendingChoices } from '../../../shared/jobs/mending-choices.js';
 import { sentenceFor } from '../core/http/api-failure';
 import { JobWatcher } from '../core/jobs/job-watcher';
 import { JobsApi } from '../core/jobs/jobs-api';
@@ -43,10 +44,22 @@ export class ModelStore {
     this.openings.next(id);
   }
 
-  /** Renames or rescales; the server's refusal is passed on. */
+  /** Renames, rescales or accepts; the server's refusal is passed on. */
   async change(request: ModelPatchRequest): Promise<void> {
     const model = this.model();
     if (model) this._model.set(await this.api.change(model.id, request));
+  }
+
+  /** Has the file inspected again with other choices and follows that. */
+  async mend(choices: MendingChoices): Promise<void> {
+    const model = this.model();
+    if (model) this.show(await this.api.mend(model.id, choices));
+  }
+
+  /** Shows another state of the same model, such as its next revision, and follows its inspection. */
+  show(model: ModelResponse): void {
+    this._model.set(model);
+    this.openings.next(model.id);
   }
 
   async cancelInspection(): Promise<void> {

@@ -4,9 +4,12 @@ import { EMPTY, firstValueFrom, of, switchMap, type Observable } from 'rxjs';
 import {
   modelListResponse,
   modelResponse,
+  revisionListResponse,
   type ModelPatchRequest,
   type ModelResponse,
+  type RevisionSummary,
 } from '../../../shared/api/models.contract.js';
+import { type MendingChoices } from '../../../shared/jobs/mending-choices.js';
 import { parseAnswer } from '../core/http/parse-answer';
 
 /** What an upload reports on its way. */
@@ -34,16 +37,40 @@ export class ModelsApi {
     );
   }
 
+  /** Inspects the newest revision again with other choices. */
+  mend(id: string, choices: MendingChoices): Promise<ModelResponse> {
+    return firstValueFrom(
+      this.http.post(`/api/models/${id}/mending`, { choices }).pipe(parseAnswer(modelResponse)),
+    );
+  }
+
+  /** The newest first. */
+  async revisions(id: string): Promise<readonly RevisionSummary[]> {
+    const answer = this.http
+      .get(`/api/models/${id}/revisions`)
+      .pipe(parseAnswer(revisionListResponse));
+    return (await firstValueFrom(answer)).revisions;
+  }
+
   async remove(id: string): Promise<void> {
     await firstValueFrom(this.http.delete(`/api/models/${id}`));
   }
 
   /** Sends a file; unsubscribing stops it on the wire. */
   upload(file: File): Observable<UploadStep> {
+    return this.send('/api/models', file);
+  }
+
+  /** Sends a file as the next revision of a model; unsubscribing stops it on the wire. */
+  uploadRevision(id: string, file: File): Observable<UploadStep> {
+    return this.send(`/api/models/${id}/revisions`, file);
+  }
+
+  private send(address: string, file: File): Observable<UploadStep> {
     const body = new FormData();
     body.append('file', file, file.name);
     return this.http
-      .post('/api/models', body, { reportProgress: true, observe: 'events' })
+      .post(address, body, { reportProgress: true, observe: 'events' })
       .pipe(switchMap((event) => readUploadEvent(event)));
   }
 }

@@ -2,11 +2,11 @@ import { maxModelBytes } from '../../../shared/api/models.contract.js';
 import { checkBeforeSending } from './upload-checks';
 
 describe('checkBeforeSending', () => {
-  it.each(['bell.stl', 'BELL.STL', 'a.b.stl'])('lets %s pass', (name) => {
+  it.each(['bell.stl', 'BELL.STL', 'a.b.stl', 'bell.obj', 'Bell.3MF'])('lets %s pass', (name) => {
     expect(checkBeforeSending({ name, size: maxModelBytes })).toBeNull();
   });
 
-  it.each(['bell.obj', 'bell.stl.zip', 'stl', ''])('says that %j is no STL file', (name) => {
+  it.each(['bell.step', 'bell.stl.zip', 'stl', ''])('says that %j is no model', (name) => {
     expect(checkBeforeSending({ name, size: 100 })).toContain('.stl');
   });
 

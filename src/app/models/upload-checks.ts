@@ -1,13 +1,16 @@
 import { maxModelBytes } from '../../../shared/api/models.contract.js';
 import { writeBytes } from '../ui/format/quantities';
 
+/** Endings of the files that are taken, for a file picker. */
+export const modelEndings = '.stl,.obj,.3mf';
+
 /**
  * What can be said about a file without sending it: a sentence why not, or null. Saves a long
  * upload; what the server says later counts all the same.
  */
 export function checkBeforeSending(file: { name: string; size: number }): string | null {
-  if (!/\.stl$/i.test(file.name)) {
-    return 'This is not an STL file: its name must end in .stl.';
+  if (!/\.(stl|obj|3mf)$/i.test(file.name)) {
+    return 'This is not a model: its name must end in .stl, .obj or .3mf.';
   }
   if (file.size === 0) return 'The file is empty. Export the model again.';
   if (file.size > maxModelBytes) {

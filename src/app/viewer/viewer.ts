@@ -21,7 +21,7 @@ import { type CameraMove } from './scene/camera-rig';
 import { type CutPlane } from './scene/cut-plane-layer';
 import { type SceneView } from './scene/piece-stage';
 import { type ScenePiece, type SceneSeam } from './scene/view-parts';
-import { type SceneMeasure, type ViewerScene } from './scene/viewer-scene';
+import { type SceneMeasure, type ScenePlace, type ViewerScene } from './scene/viewer-scene';
 import { lengthLabel } from './scene/scale-steps';
 import { readSheetColours } from './sheet-colours';
 
@@ -65,6 +65,10 @@ export class Viewer {
   readonly cutPlane = input<CutPlane | null>(null);
   /** Whether the size of what is shown is written along its sides. */
   readonly hasDimensions = input(false);
+  /** A place to fly to; another object flies there again. */
+  readonly place = input<ScenePlace | null>(null);
+  /** Where the colour scale of wall thickness ends; null draws the surface plain. */
+  readonly wallsToMm = input<number | null>(null);
   /** What the picture shows and where the same is said in numbers. */
   readonly description = input.required<string>();
   readonly pieceSelected = output<string | null>();
@@ -100,6 +104,8 @@ export class Viewer {
     effect(() => this.scene()?.setSpace(this.space()));
     effect(() => this.scene()?.setDimensions(this.hasDimensions()));
     effect(() => this.scene()?.setPieces(this.pieces(), this.seams()));
+    effect(() => this.scene()?.setWallShading(this.wallsToMm()));
+    effect(() => this.scene()?.setPlace(this.place()));
     effect(() => this.scene()?.setSelected(this.selected()));
     effect(() => this.scene()?.setSpread(this.spread()));
     effect(() => this.scene()?.setView(this.view()));

@@ -28,6 +28,7 @@ import { Notice } from '../../ui/notice/notice';
 import { modelState } from '../model-state';
 import { ModelsStore } from '../models-store';
 import { removalHindrance, removalQuestion } from '../removal-question';
+import { modelEndings } from '../upload-checks';
 import { UploadList } from '../upload-list/upload-list';
 import { UploadQueue } from '../upload-queue';
 
@@ -69,6 +70,7 @@ export class ModelList {
   protected readonly query = linkedSignal(() => this.q() ?? '');
   private readonly heading = viewChild.required<ElementRef<HTMLElement>>('heading');
 
+  protected readonly endings = modelEndings;
   protected readonly problem = this.store.problem;
   protected readonly isEmpty = this.store.isEmpty;
   protected readonly uploads = this.queue.uploads;

@@ -34,6 +34,8 @@ async function setUp(
   const change = vi.fn((_id: string, request: { name?: string }) =>
     Promise.resolve(makeModel({ name: request.name ?? 'Heron' })),
   );
+  const mend = vi.fn(() => Promise.resolve(makeModel()));
+  const revisions = () => Promise.resolve([]);
   const cancel = vi.fn(() => Promise.resolve());
   const order = vi.fn(setting.order ?? (() => Promise.resolve({ id: planId })));
   TestBed.configureTestingModule({
@@ -45,7 +47,7 @@ async function setUp(
         provide: SessionStore,
         useValue: { can: (action: Action) => may(setting.role ?? 'designer', action) },
       },
-      { provide: ModelsApi, useValue: { get, change } },
+      { provide: ModelsApi, useValue: { get, change, mend, revisions } },
       { provide: JobsApi, useValue: { cancel } },
       { provide: JobWatcher, useValue: { watch: () => NEVER } },
       {
@@ -67,7 +69,7 @@ async function setUp(
   const loader = TestbedHarnessEnvironment.loader(fixture);
   const press = async (text: string | RegExp) =>
     (await loader.getHarness(MatButtonHarness.with({ text }))).click();
-  return { host, loader, press, change, cancel, order, router: TestBed.inject(Router) };
+  return { host, loader, press, change, cancel, mend, order, router: TestBed.inject(Router) };
 }
 
 describe('ModelPage', () => {
@@ -117,6 +119,34 @@ describe('ModelPage', () => {
     expect(host.textContent).toContain(refusal);
     expect(host.textContent).toContain('What to do next');
     expect(host.textContent).not.toContain('Make a plan');
+  });
+
+  it('asks what has to be decided, has it inspected again, and offers no plan before', async () => {
+    const report = makeReport({
+      plannable: false,
+      closed: false,
+      asks: [{ kind: 'remesh', sentence: 'Mending left 4 edges open.' }],
+    });
+    const { host, press, mend } = await setUp({ model: makeModel({}, { report }) });
+    expect(host.textContent).toContain('What to decide');
+    expect(host.textContent).toContain('Mending left 4 edges open.');
+    expect(host.textContent).not.toContain('Make a plan');
+    await press('Rebuild');
+    expect(mend).toHaveBeenCalledWith(idOf('model'), {
+      parts: null,
+      fillHolesUpTo: null,
+      remeshCells: 400,
+    });
+  });
+
+  it('takes a solid that differs from its file on demand', async () => {
+    const report = makeReport({
+      plannable: false,
+      asks: [{ kind: 'accept', sentence: 'Mending made the volume 3 % larger.' }],
+    });
+    const { press, change } = await setUp({ model: makeModel({}, { report }) });
+    await press('Use this solid');
+    expect(change).toHaveBeenCalledWith(idOf('model'), { accept: true });
   });
 
   it('lets makers look and change nothing', async () => {

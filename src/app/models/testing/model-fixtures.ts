@@ -89,7 +89,7 @@ export function makeModel(
       report: makeReport(),
       choices: noChoices,
       isAccepted: false,
-      isPlannable: true,
+      isPlannable: (revision.report === undefined || revision.report?.plannable) ?? false,
       scaleConfirmed: true,
       scale: { unit: 'mm', factor: 1, target: null },
       scaleReason: '',

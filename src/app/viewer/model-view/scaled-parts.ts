@@ -1,5 +1,6 @@
 import {
   type ScenePiece,
+  type SceneSeam,
   type SurfacePart,
   type Triple,
   type ViewParts,
@@ -20,15 +21,31 @@ export function boxOf(surfaces: readonly SurfacePart[]): { min: Triple; size: Tr
   return { min, size: [max[0] - min[0], max[1] - min[1], max[2] - min[2]] };
 }
 
+/** Millimetres per unit of a picture; null when it has no size. */
+export function pictureFactor(size: Triple, sizeMm: Triple): number | null {
+  const longest = size.indexOf(Math.max(...size));
+  return size[longest] === 0 ? null : sizeMm[longest]! / size[longest]!;
+}
+
+/** The rims of holes, which a picture names `hole-1` and so on, in millimetres. */
+export function rimsOf(parts: ViewParts, factor: number): SceneSeam[] {
+  const name = parts.surfaces[0]?.name ?? '';
+  return parts.lines
+    .filter((line) => line.name.startsWith('hole-'))
+    .map(({ positions }) => ({
+      between: [name, name],
+      positions: positions.map((value) => value * factor),
+    }));
+}
+
 /**
  * The model as one piece in millimetres. Its picture comes in the unit of its file; the factor is
  * taken from the size it is to have, along the longest side.
  */
 export function wholeModel(parts: ViewParts, sizeMm: Triple): ScenePiece | null {
   const { min, size } = boxOf(parts.surfaces);
-  const longest = size.indexOf(Math.max(...size));
-  if (parts.surfaces.length === 0 || size[longest] === 0) return null;
-  const factor = sizeMm[longest]! / size[longest]!;
+  const factor = pictureFactor(size, sizeMm);
+  if (parts.surfaces.length === 0 || factor === null) return null;
   const surface = scaled(joined(parts.surfaces), factor);
   const centreMm = min.map((low, axis) => (low + size[axis]! / 2) * factor);
   return {
@@ -41,7 +58,12 @@ export function wholeModel(parts: ViewParts, sizeMm: Triple): ScenePiece | null 
 }
 
 function scaled(surface: SurfacePart, factor: number): SurfacePart {
-  return { ...surface, positions: surface.positions.map((value) => value * factor) };
+  const { positions, walls } = surface;
+  return {
+    ...surface,
+    positions: positions.map((value) => value * factor),
+    ...(walls && { walls: walls.map((value) => value * factor) }),
+  };
 }
 
 /** Several surfaces as one. */

@@ -12,6 +12,8 @@ const fills = {
   usual: { width: 0.72, height: 0.86 },
   wide: { width: 0.7, height: 0.76 },
 } as const;
+/** Share of the picture's shorter side that a place takes in a close look. */
+const CLOSE_UP_FILL = 0.4;
 export type PictureMargin = keyof typeof fills;
 
 export type CameraMove = 'left' | 'right' | 'up' | 'down' | 'closer' | 'farther';
@@ -20,6 +22,8 @@ export type CameraMove = 'left' | 'right' | 'up' | 'down' | 'closer' | 'farther'
 export interface Framing {
   readonly target: Vector3;
   readonly pixelsPerMm: number;
+  /** From the target to the eye, of length 1; left out, the direction stays. */
+  readonly direction?: Vector3;
 }
 
 /**
@@ -85,6 +89,10 @@ export class CameraRig {
       target: new Vector3().lerpVectors(from.target, to.target, fraction),
       // Even to the eye: zoom grows by ratio, not by difference.
       pixelsPerMm: from.pixelsPerMm * (to.pixelsPerMm / from.pixelsPerMm) ** fraction,
+      ...(from.direction &&
+        to.direction && {
+          direction: new Vector3().lerpVectors(from.direction, to.direction, fraction).normalize(),
+        }),
     });
   }
 
@@ -119,13 +127,30 @@ export class CameraRig {
     return Math.abs(this.direction().z);
   }
 
+  /** A close look at a place, turned so far that it does not lie behind what is around `centre`. */
+  closeUp(at: Vector3, reachMm: number, centre: Vector3): Required<Framing> {
+    const outward = at.clone().sub(centre);
+    const direction = this.direction();
+    if (outward.lengthSq() > 1e-9) {
+      outward.normalize();
+      // Seen from well outside it already, the picture keeps its direction.
+      if (direction.dot(outward) < 0.5) direction.addScaledVector(outward, 1.5).normalize();
+    }
+    const side = Math.min(this.widthPx, this.heightPx);
+    const pixelsPerMm = Math.min(
+      (CLOSE_UP_FILL * side) / Math.max(2 * reachMm, 1e-6),
+      this.controls.maxZoom,
+    );
+    return { target: at.clone(), pixelsPerMm, direction };
+  }
+
   framing(): Framing {
     return { target: this.controls.target.clone(), pixelsPerMm: this.camera.zoom };
   }
 
   /** Moves the camera to a framing, keeping its direction. */
   frame(framing: Framing): void {
-    const direction = this.direction();
+    const direction = framing.direction ?? this.direction();
     this.controls.target.copy(framing.target);
     this.place(framing.target, direction);
     this.camera.zoom = framing.pixelsPerMm;
@@ -168,7 +193,7 @@ export class CameraRig {
   }
 
   /** From the target to the camera, length 1. */
-  private direction(): Vector3 {
+  direction(): Vector3 {
     const direction = this.camera.position.clone().sub(this.controls.target);
     return direction.lengthSq() > 1e-12 ? direction.normalize() : firstDirection.clone();
   }

@@ -21,8 +21,14 @@ export async function loadView(bytes: ArrayBuffer): Promise<ViewParts> {
   const surfaces: SurfacePart[] = [];
   const lines: LinePart[] = [];
   scene.traverse((object) => {
-    if (isKind(object, 'isMesh')) surfaces.push({ ...partOf(object), indices: indicesOf(object) });
-    else if (isKind(object, 'isLineSegments')) lines.push(segmentsOf(object));
+    if (isKind(object, 'isMesh')) {
+      const walls = wallsOf(object);
+      surfaces.push({
+        ...partOf(object),
+        indices: indicesOf(object),
+        ...(walls && { walls }),
+      });
+    } else if (isKind(object, 'isLineSegments')) lines.push(segmentsOf(object));
   });
   disposeTree(scene);
   return { surfaces, lines };
@@ -31,6 +37,7 @@ export async function loadView(bytes: ArrayBuffer): Promise<ViewParts> {
 interface Drawn extends Object3D {
   readonly geometry: {
     getAttribute(name: 'position'): BufferAttribute | InterleavedBufferAttribute;
+    getAttribute(name: '_wall'): BufferAttribute | InterleavedBufferAttribute | undefined;
     readonly index: BufferAttribute | null;
   };
 }
@@ -49,6 +56,13 @@ function partOf(object: Drawn): { name: string; positions: Float32Array } {
       .applyMatrix4(object.matrixWorld)
       .toArray(positions, at * 3);
   return { name: nameOf(object), positions };
+}
+
+/** three gives attributes of a file's own in small letters. */
+function wallsOf(object: Drawn): Float32Array | null {
+  const source = object.geometry.getAttribute('_wall');
+  if (!source) return null;
+  return Float32Array.from({ length: source.count }, (_, at) => source.getX(at));
 }
 
 /** A mesh of several primitives is a group whose name its parts must take. */

@@ -12,6 +12,7 @@ import { disposeTree } from './disposal';
 import { type Pose, identityPose, mixPoses } from './placement';
 import { shadeSurface } from './surface-shading';
 import { type ScenePiece, type SurfacePart } from './view-parts';
+import { wallColours } from './wall-colours';
 
 /** Enough points of a piece to frame it by. */
 const OUTLINE_POINTS = 64;
@@ -73,6 +74,7 @@ export class PieceBody {
   readonly featureEdges: Float32Array;
   readonly mesh: Mesh<BufferGeometry, MeshLambertMaterial>;
   private readonly pose: Pose;
+  private tint = '#ffffff';
   private from = identityPose();
   private to = identityPose();
 
@@ -104,7 +106,22 @@ export class PieceBody {
   }
 
   setColour(tint: string): void {
-    this.mesh.material.color.set(tint);
+    this.tint = tint;
+    if (!this.mesh.material.vertexColors) this.mesh.material.color.set(tint);
+  }
+
+  /** Colours the surface by wall thickness up to `toMm`, or by its tint alone; whether it could. */
+  setWallShading(toMm: number | null): boolean {
+    const { indices, walls } = this.piece.surface;
+    const { geometry, material } = this.mesh;
+    const isShaded = toMm !== null && walls !== undefined;
+    if (isShaded)
+      geometry.setAttribute('color', new BufferAttribute(wallColours(indices, walls, toMm), 3));
+    else geometry.deleteAttribute('color');
+    material.vertexColors = isShaded;
+    material.color.set(isShaded ? '#ffffff' : this.tint);
+    material.needsUpdate = true;
+    return isShaded;
   }
 
   /** Starts a move to a pose from wherever the piece is now. */

@@ -34,6 +34,7 @@ export class PieceStage {
   private modelBox = new Box3();
   private selected: string | null = null;
   private view: SceneView = 'whole';
+  private wallsToMm: number | null = null;
   private spread = 0;
   private areBodiesDrawn = true;
   private readonly poses = new Map<PieceBody, Pose>();
@@ -74,12 +75,19 @@ export class PieceStage {
     const toleranceMm = longestSide(this.modelBox) * SEAM_TOLERANCE_SHARE;
     this.seams = new SeamLines(seams, toleranceMm, (name) => this.bodyOf(name)?.group);
     this.applyTheme();
+    this.setWallShading(this.wallsToMm);
     this.aim();
     this.advance(1);
   }
 
   setSpread(fraction: number): void {
     this.spread = fraction;
+  }
+
+  /** Colours surfaces by wall thickness up to `toMm`; null draws them plain. */
+  setWallShading(toMm: number | null): void {
+    this.wallsToMm = toMm;
+    for (const body of this._bodies) body.setWallShading(toMm);
   }
 
   setSelected(name: string | null): void {

@@ -29,7 +29,7 @@ export class SeamLines {
       const outline = simplifyLines(seam.positions, toleranceMm);
       const geometry = new LineSegmentsGeometry().setPositions(outline);
       this.geometries.push(geometry);
-      for (const name of seam.between) {
+      for (const name of new Set(seam.between)) {
         const group = groupOf(name);
         if (!group) continue;
         const line = new LineSegments2(geometry, this.material);

@@ -5,6 +5,8 @@ export interface SurfacePart {
   readonly positions: Float32Array;
   /** Vertex indices, length 3 × triangle count, counter-clockwise seen from outside. */
   readonly indices: Uint32Array;
+  /** Wall thickness, one a vertex, in the unit of the positions; 0 where it is not known. */
+  readonly walls?: Float32Array;
 }
 
 /** A set of line segments, such as the outline of a seam. */

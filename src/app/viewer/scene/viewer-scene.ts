@@ -15,12 +15,13 @@ import { CutPlaneLayer, type CutPlane } from './cut-plane-layer';
 import { DimensionOverlay, boxDimensions } from './dimension-overlay';
 import { Glide } from './glide';
 import { PieceStage, type SceneView } from './piece-stage';
+import { PlaceMarker } from './place-marker';
 import { PressDetector } from './press-detector';
 import { createRenderer } from './renderer';
 import { scaleBarFor, type ScaleBar } from './scale-steps';
 import { type SceneTheme } from './scene-theme';
 import { SelectionOutline } from './selection-outline';
-import { type ScenePiece, type SceneSeam } from './view-parts';
+import { type ScenePiece, type SceneSeam, type Triple } from './view-parts';
 
 /** What the scene draws on and whom it tells. */
 export interface SceneHost {
@@ -32,6 +33,13 @@ export interface SceneHost {
   readonly onMeasured: (measure: SceneMeasure) => void;
   /** A piece was clicked, or nothing. */
   readonly onPicked: (name: string | null) => void;
+}
+
+/** A place worth looking at, in the assembled model. */
+export interface ScenePlace {
+  readonly atMm: Triple;
+  /** Radius to show around it. */
+  readonly reachMm: number;
 }
 
 /** Lengths to be read off the picture. */
@@ -60,6 +68,7 @@ export class ViewerScene {
   private readonly cutLayer: CutPlaneLayer;
   private readonly balloons: Balloons;
   private readonly dimensions: DimensionOverlay;
+  private readonly marker: PlaceMarker;
   private readonly press: PressDetector;
   private readonly glide: Glide;
   private readonly light = new DirectionalLight('#ffffff', 1.9);
@@ -83,6 +92,7 @@ export class ViewerScene {
     this.rig = new CameraRig(host.canvas, this.requestRender, this.settle);
     this.balloons = new Balloons(host.overlay, host.onPicked);
     this.dimensions = new DimensionOverlay(host.overlay);
+    this.marker = new PlaceMarker(host.overlay);
     this.cutLayer = new CutPlaneLayer(this.stage);
     this.press = new PressDetector(host.canvas, (x, y) => host.onPicked(this.pick(x, y)));
     this.raycaster.firstHitOnly = true;
@@ -144,6 +154,30 @@ export class ViewerScene {
     this.stage.setTheme(theme);
     this.cutLayer.setTheme(theme);
     this.outline.setColour(theme.ink);
+    this.requestRender();
+  }
+
+  /** Flies to a place of the assembled model and rings it; null takes the ring away. */
+  setPlace(place: ScenePlace | null): void {
+    this.marker.setPlace(place && new Vector3(...place.atMm));
+    if (place && this.size.widthPx > 0) {
+      const at = new Vector3(...place.atMm);
+      const centre = this.stage.assembledBox().getCenter(new Vector3());
+      this.framings = {
+        from: { ...this.rig.framing(), direction: this.rig.direction() },
+        to: this.rig.closeUp(at, place.reachMm, centre),
+      };
+      if (!this.glide.start(performance.now())) {
+        this.glide.stop();
+        this.advance(1);
+      }
+    }
+    this.requestRender();
+  }
+
+  /** Colours surfaces by wall thickness up to `toMm`; null draws them plain. */
+  setWallShading(toMm: number | null): void {
+    this.stage.setWallShading(toMm);
     this.requestRender();
   }
 
@@ -226,6 +260,7 @@ export class ViewerScene {
     this.outline.dispose();
     this.balloons.dispose();
     this.dimensions.dispose();
+    this.marker.dispose();
     this.light.dispose();
     this.rig.dispose();
     this.renderer.dispose();
@@ -285,6 +320,7 @@ export class ViewerScene {
     if (selected) this.outline.draw(this.renderer, camera, selected);
     const numbered = this.drawBalloons();
     this.drawDimensions();
+    this.marker.draw(camera, this.size);
     const bar = scaleBarFor(this.rig.pixelsPerMm, SCALE_BAR_PX);
     this.host.onMeasured({ bar, gridMm: this.visibleGridMm(), numbered });
     this.host.onDrawn(++this.frames);
