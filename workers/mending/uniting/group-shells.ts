@@ -17,11 +17,13 @@ export interface ShellGroups {
  * with those around them as long as these make a difference: between a solid and its hollow a group
  * stands for itself. All other shells are in no group.
  * @param labels shell of each triangle
+ * @param report called between steps, for signs of life
  */
 export function groupShells(
   shells: readonly Shell[],
   labels: Int32Array,
   crossingTriangles: Uint32Array,
+  report: () => void = () => {},
 ): ShellGroups {
   const link = shells.map((_, i) => i);
   const isLinked = new Uint8Array(shells.length);
@@ -39,8 +41,8 @@ export function groupShells(
     if (a === b) selfCrossing.add(a);
     else pairs.add(a < b ? `${a},${b}` : `${b},${a}`);
   }
-  joinPartlyInside(shells, link, join);
-  takeInNested(shells, link, isLinked, join);
+  joinPartlyInside(shells, link, join, report);
+  takeInNested(shells, link, isLinked, join, report);
   const groups = new Map<number, Shell[]>();
   for (const shell of shells) {
     if (isLinked[shell.number] === 0) continue;
@@ -57,15 +59,18 @@ function joinPartlyInside(
   shells: readonly Shell[],
   link: number[],
   join: (a: number, b: number) => void,
+  report: () => void,
 ): void {
   let looked = 0;
-  for (const [i, shell] of shells.entries())
+  for (const [i, shell] of shells.entries()) {
+    report();
     for (let j = 0; j < i && looked < mostPairs; j++) {
       const other = shells[j];
       if (!boxesTouch(shell, other) || rootOf(link, i) === rootOf(link, j)) continue;
       looked++;
       if (placeOf(shell, other) === 'partly' || placeOf(other, shell) === 'partly') join(i, j);
     }
+  }
 }
 
 function takeInNested(
@@ -73,11 +78,13 @@ function takeInNested(
   link: number[],
   isLinked: Uint8Array,
   join: (a: number, b: number) => void,
+  report: () => void,
 ): void {
   for (let isGrowing = true; isGrowing;) {
     isGrowing = false;
     for (const member of shells) {
       if (isLinked[member.number] === 0) continue;
+      report();
       const near = shells.filter(
         (shell) => isLinked[shell.number] === 0 && boxesTouch(shell, member),
       );

@@ -83,5 +83,12 @@ export function placeOf(shell: Shell, other: Shell): 'inside' | 'outside' | 'par
 }
 
 export function boxesTouch(a: Shell, b: Shell): boolean {
-  return [0, 1, 2].every((axis) => a.min[axis] <= b.max[axis] && b.min[axis] <= a.max[axis]);
+  return (
+    a.min[0] <= b.max[0] &&
+    b.min[0] <= a.max[0] &&
+    a.min[1] <= b.max[1] &&
+    b.min[1] <= a.max[1] &&
+    a.min[2] <= b.max[2] &&
+    b.min[2] <= a.max[2]
+  );
 }

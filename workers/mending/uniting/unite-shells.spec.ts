@@ -13,6 +13,7 @@ import {
   torusKnot,
   turnInsideOut,
 } from '../../../test/support/shapes.js';
+import { randomInteger, seededRandom } from '../../../test/support/random.js';
 import { readStl } from '../../intake/stl-reader.js';
 import { findCrossings } from '../../measuring/find-crossings.js';
 import { buildBvh } from '../../measuring/triangle-bvh.js';
@@ -158,6 +159,33 @@ describe('uniting overlapping shells', () => {
     const mesh = join([cube(0, 10), moved(cube(0, 10), 6, 5, 4)]);
     const far = unite(moved(mesh, 1e6, -2e6, 3e6));
     expect(signedVolume(far)).toBeCloseTo(1880, 3);
+  });
+});
+
+describe('uniting boxes of whole numbers', () => {
+  // Faces in faces, edges on edges, corners on corners. The truth is a count of unit cubes.
+  it('gives the volume of the cubes that they fill', () => {
+    const random = seededRandom(7);
+    for (let round = 0; round < 100; round++) {
+      const boxes = Array.from({ length: 2 + randomInteger(random, 5) }, () => {
+        const low = [0, 0, 0].map(() => randomInteger(random, 6)) as [number, number, number];
+        const high = low.map((value) => value + 1 + randomInteger(random, 5)) as typeof low;
+        return { low, high };
+      });
+      let filled = 0;
+      for (let cell = 0; cell < 11 ** 3; cell++) {
+        const at = [cell % 11, Math.floor(cell / 11) % 11, Math.floor(cell / 121)];
+        const isIn = boxes.some(({ low, high }) =>
+          at.every((value, axis) => value >= low[axis] && value < high[axis]),
+        );
+        if (isIn) filled++;
+      }
+      const mesh = join(boxes.map(({ low, high }) => box(low, high).mesh));
+      const united = uniteShells(mesh, { solids });
+      if ('refusal' in united) throw new Error(united.refusal);
+      expect(Math.abs(signedVolume(united.mesh) - filled)).toBeLessThan(0.01);
+      expect(edgeReport(united.mesh).closed).toBe(true);
+    }
   });
 });
 

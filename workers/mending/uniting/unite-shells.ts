@@ -12,6 +12,7 @@ import type { Solids } from '../../solids/solid-kernel.js';
 import { groupShells, type ShellGroups } from './group-shells.js';
 import { listShells, placeOf, type Shell } from './list-shells.js';
 import { joinMeshes } from './mesh-parts.js';
+import { partContacts } from './part-contacts.js';
 import { partSelfCrossing } from './part-self-crossing.js';
 import { isSameInside } from './same-inside.js';
 import { uniteMeshes, type UnionPart } from './unite-meshes.js';
@@ -45,7 +46,9 @@ export function uniteShells(
     tools.crossingTriangles ?? findCrossings(mesh, buildBvh(mesh), { context }).triangles;
   context.progress('Uniting', 0);
   const shells = listShells(mesh);
-  const found = groupShells(shells, surfacesOf(mesh).labels, crossingTriangles);
+  const found = groupShells(shells, surfacesOf(mesh).labels, crossingTriangles, () =>
+    context.progress('Uniting', 0),
+  );
   const { groups } = found;
   if (groups.length === 0) return { mesh, steps: [] };
   const results: TriangleMesh[] = [];
@@ -57,9 +60,29 @@ export function uniteShells(
   }
   const inGroup = new Set(groups.flat());
   const untouched = shells.filter((shell) => !inGroup.has(shell));
-  const whole = joinMeshes([...untouched.map((shell) => shell.mesh), ...results]);
-  if (!isClosedWhenRounded(whole)) return { refusal: cannotUnite };
-  return { mesh: whole, steps: [stepOf(groups)] };
+  const whole = makeWritable(
+    untouched.map((shell) => shell.mesh),
+    results,
+  );
+  return whole ? { mesh: whole, steps: [stepOf(groups)] } : { refusal: cannotUnite };
+}
+
+/**
+ * The shells side by side, closed also in single precision, as far as those that were not touched are.
+ * Null when that takes more than drawing apart what touches.
+ */
+function makeWritable(
+  untouched: readonly TriangleMesh[],
+  united: readonly TriangleMesh[],
+): TriangleMesh | null {
+  const whole = joinMeshes([...untouched, ...united]);
+  if (!edgeReport(whole).closed) return null;
+  const before = untouched.length > 0 ? faultsWhenRounded(joinMeshes(untouched)) : 0;
+  if (faultsWhenRounded(whole) <= before) return whole;
+  const first = untouched.reduce((sum, mesh) => sum + mesh.positions.length / 3, 0);
+  const apart = partContacts(whole, first);
+  if (faultsWhenRounded(apart) > before) return null;
+  return findCrossings(apart, buildBvh(apart)).pairs > 0 ? null : apart;
 }
 
 function stepOf(groups: ShellGroups['groups']): MendingStep {
@@ -81,12 +104,12 @@ function stepOf(groups: ShellGroups['groups']): MendingStep {
   return { kind: 'unite', count, sentence: sentences.join(' ') };
 }
 
-/** Closed by its numbers, and still so in single precision about its middle. */
-function isClosedWhenRounded(mesh: TriangleMesh): boolean {
-  if (!edgeReport(mesh).closed) return false;
+/** Edges that are not closed once the coordinates about the middle are single precision. */
+function faultsWhenRounded(mesh: TriangleMesh): number {
   const { min, size } = boundingBox(mesh.positions);
   const [x, y, z] = min.map((value, axis) => -value - size[axis] / 2);
-  return roundAndWeld(mesh, [1, 0, 0, x, 0, 1, 0, y, 0, 0, 1, z]).report.closed;
+  const { report } = roundAndWeld(mesh, [1, 0, 0, x, 0, 1, 0, y, 0, 0, 1, z]);
+  return report.openEdges + report.nonManifoldEdges + report.misorientedEdges;
 }
 
 /** Null when it cannot be done, or the result does not hold the same points. */
