@@ -34,9 +34,6 @@ export function notesOf(
   { solid, steps, mesh }: MendedModel,
 ): string[] {
   const notes: string[] = [];
-  if (solid?.turnedOutward)
-    notes.push('The whole model was inside out. It was turned round; its shape is the same.');
-  if (solid && solid.shells.count > 1) notes.push(shellNote(solid.shells.count, solid.cavities));
   notes.push(...reading.notes);
   const farthest = Math.max(...before.min.map((low, axis) => farther(low, before.size[axis])));
   const longest = Math.max(...before.size);
@@ -53,10 +50,4 @@ export function notesOf(
 
 function farther(low: number, size: number): number {
   return Math.max(Math.abs(low), Math.abs(low + size));
-}
-
-function shellNote(shells: number, cavities: number): string {
-  const solids = countOf(shells - cavities, 'solid');
-  if (cavities === 0) return `The model is made of ${solids}.`;
-  return `The model is made of ${solids} with ${countOf(cavities, 'closed hollow')} inside.`;
 }

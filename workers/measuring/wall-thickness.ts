@@ -10,6 +10,8 @@ const usualSamples = 8000;
 const bins = 24;
 /** The histogram ends where this share of the walls does; what is thicker counts in its last bin. */
 const shownShare = 0.9;
+/** Beyond that, so that walls of one thickness do not all stand at the end of the scale. */
+const headroom = 1.25;
 const reportEvery = 1024;
 
 /** A wall report with the thickness at every sample. */
@@ -75,7 +77,7 @@ function reportOf(points: Float64Array, thickness: Float32Array): WallReport {
   const sorted = thickness.slice().sort();
   const at = (share: number) =>
     sorted[Math.min(sorted.length - 1, Math.max(0, Math.ceil(share * sorted.length) - 1))];
-  const to = roundUp(at(shownShare));
+  const to = roundUp(headroom * at(shownShare));
   const counts = new Array<number>(bins).fill(0);
   let thinnest = 0;
   thickness.forEach((value, i) => {

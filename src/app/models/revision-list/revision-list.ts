@@ -10,7 +10,7 @@ import { comparisonInWords } from './revision-words';
     @if (comparison()) {
       <p>{{ comparison() }}</p>
     }
-    <div class="sw-table-rows" tabindex="0" role="group" aria-label="Revisions">
+    <div class="wide" tabindex="0" role="group" aria-label="Revisions">
       <table class="sw-table">
         <caption class="sw-unseen">
           Revisions, the newest first
@@ -47,6 +47,10 @@ import { comparisonInWords } from './revision-words';
       display: grid;
       gap: 12px;
       min-width: 0;
+    }
+
+    .wide {
+      overflow-x: auto;
     }
 
     td,
