@@ -21,7 +21,7 @@ const mostTurns = 100;
 /** A point is inside where the surface winds around it more than this often. */
 const insideFrom = 0.5;
 /** The cones decide alone where the surface runs across holes: it should be smooth there. */
-const coneFarRadii = 6;
+const coneFarRadii = 4;
 /** Crossings closer than this share of a cell are one. */
 const sameCrossing = 1e-3;
 const nowhere: WindingTree = { windingAt: () => 0 };
