@@ -7,7 +7,7 @@ import { buildBvh } from '../../measuring/triangle-bvh.js';
 import { type JobContext, portionOf } from '../../runtime/job-context.js';
 import type { PatchedCells } from './patch-cells.js';
 
-const sampleCount = 20_000;
+const usualSamples = 20_000;
 const reportEvery = 1 << 9;
 /** Only samples farther off than this share of a cell are asked whether they are buried. */
 const farShare = 0.25;
@@ -18,6 +18,8 @@ export interface RemeshMeasuring {
   /** Side of a cell. */
   readonly spacing: number;
   readonly context: JobContext;
+  /** Points each way. */
+  readonly samples?: number;
 }
 
 /**
@@ -28,10 +30,10 @@ export interface RemeshMeasuring {
 export function measureRemesh(
   original: TriangleMesh,
   { mesh, isAcross }: PatchedCells,
-  { isInsideAt, spacing, context }: RemeshMeasuring,
+  { isInsideAt, spacing, context, samples: wanted = usualSamples }: RemeshMeasuring,
 ): MeasuredDeviation {
   context.progress(stage, 0);
-  const samples = sampleSurface(original, sampleCount);
+  const samples = sampleSurface(original, wanted);
   const away = distancesFrom(samples, buildBvh(mesh), portionOf(context, 0.25, 0.5));
   const isBuried = buriedTest(original, samples, isInsideAt, 0.05 * spacing);
   const seen = samplesWhere(samples.count, (i) => {
@@ -44,7 +46,7 @@ export function measureRemesh(
     const [a, b, c] = [mesh.indices[first], mesh.indices[first + 1], mesh.indices[first + 2]];
     return isAcross[a] + isAcross[b] + isAcross[c] === 0;
   });
-  const own = sampleSurface({ positions: mesh.positions, indices: onFacets }, sampleCount);
+  const own = sampleSurface({ positions: mesh.positions, indices: onFacets }, wanted);
   context.progress(stage, 0.65);
   const off = distancesFrom(own, buildBvh(original), portionOf(context, 0.7, 1));
   const back = summary(

@@ -13,7 +13,7 @@ import {
   flipFacets,
   removeFacets,
 } from '../../../test/support/damage.js';
-import { seededRandom } from '../../../test/support/random.js';
+import { randomInteger, seededRandom } from '../../../test/support/random.js';
 import {
   box,
   boxWithCavity,
@@ -36,7 +36,7 @@ beforeAll(async () => {
 
 /** Rebuilt; closed, outward, without crossings, taken by manifold-3d, closed in single precision. */
 function rebuild(mesh: TriangleMesh, cells: number) {
-  const rebuilt = remeshSurface(mesh, cells, { solids });
+  const rebuilt = remeshSurface(mesh, cells, { solids, samples: 4000 });
   if ('refusal' in rebuilt) throw new Error(rebuilt.refusal);
   expect(edgeReport(rebuilt.mesh).closed).toBe(true);
   expect(roundAndWeld(rebuilt.mesh, identityMotion).report.closed).toBe(true);
@@ -184,6 +184,19 @@ describe('remeshSurface on soups', () => {
     }));
     const { mesh } = rebuild(join([ball.mesh, ...specks]), 100);
     expect(surfacesOf(mesh).count).toBe(1);
+  });
+
+  it('makes a solid of triangles thrown at random, or says that they enclose nothing', () => {
+    const random = seededRandom(9);
+    for (let round = 0; round < 4; round++) {
+      const points = 30 + 20 * round;
+      const positions = new Float64Array(3 * points).map(() => 10 * random());
+      const corners = Uint32Array.from({ length: 300 }, () => randomInteger(random, points));
+      const isWhole = (i: number) =>
+        new Set(corners.subarray(i - (i % 3), i - (i % 3) + 3)).size === 3;
+      const indices = corners.filter((_, i) => isWhole(i));
+      expect(rebuild({ positions, indices }, 24).volume).toBeGreaterThan(0);
+    }
   });
 
   it('refuses what encloses nothing', () => {

@@ -37,11 +37,16 @@ const nothingInside =
  * `cells` cells along the longest side; the vertices of the result lie on the facets where there are any.
  * Edges lose up to half a cell. The result is closed, manifold and faces outward. Facets that face inward
  * as a whole are taken the other way round. The given mesh is not changed.
+ * @param tools.samples points each way for the deviation
  */
 export function remeshSurface(
   mesh: TriangleMesh,
   cells: number,
-  tools: { readonly solids?: Solids; readonly context?: JobContext } = {},
+  tools: {
+    readonly solids?: Solids;
+    readonly context?: JobContext;
+    readonly samples?: number;
+  } = {},
 ): RemeshedSurface {
   const { context = silentContext } = tools;
   const used = dropUnusedVertices({ positions: mesh.positions, indices: mesh.indices });
@@ -64,6 +69,7 @@ export function remeshSurface(
   const deviation = measureRemesh(used, kept, {
     isInsideAt: sides.isInsideAt,
     spacing: grid.spacing,
+    samples: tools.samples,
     context: portionOf(context, 0.75, 1),
   });
   return {
