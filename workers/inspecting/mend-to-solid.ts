@@ -1,4 +1,5 @@
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
+import { matesOf, OPEN } from '../../shared/geometry/mesh/edge-mates.js';
 import { edgeReport } from '../../shared/geometry/mesh/topology.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { MendingChoices } from '../../shared/jobs/mending-choices.js';
@@ -91,12 +92,30 @@ function fillChosen(
   holes: readonly Hole[],
   { limit, tools }: { limit: number; tools: MendingTools },
 ) {
-  const chosen = holes.filter((hole) => hole.edges <= oneFacet || hole.perimeter <= limit);
+  const lone = loneFacets(mesh);
+  const chosen = holes.filter(
+    (hole) =>
+      (hole.edges <= oneFacet || hole.perimeter <= limit) && !lone.has(keyOf(hole.vertices)),
+  );
   if (chosen.length === 0) return { mesh, holes, steps: [], places: [] };
   const { triangulate } = tools.solids;
   const filled = fillHoles(mesh, chosen, Infinity, { triangulate, context: tools.context });
   const after = new Map(filled.holes.map((hole) => [hole.id, hole]));
   return { ...filled, holes: holes.map((hole) => after.get(hole.id) ?? hole) };
+}
+
+/** Facets that hang on no other: their three sides look like the rim of a hole, but are none. */
+function loneFacets(mesh: TriangleMesh): Set<string> {
+  const { mates } = matesOf(mesh);
+  const found = new Set<string>();
+  for (let side = 0; side < mates.length; side += 3)
+    if (mates[side] === OPEN && mates[side + 1] === OPEN && mates[side + 2] === OPEN)
+      found.add(keyOf(mesh.indices.subarray(side, side + 3)));
+  return found;
+}
+
+function keyOf(vertices: Uint32Array): string {
+  return vertices.toSorted().join(' ');
 }
 
 /** The surface made anew on a grid; the one before when that is refused. */

@@ -24,11 +24,12 @@ export function readModel(
 ): MeshReading {
   if (bytes.length === 0) throw refuseFile(fileName, 'is empty.');
   const report = (fraction: number) => onProgress('Reading', fraction);
-  const reading = isZip(bytes) && !isProvenBinary(bytes)
-    ? readThreeMf(bytes, fileName, parts, report)
-    : looksLikeObj(bytes)
-      ? readObj(bytes, fileName, parts, report)
-      : readStl(bytes, fileName, report);
+  const reading =
+    isZip(bytes) && !isProvenBinary(bytes)
+      ? readThreeMf(bytes, fileName, parts, report)
+      : looksLikeObj(bytes)
+        ? readObj(bytes, fileName, parts, report)
+        : readStl(bytes, fileName, report);
   if (parts !== null) refuseUnknownParts(reading, parts, fileName);
   return reading;
 }

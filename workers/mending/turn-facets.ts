@@ -80,6 +80,16 @@ function agree({ positions, indices }: TriangleMesh, mates: Int32Array) {
 }
 
 /**
+ * A surface has an inside when it encloses this share of what a ball of its area does. Flatter ones,
+ * single facets above all, keep the side that they have. Own choice.
+ */
+const leastBulge = 0.01;
+
+function ballVolume(area: number): number {
+  return area ** 1.5 / (6 * Math.sqrt(Math.PI));
+}
+
+/**
  * Turns open surfaces outward as a whole where their volume, with every rim closed by a fan from the
  * rims' middle, is negative. Closed surfaces are left to the nesting of shells. @returns a mesh of
  * its own when something was turned
@@ -98,10 +108,12 @@ export function turnOpenSurfaces(
     rims[at + 3]++;
   }
   const volumes = new Float64Array(surfaces.count);
+  const areas = new Float64Array(surfaces.count);
   for (let triangle = 0; triangle < surfaces.labels.length; triangle++) {
     const surface = surfaces.labels[triangle];
     const count = rims[4 * surface + 3];
     if (count === 0) continue;
+    areas[surface] += twofoldArea(positions, indices, 3 * triangle) / 2;
     // Seen from the rims' middle the fans add nothing.
     volumes[surface] += sixfoldVolume(positions, indices, 3 * triangle, [
       rims[4 * surface] / count,
@@ -109,11 +121,15 @@ export function turnOpenSurfaces(
       rims[4 * surface + 2] / count,
     ]);
   }
-  const turned = volumes.filter((volume) => volume < 0).length;
+  const isInward = Array.from(
+    volumes,
+    (sixfold, surface) => sixfold / 6 < -leastBulge * ballVolume(areas[surface]),
+  );
+  const turned = isInward.filter(Boolean).length;
   if (turned === 0) return { mesh, turned };
   const outward = indices.slice();
   for (let triangle = 0; triangle < surfaces.labels.length; triangle++)
-    if (volumes[surfaces.labels[triangle]] < 0) turnTriangle(outward, triangle);
+    if (isInward[surfaces.labels[triangle]]) turnTriangle(outward, triangle);
   return { mesh: { positions, indices: outward }, turned };
 }
 

@@ -28,8 +28,10 @@ export function readXml(
   const parser = new SaxesParser();
   const open: string[] = [];
   parser.on('error', (error) => {
-    const what = error.message.replace(/\s+/g, ' ').slice(0, 80);
-    throw refuseFile(fileName, `holds XML that is not well formed (${what}). It is damaged.`);
+    // The parser's messages begin with line and column.
+    const [, line] = /^(\d+):\d+:/.exec(error.message) ?? [];
+    const where = line ? ` in line ${line}` : '';
+    throw refuseFile(fileName, `holds XML that is not well formed${where}. It is damaged.`);
   });
   parser.on('doctype', () => {
     throw refuseFile(
