@@ -18,7 +18,6 @@ import {
 } from '../support/damage.js';
 import { seededRandom } from '../support/random.js';
 import {
-  box,
   boxWithCavity,
   join,
   sevenEighthsCube,
