@@ -3,7 +3,7 @@ import type { MeshBVH } from 'three-mesh-bvh';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type JobContext, silentContext } from '../runtime/job-context.js';
-import { trianglesCross } from './triangle-crossing.js';
+import { trianglesCross, writePlane } from './triangle-crossing.js';
 
 export interface FoundCrossings {
   /** Pairs of triangles that cross. */
@@ -33,26 +33,27 @@ export function findCrossings(
     context = silentContext,
   }: { mostPairs?: number; context?: JobContext } = {},
 ): FoundCrossings {
-  const { positions, indices } = mesh;
-  const count = indices.length / 3;
-  const order = Uint32Array.from({ length: count }, (_, i) => bvh.resolveTriangleIndex(i));
-  const boxes = boxesInOrder(mesh, order);
+  const { positions } = mesh;
+  const count = mesh.indices.length / 3;
   const tolerance = touchShare * Math.hypot(...boundingBox(positions).size);
+  const { order, corners, boxes, planes } = inTreeOrder(mesh, bvh);
   const found: number[] = [];
   let pairs = 0;
   let tests = 0;
   let visits = 0;
   const compare = (i: number, j: number): void => {
-    const a = 3 * order[i];
-    const b = 3 * order[j];
-    const [a0, a1, a2] = [indices[a], indices[a + 1], indices[a + 2]];
-    const [b0, b1, b2] = [indices[b], indices[b + 1], indices[b + 2]];
+    const a0 = corners[3 * i];
+    const a1 = corners[3 * i + 1];
+    const a2 = corners[3 * i + 2];
+    const b0 = corners[3 * j];
+    const b1 = corners[3 * j + 1];
+    const b2 = corners[3 * j + 2];
     const shared =
-      Number(a0 === b0 || a0 === b1 || a0 === b2) +
-      Number(a1 === b0 || a1 === b1 || a1 === b2) +
-      Number(a2 === b0 || a2 === b1 || a2 === b2);
-    if (shared === 2 && !mayFold(positions, indices, a, b)) return;
-    if (!trianglesCross(positions, a0, a1, a2, b0, b1, b2, tolerance)) return;
+      (a0 === b0 || a0 === b1 || a0 === b2 ? 1 : 0) +
+      (a1 === b0 || a1 === b1 || a1 === b2 ? 1 : 0) +
+      (a2 === b0 || a2 === b1 || a2 === b2 ? 1 : 0);
+    if (shared === 2 && !mayFold(planes, 4 * i, 4 * j)) return;
+    if (!trianglesCross(positions, planes, a0, a1, a2, 4 * i, b0, b1, b2, 4 * j, tolerance)) return;
     pairs++;
     if (pairs <= mostPairs) found.push(order[i], order[j]);
   };
@@ -61,7 +62,7 @@ export function findCrossings(
       // Every pair of leaves is met both ways round.
       if (from2 < from1) return false;
       if ((++visits & (reportEvery - 1)) === 0)
-        context.progress('Looking for crossings', Math.min(0.99, visits / (4 * count)));
+        context.progress('Looking for crossings', Math.min(0.99, visits / count));
       for (let i = from1; i < from1 + count1; i++)
         for (let j = from1 === from2 ? i + 1 : from2; j < from2 + count2; j++)
           if (boxesTouch(boxes, 6 * i, 6 * j)) {
@@ -74,14 +75,34 @@ export function findCrossings(
   return { pairs, complete: tests <= mostTests, triangles: Uint32Array.from(found) };
 }
 
-/** Least and greatest xyz of each triangle, in the tree's order. */
-function boxesInOrder({ positions, indices }: TriangleMesh, order: Uint32Array): Float64Array {
-  const boxes = new Float64Array(6 * order.length);
-  for (let i = 0; i < order.length; i++) {
-    const at = 3 * order[i];
-    const a = 3 * indices[at];
-    const b = 3 * indices[at + 1];
-    const c = 3 * indices[at + 2];
+/** Everything that is asked of a triangle, in the order of the tree's leaves: neighbours lie close. */
+function inTreeOrder({ positions, indices }: TriangleMesh, bvh: MeshBVH) {
+  const count = indices.length / 3;
+  const order = new Uint32Array(count);
+  const corners = new Uint32Array(3 * count);
+  const planes = new Float64Array(4 * count);
+  for (let i = 0; i < count; i++) {
+    const triangle = bvh.resolveTriangleIndex(i);
+    order[i] = triangle;
+    const a = indices[3 * triangle];
+    const b = indices[3 * triangle + 1];
+    const c = indices[3 * triangle + 2];
+    corners[3 * i] = a;
+    corners[3 * i + 1] = b;
+    corners[3 * i + 2] = c;
+    writePlane(positions, a, b, c, planes, 4 * i);
+  }
+  return { order, corners, planes, boxes: boxesOf(positions, corners) };
+}
+
+/** Least and greatest xyz of each triangle. Rounding keeps the order of numbers, so that boxes that
+ *  touch still do in single precision. */
+function boxesOf(positions: Float64Array, corners: Uint32Array): Float32Array {
+  const boxes = new Float32Array(2 * corners.length);
+  for (let i = 0; i < corners.length / 3; i++) {
+    const a = 3 * corners[3 * i];
+    const b = 3 * corners[3 * i + 1];
+    const c = 3 * corners[3 * i + 2];
     for (let axis = 0; axis < 3; axis++) {
       const x = positions[a + axis];
       const y = positions[b + axis];
@@ -93,7 +114,7 @@ function boxesInOrder({ positions, indices }: TriangleMesh, order: Uint32Array):
   return boxes;
 }
 
-function boxesTouch(boxes: Float64Array, i: number, j: number): boolean {
+function boxesTouch(boxes: Float32Array, i: number, j: number): boolean {
   return (
     boxes[i] <= boxes[j + 3] &&
     boxes[j] <= boxes[i + 3] &&
@@ -105,22 +126,11 @@ function boxesTouch(boxes: Float64Array, i: number, j: number): boolean {
 }
 
 /** Triangles with a common side can only cross by lying on each other: their normals are opposed. */
-function mayFold(p: Float64Array, indices: Uint32Array, one: number, other: number): boolean {
-  const [ax, ay, az] = normalAt(p, indices, one);
-  const [bx, by, bz] = normalAt(p, indices, other);
-  const across = ax * bx + ay * by + az * bz;
-  return across * across > 0.99 * (ax * ax + ay * ay + az * az) * (bx * bx + by * by + bz * bz);
-}
-
-function normalAt(p: Float64Array, indices: Uint32Array, at: number): [number, number, number] {
-  const a = 3 * indices[at];
-  const b = 3 * indices[at + 1];
-  const c = 3 * indices[at + 2];
-  const ux = p[b] - p[a];
-  const uy = p[b + 1] - p[a + 1];
-  const uz = p[b + 2] - p[a + 2];
-  const vx = p[c] - p[a];
-  const vy = p[c + 1] - p[a + 1];
-  const vz = p[c + 2] - p[a + 2];
-  return [uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx];
+function mayFold(planes: Float64Array, one: number, other: number): boolean {
+  const cosine =
+    planes[one] * planes[other] +
+    planes[one + 1] * planes[other + 1] +
+    planes[one + 2] * planes[other + 2];
+  // Without a normal nothing can be said.
+  return cosine < -0.995 || cosine === 0;
 }

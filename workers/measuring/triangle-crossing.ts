@@ -6,31 +6,33 @@
  * the rounding of their coordinates. After T. Möller, "A Fast Triangle-Triangle Intersection Test",
  * J. Graphics Tools 2(2), 1997, with signs of volumes in place of intervals.
  * @param p flat xyz; @param a0 … b2 vertex numbers of the two triangles
+ * @param planes four numbers a plane, as `writePlane` writes them; @param pa, pb those of the triangles
  * @param tolerance a length in the unit of `p`
  */
 export function trianglesCross(
   p: Float64Array,
+  planes: Float64Array,
   a0: number,
   a1: number,
   a2: number,
+  pa: number,
   b0: number,
   b1: number,
   b2: number,
+  pb: number,
   tolerance: number,
 ): boolean {
-  planeOf(p, b0, b1, b2);
-  const sa0 = a0 === b0 || a0 === b1 || a0 === b2 ? 0 : sideOfPlane(p, a0, tolerance);
-  const sa1 = a1 === b0 || a1 === b1 || a1 === b2 ? 0 : sideOfPlane(p, a1, tolerance);
-  const sa2 = a2 === b0 || a2 === b1 || a2 === b2 ? 0 : sideOfPlane(p, a2, tolerance);
+  const sa0 = a0 === b0 || a0 === b1 || a0 === b2 ? 0 : sideOf(p, planes, pb, a0, tolerance);
+  const sa1 = a1 === b0 || a1 === b1 || a1 === b2 ? 0 : sideOf(p, planes, pb, a1, tolerance);
+  const sa2 = a2 === b0 || a2 === b1 || a2 === b2 ? 0 : sideOf(p, planes, pb, a2, tolerance);
   if (sa0 === 0 && sa1 === 0 && sa2 === 0)
-    return overlapInPlane(p, a0, a1, a2, b0, b1, b2, tolerance);
+    return overlapInPlane(p, planes, a0, a1, a2, b0, b1, b2, pb, tolerance);
   // All on one side or touching: nothing passes through.
   if (sa0 >= 0 && sa1 >= 0 && sa2 >= 0) return false;
   if (sa0 <= 0 && sa1 <= 0 && sa2 <= 0) return false;
-  planeOf(p, a0, a1, a2);
-  const sb0 = b0 === a0 || b0 === a1 || b0 === a2 ? 0 : sideOfPlane(p, b0, tolerance);
-  const sb1 = b1 === a0 || b1 === a1 || b1 === a2 ? 0 : sideOfPlane(p, b1, tolerance);
-  const sb2 = b2 === a0 || b2 === a1 || b2 === a2 ? 0 : sideOfPlane(p, b2, tolerance);
+  const sb0 = b0 === a0 || b0 === a1 || b0 === a2 ? 0 : sideOf(p, planes, pa, b0, tolerance);
+  const sb1 = b1 === a0 || b1 === a1 || b1 === a2 ? 0 : sideOf(p, planes, pa, b1, tolerance);
+  const sb2 = b2 === a0 || b2 === a1 || b2 === a2 ? 0 : sideOf(p, planes, pa, b2, tolerance);
   if (sb0 >= 0 && sb1 >= 0 && sb2 >= 0) return false;
   if (sb0 <= 0 && sb1 <= 0 && sb2 <= 0) return false;
   return (
@@ -43,10 +45,15 @@ export function trianglesCross(
   );
 }
 
-/** The plane at hand: unit normal and a point. */
-const plane = { nx: 0, ny: 0, nz: 0, x: 0, y: 0, z: 0 };
-
-function planeOf(p: Float64Array, a: number, b: number, c: number): void {
+/** Writes unit normal and offset of a triangle's plane; zeros for a triangle without area. */
+export function writePlane(
+  p: Float64Array,
+  a: number,
+  b: number,
+  c: number,
+  planes: Float64Array,
+  at: number,
+): void {
   const x = p[3 * a];
   const y = p[3 * a + 1];
   const z = p[3 * a + 2];
@@ -61,19 +68,24 @@ function planeOf(p: Float64Array, a: number, b: number, c: number): void {
   const nz = ux * vy - uy * vx;
   const length = Math.sqrt(nx * nx + ny * ny + nz * nz);
   const factor = length > 0 ? 1 / length : 0;
-  plane.nx = nx * factor;
-  plane.ny = ny * factor;
-  plane.nz = nz * factor;
-  plane.x = x;
-  plane.y = y;
-  plane.z = z;
+  planes[at] = nx * factor;
+  planes[at + 1] = ny * factor;
+  planes[at + 2] = nz * factor;
+  planes[at + 3] = factor * (nx * x + ny * y + nz * z);
 }
 
-function sideOfPlane(p: Float64Array, at: number, tolerance: number): number {
+function sideOf(
+  p: Float64Array,
+  planes: Float64Array,
+  plane: number,
+  at: number,
+  tolerance: number,
+): number {
   const distance =
-    plane.nx * (p[3 * at] - plane.x) +
-    plane.ny * (p[3 * at + 1] - plane.y) +
-    plane.nz * (p[3 * at + 2] - plane.z);
+    planes[plane] * p[3 * at] +
+    planes[plane + 1] * p[3 * at + 1] +
+    planes[plane + 2] * p[3 * at + 2] -
+    planes[plane + 3];
   return distance > tolerance ? 1 : distance < -tolerance ? -1 : 0;
 }
 
@@ -136,15 +148,17 @@ const flat = new Float64Array(12);
 /** Whether two triangles of one plane share area, by the separating lines along their sides. */
 function overlapInPlane(
   p: Float64Array,
+  planes: Float64Array,
   a0: number,
   a1: number,
   a2: number,
   b0: number,
   b1: number,
   b2: number,
+  plane: number,
   tolerance: number,
 ): boolean {
-  const drop = largestNormalAxis();
+  const drop = largestNormalAxis(planes, plane);
   const u = (drop + 1) % 3;
   const v = (drop + 2) % 3;
   const corners = [a0, a1, a2, b0, b1, b2];
@@ -180,10 +194,10 @@ function offLine(a: number, b: number, c: number, tolerance: number): number {
   return Math.abs(off) > tolerance ? off : 0;
 }
 
-function largestNormalAxis(): number {
-  const x = Math.abs(plane.nx);
-  const y = Math.abs(plane.ny);
-  const z = Math.abs(plane.nz);
+function largestNormalAxis(planes: Float64Array, plane: number): number {
+  const x = Math.abs(planes[plane]);
+  const y = Math.abs(planes[plane + 1]);
+  const z = Math.abs(planes[plane + 2]);
   if (x >= y && x >= z) return 0;
   return y >= z ? 1 : 2;
 }

@@ -1,9 +1,10 @@
 import type { MeshBVH } from 'three-mesh-bvh';
-import { mateEdges } from '../../shared/geometry/mesh/edge-mates.js';
+import { matesOf } from '../../shared/geometry/mesh/edge-mates.js';
 import { dropUnusedVertices } from '../../shared/geometry/mesh/compact.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { Deviation } from '../../shared/jobs/model-inspect.js';
 import { surfaceDeviation } from '../measuring/surface-deviation.js';
+import { mendTopology } from '../mending/mend-topology.js';
 import { buildBvh } from '../measuring/triangle-bvh.js';
 import { simplifyForView } from './simplify-for-view.js';
 
@@ -25,17 +26,19 @@ export interface Proxy {
  */
 export async function makeProxy(mesh: TriangleMesh, bvh: MeshBVH | null): Promise<Proxy> {
   if (mesh.indices.length / 3 <= mostTriangles) {
-    const isClosed = mateEdges(mesh.indices).closed;
+    const isClosed = matesOf(mesh).closed;
     return { mesh, isClosed, deviation: { mean: 0, p95: 0, max: 0, samples } };
   }
   const view = await simplifyForView(mesh, mostTriangles);
-  const proxy = dropUnusedVertices({
+  const simple = dropUnusedVertices({
     positions: new Float64Array(view.positions),
     indices: view.indices.slice(),
   });
+  // The simplifier folds a few triangles onto each other now and then.
+  const proxy = matesOf(simple).closed ? simple : mendTopology(simple).mesh;
   return {
     mesh: proxy,
-    isClosed: mateEdges(proxy.indices).closed,
+    isClosed: matesOf(proxy).closed,
     deviation: bvh && largerDeviation(mesh, bvh, proxy),
   };
 }
