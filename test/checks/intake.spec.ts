@@ -2,6 +2,9 @@ import { existsSync, readdirSync, readFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { describe, expect, it } from 'vitest';
 import { type Inspection, inspectFile } from '../../workers/inspecting/inspect-file.js';
+import { readModel } from '../../workers/intake/model-reader.js';
+import { findCrossings } from '../../workers/measuring/find-crossings.js';
+import { buildBvh } from '../../workers/measuring/triangle-bvh.js';
 import { JobRefusal } from '../../workers/runtime/job-refusal.js';
 import { loadSolids } from '../../workers/solids/solid-kernel.js';
 
@@ -100,6 +103,11 @@ describe.skipIf(!isThere)(
       expect(report.plannable).toBe(false);
       expect(report.refusal).toBeNull();
       expect(report.asks[0]!.sentence).toMatch(asked[name]!);
+    });
+
+    it('counts the crossing pairs of the bones that the index counts', () => {
+      const { mesh } = readModel(new Uint8Array(readFileSync(`${folder}/o20_bones.stl`)), 'bones');
+      expect(findCrossings(mesh, buildBvh(mesh))).toMatchObject({ pairs: 366, complete: true });
     });
 
     const solid = names.filter(

@@ -1,8 +1,8 @@
-import { Matrix4 } from 'three';
 import type { MeshBVH } from 'three-mesh-bvh';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type JobContext, silentContext } from '../runtime/job-context.js';
+import { boxesTouch, TreePairs } from './tree-pairs.js';
 import { trianglesCross, writePlane } from './triangle-crossing.js';
 
 export interface FoundCrossings {
@@ -57,30 +57,51 @@ export function findCrossings(
     pairs++;
     if (pairs <= mostPairs) found.push(order[i], order[j]);
   };
-  bvh.bvhcast(bvh, new Matrix4(), {
-    intersectsRanges: (from1: number, count1: number, from2: number, count2: number): boolean => {
-      // Every pair of leaves is met both ways round.
-      if (from2 < from1) return false;
-      if ((++visits & (reportEvery - 1)) === 0)
-        context.progress('Looking for crossings', Math.min(0.99, visits / count));
+  const tree = new TreePairs(bvh, count);
+  const nodes = tree.boxes;
+  let nearby = new Uint32Array(64);
+  tree.visit((from1, count1, box1, from2, count2, box2) => {
+    if ((++visits & (reportEvery - 1)) === 0)
+      context.progress('Looking for crossings', Math.min(0.99, visits / count));
+    if (from1 === from2) {
       for (let i = from1; i < from1 + count1; i++)
-        for (let j = from1 === from2 ? i + 1 : from2; j < from2 + count2; j++)
-          if (boxesTouch(boxes, 6 * i, 6 * j)) {
+        for (let j = i + 1; j < from1 + count1; j++)
+          if (boxesTouch(boxes, 6 * i, boxes, 6 * j)) {
             tests++;
             compare(i, j);
           }
       return tests > mostTests;
-    },
-  } as never);
+    }
+    // Of two leaves side by side only the triangles at their border can meet.
+    if (count2 > nearby.length) nearby = new Uint32Array(2 * count2);
+    let near = 0;
+    for (let j = from2; j < from2 + count2; j++)
+      if (boxesTouch(boxes, 6 * j, nodes, box1)) nearby[near++] = j;
+    if (near === 0) return false;
+    for (let i = from1; i < from1 + count1; i++) {
+      if (!boxesTouch(boxes, 6 * i, nodes, box2)) continue;
+      for (let k = 0; k < near; k++) {
+        const j = nearby[k];
+        if (!boxesTouch(boxes, 6 * i, boxes, 6 * j)) continue;
+        tests++;
+        compare(i, j);
+      }
+    }
+    return tests > mostTests;
+  });
   return { pairs, complete: tests <= mostTests, triangles: Uint32Array.from(found) };
 }
 
-/** Everything that is asked of a triangle, in the order of the tree's leaves: neighbours lie close. */
-function inTreeOrder({ positions, indices }: TriangleMesh, bvh: MeshBVH) {
+/**
+ * Everything that is asked of a triangle, in the order of the tree's leaves: neighbours lie close.
+ * Rounding keeps the order of numbers, so boxes that touch still do in single precision.
+ */
+function inTreeOrder({ positions: p, indices }: TriangleMesh, bvh: MeshBVH) {
   const count = indices.length / 3;
   const order = new Uint32Array(count);
   const corners = new Uint32Array(3 * count);
   const planes = new Float64Array(4 * count);
+  const boxes = new Float32Array(6 * count);
   for (let i = 0; i < count; i++) {
     const triangle = bvh.resolveTriangleIndex(i);
     order[i] = triangle;
@@ -90,39 +111,16 @@ function inTreeOrder({ positions, indices }: TriangleMesh, bvh: MeshBVH) {
     corners[3 * i] = a;
     corners[3 * i + 1] = b;
     corners[3 * i + 2] = c;
-    writePlane(positions, a, b, c, planes, 4 * i);
-  }
-  return { order, corners, planes, boxes: boxesOf(positions, corners) };
-}
-
-/** Least and greatest xyz of each triangle. Rounding keeps the order of numbers, so that boxes that
- *  touch still do in single precision. */
-function boxesOf(positions: Float64Array, corners: Uint32Array): Float32Array {
-  const boxes = new Float32Array(2 * corners.length);
-  for (let i = 0; i < corners.length / 3; i++) {
-    const a = 3 * corners[3 * i];
-    const b = 3 * corners[3 * i + 1];
-    const c = 3 * corners[3 * i + 2];
+    writePlane(p, a, b, c, planes, 4 * i);
     for (let axis = 0; axis < 3; axis++) {
-      const x = positions[a + axis];
-      const y = positions[b + axis];
-      const z = positions[c + axis];
+      const x = p[3 * a + axis];
+      const y = p[3 * b + axis];
+      const z = p[3 * c + axis];
       boxes[6 * i + axis] = x < y ? (x < z ? x : z) : y < z ? y : z;
       boxes[6 * i + 3 + axis] = x > y ? (x > z ? x : z) : y > z ? y : z;
     }
   }
-  return boxes;
-}
-
-function boxesTouch(boxes: Float32Array, i: number, j: number): boolean {
-  return (
-    boxes[i] <= boxes[j + 3] &&
-    boxes[j] <= boxes[i + 3] &&
-    boxes[i + 1] <= boxes[j + 4] &&
-    boxes[j + 1] <= boxes[i + 4] &&
-    boxes[i + 2] <= boxes[j + 5] &&
-    boxes[j + 2] <= boxes[i + 5]
-  );
+  return { order, corners, planes, boxes };
 }
 
 /** Triangles with a common side can only cross by lying on each other: their normals are opposed. */
