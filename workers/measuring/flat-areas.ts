@@ -1,6 +1,7 @@
 import { matesOf } from '../../shared/geometry/mesh/edge-mates.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { FlatArea } from '../../shared/jobs/model-inspect.js';
+import { sampleSurface } from './surface-samples.js';
 
 const mostFlats = 12;
 /** A flat area has at least this share of the surface. */
@@ -17,6 +18,7 @@ const binSine = 0.02;
  * surface or more, the largest first. Lengths in the mesh's unit. O(triangles).
  */
 export function findFlats(mesh: TriangleMesh, diagonal: number): FlatArea[] {
+  if (!mayHaveFlats(mesh)) return [];
   const { normals, areas, total } = facetPlanes(mesh);
   const candidates = candidateFacets(normals, areas, total);
   if (candidates.length === 0) return [];
@@ -51,6 +53,50 @@ export function findFlats(mesh: TriangleMesh, diagonal: number): FlatArea[] {
     });
   }
   return flats.sort((a, b) => b.area - a.area).slice(0, mostFlats);
+}
+
+/** Samples of the surface: on a flat area of the least size there are this many. */
+const samplesAFlat = 80;
+
+/**
+ * A quick look before all facets are gone through: on every flat area some samples have one direction.
+ * A plane may straddle eight bins, and half as many samples as expected is far off chance.
+ */
+function mayHaveFlats(mesh: TriangleMesh): boolean {
+  const { count, triangles } = sampleSurface(mesh, samplesAFlat / leastShare);
+  const bins = new Map<string, number>();
+  const normal = new Float64Array(3);
+  for (let i = 0; i < count; i++) {
+    writeFacetNormal(mesh, triangles[i], normal);
+    const key = normal.map((value) => Math.floor((value + 1) / binSine)).join();
+    const found = (bins.get(key) ?? 0) + 1;
+    if (found >= samplesAFlat / 16) return true;
+    bins.set(key, found);
+  }
+  return false;
+}
+
+function writeFacetNormal(
+  { positions: p, indices }: TriangleMesh,
+  facet: number,
+  to: Float64Array,
+) {
+  const a = 3 * indices[3 * facet];
+  const b = 3 * indices[3 * facet + 1];
+  const c = 3 * indices[3 * facet + 2];
+  const ux = p[b] - p[a];
+  const uy = p[b + 1] - p[a + 1];
+  const uz = p[b + 2] - p[a + 2];
+  const vx = p[c] - p[a];
+  const vy = p[c + 1] - p[a + 1];
+  const vz = p[c + 2] - p[a + 2];
+  const x = uy * vz - uz * vy;
+  const y = uz * vx - ux * vz;
+  const z = ux * vy - uy * vx;
+  const length = Math.sqrt(x * x + y * y + z * z) || 1;
+  to[0] = x / length;
+  to[1] = y / length;
+  to[2] = z / length;
 }
 
 function facetPlanes({ positions: p, indices }: TriangleMesh) {

@@ -22,12 +22,8 @@ const secondShare = 0.5698402909980532;
 export function sampleSurface(mesh: TriangleMesh, wanted: number): SurfaceSamples {
   const { positions, indices } = mesh;
   const triangleCount = indices.length / 3;
-  const reached = new Float64Array(triangleCount);
-  let sum = 0;
-  for (let triangle = 0; triangle < triangleCount; triangle++) {
-    sum += triangleArea(positions, indices, 3 * triangle);
-    reached[triangle] = sum;
-  }
+  const reached = areasReached(mesh);
+  const sum = triangleCount > 0 ? reached[triangleCount - 1] : 0;
   const count = sum > 0 && Number.isFinite(sum) ? wanted : 0;
   const points = new Float64Array(3 * count);
   const triangles = new Uint32Array(count);
@@ -54,6 +50,22 @@ export function sampleSurface(mesh: TriangleMesh, wanted: number): SurfaceSample
   return { count, points, triangles };
 }
 
+const known = new WeakMap<TriangleMesh, Float64Array>();
+
+/** Area of the triangles up to each one; kept as long as the mesh, which nobody changes any more. */
+function areasReached(mesh: TriangleMesh): Float64Array {
+  const before = known.get(mesh);
+  if (before) return before;
+  const reached = new Float64Array(mesh.indices.length / 3);
+  let sum = 0;
+  for (let triangle = 0; triangle < reached.length; triangle++) {
+    sum += triangleArea(mesh.positions, mesh.indices, 3 * triangle);
+    reached[triangle] = sum;
+  }
+  known.set(mesh, reached);
+  return reached;
+}
+
 function triangleArea(positions: Float64Array, indices: Uint32Array, at: number): number {
   const a = 3 * indices[at];
   const b = 3 * indices[at + 1];
@@ -64,5 +76,8 @@ function triangleArea(positions: Float64Array, indices: Uint32Array, at: number)
   const vx = positions[c] - positions[a];
   const vy = positions[c + 1] - positions[a + 1];
   const vz = positions[c + 2] - positions[a + 2];
-  return Math.hypot(uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx) / 2;
+  const nx = uy * vz - uz * vy;
+  const ny = uz * vx - ux * vz;
+  const nz = ux * vy - uy * vx;
+  return Math.sqrt(nx * nx + ny * ny + nz * nz) / 2;
 }

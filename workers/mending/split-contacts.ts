@@ -152,6 +152,9 @@ export function separateFans(
 ): { mesh: TriangleMesh; split: number[] } {
   const fanOf = findFans(indices, mates);
   const vertices = positions.length / 3;
+  // As many fans as vertices in use: none has two.
+  if (countFans(fanOf) === countUsed(indices, vertices))
+    return { mesh: { positions, indices }, split: [] };
   const isOpen = new Uint8Array(indices.length);
   for (let side = 0; side < mates.length; side++) {
     if (mates[side] >= 0) continue;
@@ -187,6 +190,23 @@ export function separateFans(
     moved.set(positions.subarray(3 * vertex, 3 * vertex + 3), positions.length + 3 * i),
   );
   return { mesh: { positions: moved, indices: separated }, split: [...split] };
+}
+
+function countFans(fanOf: Int32Array): number {
+  let fans = 0;
+  for (let corner = 0; corner < fanOf.length; corner++) if (fanOf[corner] === corner) fans++;
+  return fans;
+}
+
+function countUsed(indices: Uint32Array, vertices: number): number {
+  const isUsed = new Uint8Array(vertices);
+  let used = 0;
+  for (let i = 0; i < indices.length; i++) {
+    if (isUsed[indices[i]] === 1) continue;
+    isUsed[indices[i]] = 1;
+    used++;
+  }
+  return used;
 }
 
 /** For every corner the first corner of its fan: of those joined by mated sides round one vertex. */

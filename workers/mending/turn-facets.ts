@@ -165,5 +165,8 @@ function twofoldArea(positions: Float64Array, indices: Uint32Array, at: number):
   const vx = positions[c] - positions[a];
   const vy = positions[c + 1] - positions[a + 1];
   const vz = positions[c + 2] - positions[a + 2];
-  return Math.hypot(uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx);
+  const nx = uy * vz - uz * vy;
+  const ny = uz * vx - ux * vz;
+  const nz = ux * vy - uy * vx;
+  return Math.sqrt(nx * nx + ny * ny + nz * nz);
 }
