@@ -60,7 +60,7 @@ const samplesAFlat = 80;
 
 /**
  * A quick look before all facets are gone through: on every flat area some samples have one direction.
- * A plane may straddle eight bins, and half as many samples as expected is far off chance.
+ * A plane may straddle eight bins, which leaves the fullest of them more than this.
  */
 function mayHaveFlats(mesh: TriangleMesh): boolean {
   const { count, triangles } = sampleSurface(mesh, samplesAFlat / leastShare);
@@ -70,7 +70,7 @@ function mayHaveFlats(mesh: TriangleMesh): boolean {
     writeFacetNormal(mesh, triangles[i], normal);
     const key = normal.map((value) => Math.floor((value + 1) / binSine)).join();
     const found = (bins.get(key) ?? 0) + 1;
-    if (found >= samplesAFlat / 16) return true;
+    if (found >= samplesAFlat / 10) return true;
     bins.set(key, found);
   }
   return false;

@@ -68,6 +68,7 @@ function shortestEdge({ positions, indices }: TriangleMesh): number {
 
 /** Longest side of the box of the smallest shell. */
 function smallestShell({ positions, indices }: TriangleMesh, { labels, count }: Shells): number {
+  if (count === 1) return Math.max(...boundingBox(positions).size);
   const boxes = new Float64Array(6 * count);
   for (let shell = 0; shell < count; shell++)
     boxes.fill(Infinity, 6 * shell, 6 * shell + 3).fill(-Infinity, 6 * shell + 3, 6 * shell + 6);
