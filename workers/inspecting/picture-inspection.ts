@@ -1,4 +1,5 @@
 import type { MeshBVH } from 'three-mesh-bvh';
+import { facetNormal } from '../../shared/geometry/mesh/facet-normal.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { MeshReport } from '../../shared/jobs/model-inspect.js';
 import { wallsAt } from '../measuring/wall-thickness.js';
@@ -65,27 +66,10 @@ function wallsOfVertices(mesh: TriangleMesh, bvh: MeshBVH): Float32Array {
   const normals = new Float64Array(3 * facets);
   const areas = new Float64Array(facets);
   for (let facet = 0; facet < facets; facet++) {
-    const a = 3 * indices[3 * facet];
-    const b = 3 * indices[3 * facet + 1];
-    const c = 3 * indices[3 * facet + 2];
-    const ux = positions[b] - positions[a];
-    const uy = positions[b + 1] - positions[a + 1];
-    const uz = positions[b + 2] - positions[a + 2];
-    const vx = positions[c] - positions[a];
-    const vy = positions[c + 1] - positions[a + 1];
-    const vz = positions[c + 2] - positions[a + 2];
-    const nx = uy * vz - uz * vy;
-    const ny = uz * vx - ux * vz;
-    const nz = ux * vy - uy * vx;
-    const length = Math.hypot(nx, ny, nz);
-    areas[facet] = length;
-    const to = 3 * facet;
-    for (let axis = 0; axis < 3; axis++)
-      points[to + axis] = (positions[a + axis] + positions[b + axis] + positions[c + axis]) / 3;
-    if (length === 0) continue;
-    normals[to] = nx / length;
-    normals[to + 1] = ny / length;
-    normals[to + 2] = nz / length;
+    areas[facet] = facetNormal(positions, indices, 3 * facet, normals, 3 * facet);
+    for (let corner = 0; corner < 3; corner++)
+      for (let axis = 0; axis < 3; axis++)
+        points[3 * facet + axis] += positions[3 * indices[3 * facet + corner] + axis] / 3;
   }
   // Vertices have about six facets: of very many not all have to be measured.
   const stride = Math.ceil(facets / mostRays);

@@ -1,3 +1,4 @@
+import { facetNormal } from '../../shared/geometry/mesh/facet-normal.js';
 import { matesOf } from '../../shared/geometry/mesh/edge-mates.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { FlatArea } from '../../shared/jobs/model-inspect.js';
@@ -67,7 +68,7 @@ function mayHaveFlats(mesh: TriangleMesh): boolean {
   const bins = new Map<string, number>();
   const normal = new Float64Array(3);
   for (let i = 0; i < count; i++) {
-    writeFacetNormal(mesh, triangles[i], normal);
+    facetNormal(mesh.positions, mesh.indices, 3 * triangles[i], normal, 0);
     const key = normal.map((value) => Math.floor((value + 1) / binSine)).join();
     const found = (bins.get(key) ?? 0) + 1;
     if (found >= samplesAFlat / 10) return true;
@@ -76,54 +77,14 @@ function mayHaveFlats(mesh: TriangleMesh): boolean {
   return false;
 }
 
-function writeFacetNormal(
-  { positions: p, indices }: TriangleMesh,
-  facet: number,
-  to: Float64Array,
-) {
-  const a = 3 * indices[3 * facet];
-  const b = 3 * indices[3 * facet + 1];
-  const c = 3 * indices[3 * facet + 2];
-  const ux = p[b] - p[a];
-  const uy = p[b + 1] - p[a + 1];
-  const uz = p[b + 2] - p[a + 2];
-  const vx = p[c] - p[a];
-  const vy = p[c + 1] - p[a + 1];
-  const vz = p[c + 2] - p[a + 2];
-  const x = uy * vz - uz * vy;
-  const y = uz * vx - ux * vz;
-  const z = ux * vy - uy * vx;
-  const length = Math.sqrt(x * x + y * y + z * z) || 1;
-  to[0] = x / length;
-  to[1] = y / length;
-  to[2] = z / length;
-}
-
-function facetPlanes({ positions: p, indices }: TriangleMesh) {
+function facetPlanes({ positions, indices }: TriangleMesh) {
   const triangles = indices.length / 3;
   const normals = new Float64Array(3 * triangles);
   const areas = new Float64Array(triangles);
   let total = 0;
   for (let triangle = 0; triangle < triangles; triangle++) {
-    const a = 3 * indices[3 * triangle];
-    const b = 3 * indices[3 * triangle + 1];
-    const c = 3 * indices[3 * triangle + 2];
-    const ux = p[b] - p[a];
-    const uy = p[b + 1] - p[a + 1];
-    const uz = p[b + 2] - p[a + 2];
-    const vx = p[c] - p[a];
-    const vy = p[c + 1] - p[a + 1];
-    const vz = p[c + 2] - p[a + 2];
-    const x = uy * vz - uz * vy;
-    const y = uz * vx - ux * vz;
-    const z = ux * vy - uy * vx;
-    const length = Math.sqrt(x * x + y * y + z * z);
-    if (length === 0) continue;
-    areas[triangle] = length / 2;
-    total += length / 2;
-    normals[3 * triangle] = x / length;
-    normals[3 * triangle + 1] = y / length;
-    normals[3 * triangle + 2] = z / length;
+    areas[triangle] = facetNormal(positions, indices, 3 * triangle, normals, 3 * triangle);
+    total += areas[triangle];
   }
   return { normals, areas, total };
 }

@@ -1,3 +1,4 @@
+import { facetArea } from '../../shared/geometry/mesh/facet-normal.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 
 /** Points spread evenly by area over a surface. */
@@ -59,25 +60,9 @@ function areasReached(mesh: TriangleMesh): Float64Array {
   const reached = new Float64Array(mesh.indices.length / 3);
   let sum = 0;
   for (let triangle = 0; triangle < reached.length; triangle++) {
-    sum += triangleArea(mesh.positions, mesh.indices, 3 * triangle);
+    sum += facetArea(mesh.positions, mesh.indices, 3 * triangle);
     reached[triangle] = sum;
   }
   known.set(mesh, reached);
   return reached;
-}
-
-function triangleArea(positions: Float64Array, indices: Uint32Array, at: number): number {
-  const a = 3 * indices[at];
-  const b = 3 * indices[at + 1];
-  const c = 3 * indices[at + 2];
-  const ux = positions[b] - positions[a];
-  const uy = positions[b + 1] - positions[a + 1];
-  const uz = positions[b + 2] - positions[a + 2];
-  const vx = positions[c] - positions[a];
-  const vy = positions[c + 1] - positions[a + 1];
-  const vz = positions[c + 2] - positions[a + 2];
-  const nx = uy * vz - uz * vy;
-  const ny = uz * vx - ux * vz;
-  const nz = ux * vy - uy * vx;
-  return Math.sqrt(nx * nx + ny * ny + nz * nz) / 2;
 }

@@ -1,5 +1,6 @@
 import { BackSide, Ray } from 'three';
 import type { MeshBVH } from 'three-mesh-bvh';
+import { facetNormal } from '../../shared/geometry/mesh/facet-normal.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { WallReport } from '../../shared/jobs/model-inspect.js';
 import { type JobContext, silentContext } from '../runtime/job-context.js';
@@ -38,7 +39,8 @@ export function measureWalls(
 ): MeasuredWalls | null {
   const { count, points, triangles } = sampleSurface(mesh, samples);
   const normals = new Float64Array(3 * count);
-  for (let i = 0; i < count; i++) writeNormal(mesh, triangles[i], normals, 3 * i);
+  for (let i = 0; i < count; i++)
+    facetNormal(mesh.positions, mesh.indices, 3 * triangles[i], normals, 3 * i);
   const all = wallsAt(points, normals, bvh, context);
   const met: number[] = [];
   for (let i = 0; i < count; i++) if (all[i] > 0) met.push(i);
@@ -102,28 +104,4 @@ function roundUp(value: number): number {
     (one) => one * power >= value * 0.9999,
   );
   return (step ?? 10) * power;
-}
-
-function writeNormal(
-  { positions: p, indices }: TriangleMesh,
-  triangle: number,
-  target: Float64Array,
-  to: number,
-): void {
-  const a = 3 * indices[3 * triangle];
-  const b = 3 * indices[3 * triangle + 1];
-  const c = 3 * indices[3 * triangle + 2];
-  const ux = p[b] - p[a];
-  const uy = p[b + 1] - p[a + 1];
-  const uz = p[b + 2] - p[a + 2];
-  const vx = p[c] - p[a];
-  const vy = p[c + 1] - p[a + 1];
-  const vz = p[c + 2] - p[a + 2];
-  const x = uy * vz - uz * vy;
-  const y = uz * vx - ux * vz;
-  const z = ux * vy - uy * vx;
-  const length = Math.sqrt(x * x + y * y + z * z) || 1;
-  target[to] = x / length;
-  target[to + 1] = y / length;
-  target[to + 2] = z / length;
 }

@@ -1,3 +1,5 @@
+import type { Vector3 } from '../../shared/geometry/vectors/plane.js';
+import { cross, dot } from '../../shared/geometry/vectors/vector3.js';
 import { nextSide } from '../../shared/geometry/mesh/edge-mates.js';
 
 interface Wing {
@@ -78,31 +80,21 @@ function wingOf(
   return { side, angle: Math.atan2(dot(d, y), dot(d, x)), isForward: from < to };
 }
 
-type Vector = readonly [number, number, number];
-
 function apex(indices: Uint32Array, side: number): number {
   return indices[nextSide(nextSide(side))];
 }
 
-function minus(positions: Float64Array, a: number, b: number): Vector {
-  return [0, 1, 2].map((k) => positions[3 * a + k] - positions[3 * b + k]) as unknown as Vector;
+function minus(positions: Float64Array, a: number, b: number): Vector3 {
+  return [0, 1, 2].map((k) => positions[3 * a + k] - positions[3 * b + k]) as unknown as Vector3;
 }
 
-function across(v: Vector, axis: Vector): Vector {
+function across(v: Vector3, axis: Vector3): Vector3 {
   const along = dot(v, axis);
   return [v[0] - along * axis[0], v[1] - along * axis[1], v[2] - along * axis[2]];
 }
 
-function dot(a: Vector, b: Vector): number {
-  return a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
-}
-
-function cross(a: Vector, b: Vector): Vector {
-  return [a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]];
-}
-
 /** Of length 1; a vector without length stays. */
-function unit(v: Vector): Vector {
+function unit(v: Vector3): Vector3 {
   const length = Math.hypot(...v) || 1;
   return [v[0] / length, v[1] / length, v[2] / length];
 }

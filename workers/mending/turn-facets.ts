@@ -1,4 +1,5 @@
 import { mateEdges, OPEN } from '../../shared/geometry/mesh/edge-mates.js';
+import { facetArea } from '../../shared/geometry/mesh/facet-normal.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 
 export interface TurnedFacets {
@@ -57,7 +58,7 @@ function agree({ positions, indices }: TriangleMesh, mates: Int32Array) {
     queue[end++] = first;
     for (let at = 0; at < end; at++) {
       const triangle = queue[at];
-      const area = twofoldArea(positions, indices, 3 * triangle);
+      const area = facetArea(positions, indices, 3 * triangle);
       if (isTurned[triangle] === 1) turned += area;
       else kept += area;
       for (let side = 3 * triangle; side < 3 * triangle + 3; side++) {
@@ -113,7 +114,7 @@ export function turnOpenSurfaces(
     const surface = surfaces.labels[triangle];
     const count = rims[4 * surface + 3];
     if (count === 0) continue;
-    areas[surface] += twofoldArea(positions, indices, 3 * triangle) / 2;
+    areas[surface] += facetArea(positions, indices, 3 * triangle);
     // Seen from the rims' middle the fans add nothing.
     volumes[surface] += sixfoldVolume(positions, indices, 3 * triangle, [
       rims[4 * surface] / count,
@@ -153,20 +154,4 @@ function sixfoldVolume(
     (positions[a + 1] - oy) * (bz * cx - bx * cz) +
     (positions[a + 2] - oz) * (bx * cy - by * cx)
   );
-}
-
-function twofoldArea(positions: Float64Array, indices: Uint32Array, at: number): number {
-  const a = 3 * indices[at];
-  const b = 3 * indices[at + 1];
-  const c = 3 * indices[at + 2];
-  const ux = positions[b] - positions[a];
-  const uy = positions[b + 1] - positions[a + 1];
-  const uz = positions[b + 2] - positions[a + 2];
-  const vx = positions[c] - positions[a];
-  const vy = positions[c + 1] - positions[a + 1];
-  const vz = positions[c + 2] - positions[a + 2];
-  const nx = uy * vz - uz * vy;
-  const ny = uz * vx - ux * vz;
-  const nz = ux * vy - uy * vx;
-  return Math.sqrt(nx * nx + ny * ny + nz * nz);
 }
