@@ -19,6 +19,8 @@ const runs = 20_000;
 /** Of those that can be read, every so many goes through the whole inspection. */
 const inspectedEvery = 60;
 const slowestMs = 2_000;
+/** Of the whole process, which holds the solid kernel and what the tests before left. */
+const mostMemoryBytes = 1.5e9;
 
 const cube = box([0, 0, 0], [20, 20, 20]).mesh;
 const ball = sphere(20, 10, 5).mesh;
@@ -112,6 +114,7 @@ describe('mutated files', () => {
       expect(read).toBeGreaterThan(runs / 100);
       expect(read).toBeLessThan(runs);
       expect(slowest).toBeLessThan(slowestMs);
+      expect(process.memoryUsage().rss).toBeLessThan(mostMemoryBytes);
     },
     120_000,
   );

@@ -25,6 +25,7 @@ async function readBack(content: ViewContent) {
         moved: node.getTranslation().some((value) => value !== 0),
         mode: primitive.getMode(),
         positions: primitive.getAttribute('POSITION')!.getArray() as Float32Array,
+        walls: (primitive.getAttribute('_WALL')?.getArray() ?? null) as Float32Array | null,
         triangles: (primitive.getIndices()?.getCount() ?? 0) / 3,
       };
     });
@@ -50,6 +51,22 @@ describe('the view file', () => {
     expect(boundingBox(nodes[0].positions)).toMatchObject({ min: [0, 0, 0], max: [10, 20, 30] });
     expect(boundingBox(nodes[1].positions)).toMatchObject({ min: [-5, 7, 1], max: [0, 9, 3] });
     expect(nodes[2].positions).toEqual(seam);
+  });
+
+  it('keeps a number a vertex, whatever the order in which vertices are written', async () => {
+    const ball = sphere(100, 40, 20).mesh;
+    // A number that can be worked out from where the vertex is.
+    const values = Float32Array.from({ length: ball.positions.length / 3 }, (_, vertex) =>
+      Math.fround(ball.positions[3 * vertex + 2] + 200),
+    );
+    const { nodes } = await readBack({
+      meshes: [{ name: 'model', mesh: ball, scalars: { name: 'WALL', values } }],
+      triangleBudget: Infinity,
+    });
+    const { positions, walls } = nodes[0];
+    expect(walls!.length).toBe(positions.length / 3);
+    for (let vertex = 0; vertex < walls!.length; vertex++)
+      expect(Math.abs(walls![vertex] - positions[3 * vertex + 2] - 200)).toBeLessThan(0.01);
   });
 
   it('meets its budget and stays near the surface', async () => {
