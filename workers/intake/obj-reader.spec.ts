@@ -112,11 +112,18 @@ describe('reading an OBJ file', () => {
     const sides = outline.map(
       (_, i) => `f ${i + 1} ${((i + 1) % 6) + 1} ${((i + 1) % 6) + 7} ${i + 7}`,
     );
-    const { mesh } = read([...vertices, 'f 6 5 4 3 2 1', 'f 7 8 9 10 11 12', ...sides].join('\n'));
-    expect(mesh.indices.length / 3).toBe(2 * 4 + 6 * 2);
-    expect(edgeReport(mesh).closed).toBe(true);
-    expect(signedVolume(mesh)).toBeCloseTo(3, 12);
-    expect(surfaceArea(mesh)).toBeCloseTo(2 * 3 + 8, 12);
+    const faces = ['f 6 5 4 3 2 1', 'f 7 8 9 10 11 12', ...sides];
+    // Also when the faces stand before their vertices.
+    for (const lines of [
+      [...vertices, ...faces],
+      [...faces, ...vertices],
+    ]) {
+      const { mesh } = read(lines.join('\n'));
+      expect(mesh.indices.length / 3).toBe(2 * 4 + 6 * 2);
+      expect(edgeReport(mesh).closed).toBe(true);
+      expect(signedVolume(mesh)).toBeCloseTo(3, 12);
+      expect(surfaceArea(mesh)).toBeCloseTo(2 * 3 + 8, 12);
+    }
   });
 
   it('offers its objects as parts, or its groups, and takes the chosen ones', () => {

@@ -92,6 +92,8 @@ class ObjReader {
   private readonly parts: Part[] = [];
   private readonly corners: number[] = [];
   private readonly named = { object: '', group: '' };
+  /** Polygons that came before their vertices. */
+  private readonly early: { readonly at: number; readonly corners: readonly number[] }[] = [];
   private curves = 0;
   /** The largest vertex named so far, from 0, and the byte at which it was. */
   private farthest = { vertex: -1, at: 0 };
@@ -124,6 +126,7 @@ class ObjReader {
         `names vertex ${spelledCount(this.farthest.vertex + 1)}, but holds only ${spelledCount(vertices)}`,
       );
     }
+    this.cutEarlyPolygons();
     onProgress(1);
     return {
       positions: positions.view().slice(),
@@ -131,6 +134,17 @@ class ObjReader {
       parts: this.parts,
       curves: this.curves,
     };
+  }
+
+  private cutEarlyPolygons(): void {
+    const indices = this.indices.view();
+    for (const { at, corners } of this.early) {
+      let to = at;
+      triangulatePolygon(this.positions.view(), corners, (a, b, c) => {
+        indices.set([a, b, c], to);
+        to += 3;
+      });
+    }
   }
 
   /** One statement, to the end of its line. */
@@ -188,6 +202,8 @@ class ObjReader {
       this.indices.push(c);
     };
     if (different.some((corner) => corner >= known)) {
+      // Where its vertices lie is not known yet: room is made now, the cuts are chosen at the end.
+      if (different.length > 3) this.early.push({ at: this.indices.length, corners: different });
       for (let i = 2; i < different.length; i++) push(different[0], different[i - 1], different[i]);
       return;
     }
