@@ -24,11 +24,6 @@ export class FacetWelder {
     this.indices = new Uint32Array(3 * facets);
   }
 
-  /** Facets taken so far, those left out included. */
-  get taken(): number {
-    return this.facets;
-  }
-
   /** @param words nine words a facet; @param count facets to take from the start */
   take(words: Int32Array, count: number): void {
     this.reserve(count);

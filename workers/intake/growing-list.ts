@@ -16,10 +16,6 @@ export class GrowingList<A extends Float64Array | Uint32Array | Int32Array> {
     this.items[this.length++] = value;
   }
 
-  get(index: number): number {
-    return this.items[index];
-  }
-
   /** The numbers so far; shares its memory with the list. */
   view(): A {
     return this.items.subarray(0, this.length) as A;

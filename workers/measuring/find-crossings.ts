@@ -111,7 +111,7 @@ function inTreeOrder({ positions: p, indices }: TriangleMesh, bvh: MeshBVH) {
     corners[3 * i] = a;
     corners[3 * i + 1] = b;
     corners[3 * i + 2] = c;
-    writePlane(p, a, b, c, planes, 4 * i);
+    writePlane(p, corners, 3 * i, planes, 4 * i);
     for (let axis = 0; axis < 3; axis++) {
       const x = p[3 * a + axis];
       const y = p[3 * b + axis];

@@ -1,3 +1,5 @@
+import { facetNormal } from '../../shared/geometry/mesh/facet-normal.js';
+
 /**
  * Whether two triangles of a mesh run into each other: an edge of one passes through the other or its
  * border, or both lie in one plane and share area. Touching is no crossing, neither of neighbours in
@@ -45,33 +47,21 @@ export function trianglesCross(
   );
 }
 
-/** Writes unit normal and offset of a triangle's plane; zeros for a triangle without area. */
+/**
+ * Writes unit normal and offset of a triangle's plane; zeros for a triangle without area.
+ * @param corners vertices; @param at where the triangle's three stand; @param to where its four go
+ */
 export function writePlane(
   p: Float64Array,
-  a: number,
-  b: number,
-  c: number,
-  planes: Float64Array,
+  corners: Uint32Array,
   at: number,
+  planes: Float64Array,
+  to: number,
 ): void {
-  const x = p[3 * a];
-  const y = p[3 * a + 1];
-  const z = p[3 * a + 2];
-  const ux = p[3 * b] - x;
-  const uy = p[3 * b + 1] - y;
-  const uz = p[3 * b + 2] - z;
-  const vx = p[3 * c] - x;
-  const vy = p[3 * c + 1] - y;
-  const vz = p[3 * c + 2] - z;
-  const nx = uy * vz - uz * vy;
-  const ny = uz * vx - ux * vz;
-  const nz = ux * vy - uy * vx;
-  const length = Math.sqrt(nx * nx + ny * ny + nz * nz);
-  const factor = length > 0 ? 1 / length : 0;
-  planes[at] = nx * factor;
-  planes[at + 1] = ny * factor;
-  planes[at + 2] = nz * factor;
-  planes[at + 3] = factor * (nx * x + ny * y + nz * z);
+  facetNormal(p, corners, at, planes, to);
+  const point = 3 * corners[at];
+  planes[to + 3] =
+    planes[to] * p[point] + planes[to + 1] * p[point + 1] + planes[to + 2] * p[point + 2];
 }
 
 function sideOf(
