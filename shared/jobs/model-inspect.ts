@@ -1,6 +1,6 @@
 import * as z from 'zod';
 import { mendingChoices, noChoices } from './mending-choices.js';
-import { vector3 } from './recipe.js';
+import { vector3 } from './geometry-values.js';
 
 export const inspectInput = z.object({
   sourceKey: z.string(),

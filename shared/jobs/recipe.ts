@@ -1,10 +1,6 @@
 import * as z from 'zod';
-
-/** Millimetres, right-handed, z up, in the frame of the scaled model. */
-export const vector3 = z.tuple([z.number(), z.number(), z.number()]);
-
-/** Points p with normal·p = offset; the side with normal·p ≥ offset is above. Normals have length 1. */
-export const planeSchema = z.object({ normal: vector3, offset: z.number() });
+import { planeSchema } from './geometry-values.js';
+import { planWishes, usualWishes } from './plan-wishes.js';
 
 /** A tree of planar cuts. A leaf is a part; a part that falls into loose bodies becomes several pieces. */
 export type CutTree =
@@ -14,6 +10,8 @@ export type CutTree =
       plane: z.infer<typeof planeSchema>;
       /** One sentence made from real numbers: why this cut is here. */
       reason: string;
+      /** The person's own plane: it stays exactly where it was put. */
+      locked?: boolean | undefined;
       above: CutTree;
       below: CutTree;
     };
@@ -24,6 +22,7 @@ export const cutTreeSchema: z.ZodType<CutTree> = z.lazy(() =>
       kind: z.literal('cut'),
       plane: planeSchema,
       reason: z.string(),
+      locked: z.boolean().optional(),
       above: cutTreeSchema,
       below: cutTreeSchema,
     }),
@@ -50,7 +49,11 @@ export const recipeSchema = z.object({
   version: z.literal(1),
   seed: z.number().int().min(0),
   millimetresPerUnit: z.number().positive(),
+  /** The envelope that pieces go to when it holds them. */
   space: buildSpaceSchema,
+  /** Further envelopes, for pieces that the ones before do not hold. */
+  otherSpaces: z.array(buildSpaceSchema).max(7).default([]),
+  wishes: planWishes.default(usualWishes),
   tree: cutTreeSchema,
 });
 export type Recipe = z.infer<typeof recipeSchema>;

@@ -3,6 +3,7 @@ import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { boundingBox, signedVolume } from '../../shared/geometry/mesh/measure.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type Piece, type PlanOutput } from '../../shared/jobs/plan-make.js';
+import { usualWishes } from '../../shared/jobs/plan-wishes.js';
 import { cutListCsv } from '../export/cut-list.js';
 import { manifestJson } from '../export/manifest.js';
 import { writeStl } from '../export/stl-writer.js';
@@ -95,10 +96,27 @@ export async function makePieces(
   const written = await writeAndMeasure(finished.pieces, space, { ...files, write }, context);
   const pieces = finished.pieces.map((piece, index) => pieceRow(piece, written[index], space));
   const plan: MadePieces['plan'] = {
-    recipe: { version: 1, seed, millimetresPerUnit: input.millimetresPerUnit, space, tree },
+    recipe: {
+      version: 1,
+      seed,
+      millimetresPerUnit: input.millimetresPerUnit,
+      space,
+      otherSpaces: [],
+      wishes: usualWishes,
+      tree,
+    },
     pieces,
-    seams: seams.map(({ between, areaMm2, cut }) => ({ between, areaMm2, cut })),
-    bounds: choice.bounds,
+    seams: seams.map(({ between, areaMm2, cut }) => ({
+      between,
+      areaMm2,
+      cut,
+      visibleMm: 0,
+      bendingKpa: 0,
+    })),
+    bounds: { ...choice.bounds, gap: '' },
+    objectives: null,
+    offers: [],
+    chosenOffer: null,
     proof: proofTable({
       pieces: written,
       space,
@@ -151,6 +169,8 @@ function pieceRow(piece: FinishedPiece, written: WrittenPiece, space: BuildSpace
     volumeMm3: written.volumeMm3,
     sizeMm: [max[0] - min[0], max[1] - min[1], max[2] - min[2]],
     fits: pieceFits(written, space),
+    space: 0,
+    supportMm3: 0,
     file: pieceFile(piece.name),
     placement: [...piece.motion],
     centreMm: piece.centreMm,

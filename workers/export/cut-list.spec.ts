@@ -9,6 +9,8 @@ const piece = (item: number): Piece => ({
   volumeMm3: 1000.5,
   sizeMm: [10, 20.25, 5.0026],
   fits: item === 1,
+  space: 0,
+  supportMm3: 0,
   file: `pieces/P0${item}.stl`,
   placement: [1, 0, 0, 0, 0, 1, 0, 0, 0, 0, 1, 0],
   centreMm: [0, 0, 0],
@@ -19,7 +21,7 @@ describe('cutListCsv', () => {
     const csv = cutListCsv(
       'bell',
       [piece(1), piece(2)],
-      [{ between: ['P01', 'P02'], areaMm2: 3, cut: 1 }],
+      [{ between: ['P01', 'P02'], areaMm2: 3, cut: 1, visibleMm: 0, bendingKpa: 0 }],
     );
     expect(csv.split('\r\n')).toEqual([
       'item,piece,model,width_mm,depth_mm,height_mm,volume_mm3,triangles,fits,meets,file',

@@ -5,6 +5,7 @@ import { NodeIO } from '@gltf-transform/core';
 import { EXTMeshoptCompression } from '@gltf-transform/extensions';
 import { MeshoptDecoder } from 'meshoptimizer';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { usualWishes } from '../../shared/jobs/plan-wishes.js';
 import { type JobMap, jobSchemas } from '../../shared/jobs/job-map.js';
 import { box, torusKnot } from '../../test/support/shapes.js';
 import { encodeMesh } from '../intake/mesh-file.js';
@@ -30,6 +31,9 @@ const order = (prefix: string): JobMap['plan.make']['input'] => ({
   modelName: 'a knot, "in" inches',
   millimetresPerUnit: 25.4,
   space: bed,
+  otherSpaces: [],
+  wishes: usualWishes,
+  tree: null,
   seed: 3,
   outputPrefix: prefix,
 });

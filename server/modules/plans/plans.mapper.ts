@@ -26,10 +26,10 @@ export function toPlanResponse(
 ): PlanResponse {
   const { result } = view.plan;
   if (!result) return { ...toPlanSummary(view), result: null };
-  const { recipe, pieces, seams, bounds, proof, timingsMs } = result;
+  const { files: _files, ...shown } = result;
   const archiveBytes = view.plan.archiveBytes ?? 0;
   return {
     ...toPlanSummary(view),
-    result: { recipe, pieces, seams, bounds, proof, timingsMs, archiveBytes },
+    result: { ...shown, archiveBytes },
   };
 }

@@ -1,4 +1,5 @@
 import { mayBePlanned } from '../../../shared/jobs/model-inspect.js';
+import { usualWishes } from '../../../shared/jobs/plan-wishes.js';
 import { millimetresPerUnit } from '../../../shared/api/model-scale.js';
 import type { Transact } from '../../platform/db/transaction.js';
 import type { CreateId } from '../../platform/ids/create-id.js';
@@ -127,6 +128,9 @@ export function createPlansService(deps: {
             modelName: model.name,
             millimetresPerUnit: factor,
             space: usableSpace(envelope),
+            otherSpaces: [],
+            wishes: usualWishes,
+            tree: null,
             seed,
             outputPrefix: planFolder({ workshopId, planId: id }),
           },

@@ -1,3 +1,4 @@
+import { usualWishes } from '../../../shared/jobs/plan-wishes.js';
 import { mkdir, writeFile } from 'node:fs/promises';
 import { dirname } from 'node:path';
 import type { RowDataPacket } from 'mysql2/promise';
@@ -140,6 +141,8 @@ export async function planResult(
     volumeMm3: 30_000_000,
     sizeMm: [300, 400, 250] as [number, number, number],
     fits: true,
+    space: 0,
+    supportMm3: 0,
     file: `P0${item}.stl`,
     placement: [1, 0, 0, 0, 0, 1, 0, 0, 0, 0, 1, 0],
     centreMm: [150, 200, item === 1 ? 375 : 125] as [number, number, number],
@@ -150,6 +153,8 @@ export async function planResult(
       seed,
       millimetresPerUnit,
       space,
+      otherSpaces: [],
+      wishes: usualWishes,
       tree: {
         kind: 'cut',
         plane: { normal: [0, 0, 1], offset: 250 },
@@ -159,8 +164,16 @@ export async function planResult(
       },
     },
     pieces: [piece(1), piece(2)],
-    seams: [{ between: ['P01', 'P02'], areaMm2: 120_000, cut: 1 }],
-    bounds: { pieces: 2, reason: 'Taller than the envelope.', gridPieces: 2 },
+    seams: [{ between: ['P01', 'P02'], areaMm2: 120_000, cut: 1, visibleMm: 900, bendingKpa: 2 }],
+    bounds: {
+      pieces: 2,
+      reason: 'Taller than the envelope.',
+      gridPieces: 2,
+      gap: 'No plan can have fewer.',
+    },
+    objectives: null,
+    offers: [],
+    chosenOffer: null,
     proof: [{ check: 'Every piece is closed', measured: '2 of 2', limit: '2', passed: true }],
     timingsMs: { parse: 0, weld: 0, inspect: 0, plan: 5, cut: 5, write: 5 },
     files: { view: `${outputPrefix}/view.glb`, archive },

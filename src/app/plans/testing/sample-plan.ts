@@ -1,6 +1,7 @@
 import { type EnvelopeResponse } from '../../../../shared/api/envelopes.contract.js';
 import { type PlanResponse } from '../../../../shared/api/plans.contract.js';
 import { type JobResponse } from '../../../../shared/api/jobs.contract.js';
+import { usualWishes } from '../../../../shared/jobs/plan-wishes.js';
 import { type Piece } from '../../../../shared/jobs/plan-make.js';
 
 const id = (letter: string) => letter.repeat(20);
@@ -39,6 +40,8 @@ export function samplePiece(item: number, changes: Partial<Piece> = {}): Piece {
     volumeMm3: 1e6 * item,
     sizeMm: [100 + item, 200, 50],
     fits: true,
+    space: 0,
+    supportMm3: 2_000 * item,
     file: `pieces/${name}.stl`,
     placement: [1, 0, 0, 0, 0, 1, 0, 0, 0, 0, 1, 0],
     centreMm: [0, 0, 100 * item],
@@ -68,6 +71,8 @@ export function samplePlan(changes: Partial<PlanResponse> = {}): PlanResponse {
         seed: 1,
         millimetresPerUnit: 1,
         space: { shape: 'rectangular', widthMm: 220, depthMm: 220, heightMm: 250 },
+        otherSpaces: [],
+        wishes: usualWishes,
         tree: {
           kind: 'cut',
           plane: { normal: [0, 0, 1], offset: 150 },
@@ -84,10 +89,18 @@ export function samplePlan(changes: Partial<PlanResponse> = {}): PlanResponse {
       },
       pieces: [samplePiece(1), samplePiece(2), samplePiece(3)],
       seams: [
-        { between: ['P01', 'P02'], areaMm2: 12_000, cut: 1 },
-        { between: ['P02', 'P03'], areaMm2: 0.05, cut: 2 },
+        { between: ['P01', 'P02'], areaMm2: 12_000, cut: 1, visibleMm: 340, bendingKpa: 12 },
+        { between: ['P02', 'P03'], areaMm2: 0.05, cut: 2, visibleMm: 0, bendingKpa: 0 },
       ],
-      bounds: { pieces: 2, reason: 'The solid needs two envelopes.', gridPieces: 4 },
+      bounds: {
+        pieces: 2,
+        reason: 'The solid needs two envelopes.',
+        gridPieces: 4,
+        gap: 'One piece above the bound.',
+      },
+      objectives: null,
+      offers: [],
+      chosenOffer: null,
       proof: [
         { check: 'Every file is closed', measured: '0 open edges', limit: '0', passed: true },
         { check: 'Every piece fits', measured: '1.2 mm left', limit: '0 mm', passed: true },
