@@ -64,6 +64,7 @@ describe('the command line', () => {
       'proof',
       'timingsMs',
       'peakMemoryMb',
+      'plans',
       'mending',
     ]);
     expect(report.model).toEqual({

@@ -86,7 +86,16 @@ async function planned({ title, mesh, space }: Case, run = 'first') {
   await writeFile(modelPath, writeStl(file, 'a test model'));
   const outFolder = join(folder, `${title}, ${run}`);
   const choices = { fillHolesUpToMm: null, remeshCells: null, parts: null, accept: false };
-  const command = { modelPath, space, seed: 1, millimetresPerUnit: 1, outFolder, ...choices };
+  const spaces = [space];
+  const command = {
+    modelPath,
+    spaces,
+    wishesPath: null,
+    seed: 1,
+    millimetresPerUnit: 1,
+    outFolder,
+    ...choices,
+  };
   return { report: await planModel(command, silentContext), outFolder };
 }
 

@@ -36,7 +36,7 @@ describe('finishBodies', () => {
       below: { kind: 'cut', plane: { normal: [1, 0, 0], offset: -2.5 }, above: leaf, below: leaf },
     };
     const cut = applyTree(mesh, tree, { triangulate, toleranceMm: 0.02 });
-    const { pieces, failures, offsets } = finishBodies(cut, bed, neverRecut, silentContext);
+    const { pieces, failures, offsets } = finishBodies(cut, [bed], neverRecut, silentContext);
     expect(failures).toEqual([]);
     expect(offsets).toBe(cut.offsets);
     expect(pieces.length).toBe(cut.bodies.length);
@@ -68,7 +68,7 @@ describe('finishBodies', () => {
 
   it('keeps a piece that fills the build space exactly inside it', () => {
     const bodies = [{ mesh: box([5, 5, 5], [225, 225, 255]).mesh, path: '' }];
-    const { pieces } = finishBodies({ bodies, offsets: [] }, bed, neverRecut, silentContext);
+    const { pieces } = finishBodies({ bodies, offsets: [] }, [bed], neverRecut, silentContext);
     expect(boundingBox(pieces[0].rounded.positions)).toEqual({
       min: [0, 0, 0],
       max: [220, 220, 250],
@@ -84,7 +84,7 @@ describe('finishBodies', () => {
       return { bodies: asked.length < 2 ? [crumb(2)] : [sound], offsets };
     };
     const cut = { bodies: [crumb(2)], offsets: [10, 20, 30] };
-    const result = finishBodies(cut, bed, recut, silentContext);
+    const result = finishBodies(cut, [bed], recut, silentContext);
     expect(result.failures).toEqual([]);
     expect(result.offsets).toBe(asked[1]);
     // Only the cut that bounds the unsound piece moves, another way each time, never too far.
@@ -99,13 +99,13 @@ describe('finishBodies', () => {
   it('says in a sentence which piece could not be made sound, and keeps the first cut', () => {
     const cut = { bodies: [crumb(1)], offsets: [7] };
     const recut = (offsets: readonly number[]) => ({ bodies: [crumb(1)], offsets });
-    const result = finishBodies(cut, bed, recut, silentContext);
+    const result = finishBodies(cut, [bed], recut, silentContext);
     expect(result.offsets).toBe(cut.offsets);
     expect(result.failures).toEqual([
       expect.stringMatching(/^P01 cannot be written soundly: nothing is left of it .*\.$/),
     ]);
     const uncut = { bodies: [crumb(0)], offsets: [] };
-    expect(finishBodies(uncut, bed, neverRecut, silentContext).failures).toHaveLength(1);
+    expect(finishBodies(uncut, [bed], neverRecut, silentContext).failures).toHaveLength(1);
   });
 
   it('stops between pieces when the job is cancelled', () => {
@@ -118,6 +118,6 @@ describe('finishBodies', () => {
       },
     };
     const cut = { bodies: [body, body, body], offsets: [] };
-    expect(() => finishBodies(cut, bed, neverRecut, context)).toThrow(AbortError);
+    expect(() => finishBodies(cut, [bed], neverRecut, context)).toThrow(AbortError);
   });
 });

@@ -1,6 +1,7 @@
 import { candidateDowns } from '../../shared/geometry/fitting/candidate-downs.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
-import { layOnBed } from '../../shared/geometry/fitting/lay-on-bed.js';
+import { type BedPose, layOnBed, poseOn } from '../../shared/geometry/fitting/lay-on-bed.js';
+import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { type Body } from '../../shared/geometry/cutting/apply-tree.js';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import { type JobContext } from '../runtime/job-context.js';
@@ -13,8 +14,12 @@ export interface FinishedPiece extends RoundedPiece {
   /** `P01` … or `P001` … when there are a hundred or more. */
   name: string;
   body: Body;
-  /** Whether the pose lies inside the build space. */
+  /** Whether the pose lies inside its build space. */
   fits: boolean;
+  /** Number of that space. */
+  space: number;
+  /** The resting direction, in the assembled model. */
+  down: Vector3;
   /** Middle of its box in the assembled model, mm. */
   centreMm: [number, number, number];
 }
@@ -33,6 +38,9 @@ export interface FinishedPieces {
   failures: string[];
 }
 
+/** How a body, by its path, is to lie: what the planner found best. */
+export type WantedPoses = ReadonlyMap<string, { readonly down: Vector3; readonly space: number }>;
+
 /** How far a cut may be moved from where it was when rounding cannot close a piece, mm. */
 export const FARTHEST_RECUT_MM = 0.02;
 const RECUTS_TRIED = 3;
@@ -42,26 +50,36 @@ const RECUTS_TRIED = 3;
  * closed and whole after rounding, named bottom to top. A body that no place on the bed closes makes
  * its own cuts move by up to {@link FARTHEST_RECUT_MM} and everything be cut again; what fails after
  * that is kept and said in `failures`.
+ * @param spaces a body goes to the first that holds it
  * @param recut cuts the model again at these offsets (mm)
+ * @param wanted tried before anything else
+ * @param locked numbers (from 0) of cuts that must not move
  */
 export function finishBodies(
   cut: CutBodies,
-  space: BuildSpace,
+  spaces: readonly BuildSpace[],
   recut: (offsets: readonly number[]) => CutBodies,
   context: JobContext,
+  {
+    wanted = new Map(),
+    locked = new Set(),
+  }: { wanted?: WantedPoses; locked?: ReadonlySet<number> } = {},
 ): FinishedPieces {
   let bodies = cut.bodies;
   let offsets = cut.offsets;
-  let placed = placeAll(bodies, space, context);
+  let placed = placeAll(bodies, spaces, wanted, context);
   for (let attempt = 1; attempt <= RECUTS_TRIED && placed.some(isUnsound); attempt++) {
     const moved = nudged(
       cut.offsets,
-      cutsAround(bodies.filter((_, i) => isUnsound(placed[i]))),
+      cutsAround(
+        bodies.filter((_, i) => isUnsound(placed[i])),
+        locked,
+      ),
       attempt,
     );
     if (!moved) break;
     const again = recut(moved);
-    const placedAgain = placeAll(again.bodies, space, context);
+    const placedAgain = placeAll(again.bodies, spaces, wanted, context);
     if (isWorse(placedAgain, placed)) continue;
     bodies = again.bodies;
     offsets = again.offsets;
@@ -72,15 +90,39 @@ export function finishBodies(
   return { pieces, offsets, failures };
 }
 
-type PlacedBody = RoundedPiece & { fits: boolean };
+type PlacedBody = RoundedPiece & Pick<FinishedPiece, 'fits' | 'space' | 'down'>;
 
-function placeAll(bodies: readonly Body[], space: BuildSpace, context: JobContext): PlacedBody[] {
-  return bodies.map(({ mesh }, index) => {
+function placeAll(
+  bodies: readonly Body[],
+  spaces: readonly BuildSpace[],
+  wanted: WantedPoses,
+  context: JobContext,
+): PlacedBody[] {
+  return bodies.map(({ mesh, path }, index) => {
     context.throwIfCancelled();
     context.progress('Laying the pieces on the bed', index / bodies.length);
-    const pose = layOnBed(mesh.positions, space, candidateDowns(mesh));
-    return { ...roundOnBed(mesh, pose, space), fits: pose.fits };
+    const wish = wanted.get(path);
+    if (wish) {
+      const pose = poseOn(mesh.positions, spaces[wish.space], wish.down);
+      if (pose?.fits) return placedIn(mesh, pose, spaces, wish.space);
+    }
+    const downs = candidateDowns(mesh);
+    const poses = spaces.map((space) => layOnBed(mesh.positions, space, downs));
+    const first = poses.findIndex((pose) => pose.fits);
+    const least = poses.reduce((a, b, k) => (b.slackMm > poses[a].slackMm ? k : a), 0);
+    const space = first >= 0 ? first : least;
+    return placedIn(mesh, poses[space], spaces, space);
   });
+}
+
+function placedIn(
+  mesh: Body['mesh'],
+  pose: BedPose,
+  spaces: readonly BuildSpace[],
+  space: number,
+): PlacedBody {
+  const rounded = roundOnBed(mesh, pose, spaces[space]);
+  return { ...rounded, fits: pose.fits, space, down: pose.down };
 }
 
 function isUnsound(piece: RoundedPiece): boolean {
@@ -93,10 +135,11 @@ function isWorse(next: readonly PlacedBody[], now: readonly PlacedBody[]): boole
   return next.filter(isUnsound).length >= now.filter(isUnsound).length || over(next) > over(now);
 }
 
-/** Indices (from 0) of the cuts that left a cap on any of the bodies. */
-function cutsAround(bodies: readonly Body[]): Set<number> {
+/** Indices (from 0) of the cuts that left a cap on any of the bodies and may be moved. */
+function cutsAround(bodies: readonly Body[], locked: ReadonlySet<number>): Set<number> {
   const cuts = new Set<number>();
   for (const { mesh } of bodies) for (const tag of mesh.tags ?? []) if (tag > 0) cuts.add(tag - 1);
+  for (const cut of locked) cuts.delete(cut);
   return cuts;
 }
 

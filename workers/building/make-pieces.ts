@@ -3,13 +3,17 @@ import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { boundingBox, signedVolume } from '../../shared/geometry/mesh/measure.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type Piece, type PlanOutput } from '../../shared/jobs/plan-make.js';
-import { usualWishes } from '../../shared/jobs/plan-wishes.js';
+import { type PlanWishes } from '../../shared/jobs/plan-wishes.js';
+import { type CutTree } from '../../shared/jobs/recipe.js';
 import { cutListCsv } from '../export/cut-list.js';
 import { manifestJson } from '../export/manifest.js';
 import { writeStl } from '../export/stl-writer.js';
-import { choosePlan } from '../planning/choose-plan.js';
+import { choosePlan, remakePlan } from '../planning/choose-plan.js';
+import { listCuts } from '../planning/exact-plan.js';
+import { type BodySupport, supportOn } from '../planning/judging/body-support.js';
 import { measureWrittenPiece, type WrittenPiece } from '../proof/measure-written-piece.js';
 import { pieceFits, proofTable } from '../proof/proof-table.js';
+import { measureZones } from '../proof/zone-clearance.js';
 import { type JobContext, portionOf } from '../runtime/job-context.js';
 import { type Solids } from '../solids/solid-kernel.js';
 import { planesOf, withOffsets } from './cut-tree.js';
@@ -24,6 +28,9 @@ const CUT_TOLERANCE_MM = 0.02;
 /** When a cut is made again at a moved offset, it keeps to that closely, mm. */
 const RECUT_TOLERANCE_MM = 0.004;
 
+/** Columns across a piece whose support is measured anew. */
+const SUPPORT_COLUMNS = 90;
+
 /** Where the pieces' files go. Names use `/`; `read` gives back what was really stored. */
 export interface PieceFiles {
   readonly write: (name: string, bytes: Uint8Array) => Promise<void>;
@@ -35,8 +42,14 @@ export interface PiecesInput {
   mesh: TriangleMesh;
   modelName: string;
   millimetresPerUnit: number;
-  space: BuildSpace;
+  /** The first is preferred; at least one. */
+  spaces: readonly BuildSpace[];
+  wishes: PlanWishes;
   seed: number;
+  /** A tree that was found before: its pieces are made, nothing is searched. */
+  tree: CutTree | null;
+  /** Share of the usual work of the search. */
+  effort?: number;
 }
 
 export interface MadePieces {
@@ -58,25 +71,32 @@ export async function makePieces(
   input: PiecesInput,
   { solids, files, context }: { solids: Solids; files: PieceFiles; context: JobContext },
 ): Promise<MadePieces> {
-  const { mesh, space, seed } = input;
-  const choice = choosePlan({
+  const { mesh, spaces, wishes, seed } = input;
+  const planning = {
     mesh,
-    space,
+    spaces,
+    wishes,
     seed,
     triangulate: solids.triangulate,
     toleranceMm: CUT_TOLERANCE_MM,
     context: portionOf(context, 0, 0.55),
-  });
+    ...(input.effort !== undefined && { effort: input.effort }),
+  };
+  const choice = input.tree ? remakePlan(planning, input.tree) : choosePlan(planning);
   const cutting = startWatch();
+  const supportOfPath = new Map(
+    choice.bodies.map((body, k) => [body.path, choice.figures.bodies[k]]),
+  );
   const finished = finishBodies(
     { bodies: choice.bodies, offsets: planesOf(choice.tree).map((plane) => plane.offset) },
-    space,
+    spaces,
     (offsets) =>
       applyTree(mesh, withOffsets(choice.tree, offsets), {
         triangulate: solids.triangulate,
         toleranceMm: RECUT_TOLERANCE_MM,
       }),
     portionOf(context, 0.55, 0.75),
+    { wanted: supportOfPath, locked: lockedCuts(choice.tree) },
   );
   const tree = withOffsets(choice.tree, finished.offsets);
   const bodies = finished.pieces.map(({ name, body }) => ({ name, mesh: body.mesh }));
@@ -93,33 +113,42 @@ export async function makePieces(
     await files.write(name, bytes);
     archive.push({ name, bytes: bytes.byteLength });
   };
-  const written = await writeAndMeasure(finished.pieces, space, { ...files, write }, context);
-  const pieces = finished.pieces.map((piece, index) => pieceRow(piece, written[index], space));
+  const written = await writeAndMeasure(finished.pieces, spaces, { ...files, write }, context);
+  const pieces = finished.pieces.map((piece, index) =>
+    pieceRow(piece, written[index], spaces, supportOf(piece, supportOfPath, wishes)),
+  );
+  const { cuts, objectives } = choice.figures;
   const plan: MadePieces['plan'] = {
     recipe: {
       version: 1,
       seed,
       millimetresPerUnit: input.millimetresPerUnit,
-      space,
-      otherSpaces: [],
-      wishes: usualWishes,
+      space: spaces[0],
+      otherSpaces: spaces.slice(1),
+      wishes,
       tree,
     },
     pieces,
-    seams: seams.map(({ between, areaMm2, cut }) => ({
-      between,
-      areaMm2,
-      cut,
-      visibleMm: 0,
-      bendingKpa: 0,
-    })),
-    bounds: { ...choice.bounds, gap: '' },
-    objectives: null,
-    offers: [],
-    chosenOffer: null,
+    seams: seams.map(({ between, areaMm2, cut }) => {
+      const { sightMm, bendingKpa, areaMm2: whole } = cuts[cut - 1];
+      // Where a cut makes several seams each has its share of what the cut shows.
+      const share = whole > 0 ? Math.min(1, areaMm2 / whole) : 0;
+      return { between, areaMm2, cut, visibleMm: share * sightMm, bendingKpa };
+    }),
+    bounds: choice.bounds,
+    objectives,
+    offers: choice.offers,
+    chosenOffer: choice.chosenOffer,
     proof: proofTable({
       pieces: written,
-      space,
+      spaces: finished.pieces.map((piece) => spaces[piece.space]),
+      ...(wishes.keepWhole.length > 0 && {
+        keepWhole: measureZones(
+          wishes.keepWhole,
+          bodies.map((body) => body.mesh),
+          mesh,
+        ),
+      }),
       modelVolumeMm3: volumeMm3,
       failures: finished.failures,
     }),
@@ -144,23 +173,44 @@ export function pieceFile(name: string): string {
 /** Writes each piece, reads it back and measures what came back; one piece in memory at a time. */
 async function writeAndMeasure(
   pieces: readonly FinishedPiece[],
-  space: BuildSpace,
+  spaces: readonly BuildSpace[],
   files: PieceFiles,
   context: JobContext,
 ): Promise<WrittenPiece[]> {
   const steps = portionOf(context, 0.8, 0.95);
-  const axis = bedMiddle(space);
   const measured: WrittenPiece[] = [];
   for (const [index, piece] of pieces.entries()) {
     steps.progress('Writing and proving the pieces', index / pieces.length);
     const file = pieceFile(piece.name);
+    const axis = bedMiddle(spaces[piece.space]);
     await files.write(file, writeStl(piece.rounded, `Seamwright piece ${piece.name}, millimetres`));
     measured.push(measureWrittenPiece(piece.name, await files.read(file), axis));
   }
   return measured;
 }
 
-function pieceRow(piece: FinishedPiece, written: WrittenPiece, space: BuildSpace): Piece {
+/** Support of a piece as it lies, mm³: known from planning unless it had to be laid another way. */
+function supportOf(
+  { body, down }: FinishedPiece,
+  planned: ReadonlyMap<string, BodySupport>,
+  { overhangDegrees }: PlanWishes,
+): number {
+  const known = planned.get(body.path);
+  if (known && known.down.every((part, axis) => part === down[axis])) return known.supportMm3;
+  return supportOn(body.mesh, down, { columns: SUPPORT_COLUMNS, overhangDegrees });
+}
+
+/** Numbers, from 0, of the cuts that must stay where they are. */
+function lockedCuts(tree: CutTree): Set<number> {
+  return new Set(listCuts(tree).flatMap(({ locked }, k) => (locked ? [k] : [])));
+}
+
+function pieceRow(
+  piece: FinishedPiece,
+  written: WrittenPiece,
+  spaces: readonly BuildSpace[],
+  supportMm3: number,
+): Piece {
   const { min, max } = written;
   return {
     item: piece.item,
@@ -168,9 +218,9 @@ function pieceRow(piece: FinishedPiece, written: WrittenPiece, space: BuildSpace
     triangles: written.facets,
     volumeMm3: written.volumeMm3,
     sizeMm: [max[0] - min[0], max[1] - min[1], max[2] - min[2]],
-    fits: pieceFits(written, space),
-    space: 0,
-    supportMm3: 0,
+    fits: pieceFits(written, spaces[piece.space]),
+    space: piece.space,
+    supportMm3,
     file: pieceFile(piece.name),
     placement: [...piece.motion],
     centreMm: piece.centreMm,

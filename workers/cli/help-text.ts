@@ -6,9 +6,13 @@ where to cut it, the pieces are cut exactly and laid on the bed, and the written
 Needs no server and no database.
 
   --envelope SIZE   usable build volume, mm: 220x220x250 is width, depth, height of a rectangular
-                    bed; round:300x400 is diameter and height of a round one
+                    bed; round:300x400 is diameter and height of a round one. Several with + between
+                    them: a piece goes to the first that holds it
   --margin MM       kept free on every side of the bed (default 0)
   --seed N          whole number; the same seed gives the same plan, byte for byte (default 1)
+  --wishes FILE     what is asked of the plan, as JSON: preferences, show directions and zones,
+                    keep-whole zones, locked cuts; the form is that of "wishes" in a manifest's
+                    recipe, and what is left out is as usual
   --unit UNIT       what one unit of the file is: mm, inch, or a number of millimetres (default: what
                     the file states, else mm)
   --parts LIST      of a file with several parts only these, for example 1,3 (default: all)

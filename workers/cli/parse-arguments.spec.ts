@@ -16,7 +16,8 @@ describe('parseArguments', () => {
     expect(plan('--envelope', '220x220x250')).toEqual({
       kind: 'plan',
       modelPath: 'cube.stl',
-      space: { shape: 'rectangular', widthMm: 220, depthMm: 220, heightMm: 250 },
+      spaces: [{ shape: 'rectangular', widthMm: 220, depthMm: 220, heightMm: 250 }],
+      wishesPath: null,
       seed: 1,
       millimetresPerUnit: null,
       fillHolesUpToMm: null,
@@ -45,11 +46,20 @@ describe('parseArguments', () => {
 
   it('takes the margin off every side of the bed and not off the height', () => {
     expect(plan('--envelope=220.5x200x250', '--margin=5')).toMatchObject({
-      space: { shape: 'rectangular', widthMm: 210.5, depthMm: 190, heightMm: 250 },
+      spaces: [{ shape: 'rectangular', widthMm: 210.5, depthMm: 190, heightMm: 250 }],
     });
     expect(plan('--envelope', 'round:300X400', '--margin', '10')).toMatchObject({
-      space: { shape: 'round', diameterMm: 280, heightMm: 400 },
+      spaces: [{ shape: 'round', diameterMm: 280, heightMm: 400 }],
     });
+    expect(plan('--envelope', '100x100x100+round:300x400', '--margin', '10')).toMatchObject({
+      spaces: [
+        { shape: 'rectangular', widthMm: 80, depthMm: 80, heightMm: 100 },
+        { shape: 'round', diameterMm: 280, heightMm: 400 },
+      ],
+    });
+    expect(complaint('plan', 'a.stl', '--envelope', Array(9).fill('1x1x1').join('+'))).toMatch(
+      /at most 8 envelopes/,
+    );
   });
 
   it('takes seed, unit, folder and --json in any order', () => {

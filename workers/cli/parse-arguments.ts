@@ -1,13 +1,16 @@
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { fewestRemeshCells, mostRemeshCells } from '../../shared/jobs/mending-choices.js';
-import { parseEnvelope } from './parse-envelope.js';
+import { parseEnvelopes } from './parse-envelope.js';
 import { UsageError } from './usage-error.js';
 
 export interface PlanCommand {
   kind: 'plan';
   /** As the person wrote it. */
   modelPath: string;
-  space: BuildSpace;
+  /** The first is preferred; at least one. */
+  spaces: BuildSpace[];
+  /** A JSON file with what is asked of the plan; null for the usual. */
+  wishesPath: string | null;
   seed: number;
   /** Null when the person named no unit: then it is the file's own, or mm. */
   millimetresPerUnit: number | null;
@@ -26,6 +29,7 @@ export type Command = { kind: 'help' } | PlanCommand;
 const TAKING_VALUES = [
   '--envelope',
   '--margin',
+  '--wishes',
   '--seed',
   '--unit',
   '--fill-holes',
@@ -58,7 +62,8 @@ export function parseArguments(words: readonly string[]): Command {
     return {
       kind: 'plan',
       modelPath,
-      space: parseEnvelope(envelope, values.get('--margin') ?? '0'),
+      spaces: parseEnvelopes(envelope, values.get('--margin') ?? '0'),
+      wishesPath: values.get('--wishes') ?? null,
       seed: parseSeed(values.get('--seed') ?? '1'),
       millimetresPerUnit: given(values.get('--unit'), parseUnit),
       fillHolesUpToMm: given(values.get('--fill-holes'), parseRim),

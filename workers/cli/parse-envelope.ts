@@ -7,6 +7,16 @@ const NUMBER = '([+-]?[0-9]+(?:[.][0-9]+)?)';
 const RECTANGULAR = new RegExp(`^${NUMBER}[x×]${NUMBER}[x×]${NUMBER}$`, 'i');
 const ROUND = new RegExp(`^round:${NUMBER}[x×]${NUMBER}$`, 'i');
 
+const MOST_ENVELOPES = 8;
+
+/** One or several envelopes with `+` between them; see parseEnvelope. */
+export function parseEnvelopes(text: string, marginText: string): BuildSpace[] {
+  const texts = text.split('+');
+  if (texts.length > MOST_ENVELOPES)
+    throw new UsageError(`at most ${MOST_ENVELOPES} envelopes can be given at once`);
+  return texts.map((one) => parseEnvelope(one, marginText));
+}
+
 /**
  * The build space an envelope in words gives, margin taken off every side of the bed (not off the
  * height). `220x220x250` is width, depth and height; `round:300x400` is diameter and height; mm.

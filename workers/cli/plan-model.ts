@@ -2,7 +2,10 @@ import { readFile, stat } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { basename, join } from 'node:path';
 import { scaleMesh, signedVolume } from '../../shared/geometry/mesh/measure.js';
-import { makePieces } from '../building/make-pieces.js';
+import { type Offer } from '../../shared/jobs/plan-make.js';
+import { type CutTree } from '../../shared/jobs/recipe.js';
+import { type MadePieces, makePieces } from '../building/make-pieces.js';
+import { gapInWords } from '../planning/lower-bound.js';
 import { type MendingChoices } from '../../shared/jobs/mending-choices.js';
 import { mayBePlanned, type MeshReport } from '../../shared/jobs/model-inspect.js';
 import { inspectFile } from '../inspecting/inspect-file.js';
@@ -18,6 +21,7 @@ import {
 } from './output-folder.js';
 import { nameFile, type PlanCommand } from './parse-arguments.js';
 import { type PlanReport } from './plan-report.js';
+import { readWishes } from './read-wishes.js';
 import { UsageError } from './usage-error.js';
 
 /** The same limit as for uploads. */
@@ -33,6 +37,7 @@ export async function planModel(
   context: JobContext,
 ): Promise<PlanReport> {
   const { modelPath, outFolder } = command;
+  const wishes = await readWishes(command.wishesPath);
   const bytes = await readModel(modelPath);
   if (outFolder !== null)
     await checkOutputFolder(outFolder).catch((error) => {
@@ -47,7 +52,7 @@ export async function planModel(
   );
   if (!solid || !mayBePlanned(report, command.accept))
     throw new JobRefusal(namedRefusal(fileName, whyNot(report, command.millimetresPerUnit ?? 1)));
-  const { space, seed } = command;
+  const { spaces, seed } = command;
   const millimetresPerUnit = command.millimetresPerUnit ?? report.fileUnit?.millimetres ?? 1;
   const mesh = millimetresPerUnit === 1 ? solid : scaleMesh(solid, millimetresPerUnit);
 
@@ -56,7 +61,7 @@ export async function planModel(
   );
   try {
     const made = await makePieces(
-      { mesh, modelName: fileName, millimetresPerUnit, space, seed },
+      { mesh, modelName: fileName, millimetresPerUnit, spaces, wishes, seed, tree: null },
       { solids: await loading, files: folder.files, context: portionOf(context, 0.15, 1) },
     );
     await folder.keep();
@@ -67,20 +72,30 @@ export async function planModel(
         sizeMm: scaled(report.size, millimetresPerUnit),
         closed: report.closed,
       },
-      pieces: made.plan.pieces.map(({ name, triangles, volumeMm3, sizeMm, fits, file }) => ({
-        name,
-        triangles,
-        volumeMm3,
-        sizeMm,
-        fits,
-        file: outFolder === null ? basename(file) : join(outFolder, file),
+      pieces: made.plan.pieces.map(
+        ({ name, triangles, volumeMm3, sizeMm, fits, file, ...more }) => ({
+          name,
+          triangles,
+          volumeMm3,
+          sizeMm,
+          fits,
+          supportMm3: more.supportMm3,
+          envelope: more.space,
+          file: outFolder === null ? basename(file) : join(outFolder, file),
+        }),
+      ),
+      seams: made.plan.seams.map(({ between, areaMm2, visibleMm, bendingKpa }) => ({
+        between,
+        areaMm2,
+        visibleMm,
+        bendingKpa,
       })),
-      seams: made.plan.seams.map(({ between, areaMm2 }) => ({ between, areaMm2 })),
-      bounds: { pieces: made.plan.bounds.pieces },
+      bounds: made.plan.bounds,
       proof: made.plan.proof,
       timingsMs: { ...timingsMs, ...made.timingsMs },
       // Linux counts the peak in kilobytes; Node passes it on as it is.
       peakMemoryMb: process.resourceUsage().maxRSS / 1024,
+      plans: made.plan.offers.map((offer, k) => offerReport(offer, k, made.plan)),
       mending: report.mending,
     };
   } catch (error) {
@@ -116,6 +131,28 @@ async function readModel(modelPath: string): Promise<Uint8Array> {
     if (code === 'ENAMETOOLONG') throw refuse('is too long a name for a file');
     throw refuse(`cannot be read (${code ?? String(error)})`);
   }
+}
+
+function offerReport(
+  { bestAt, objectives, tree }: Offer,
+  place: number,
+  { chosenOffer, bounds, recipe }: MadePieces['plan'],
+): PlanReport['plans'][number] {
+  const isMade = place === chosenOffer;
+  return {
+    bestAt,
+    isMade,
+    objectives,
+    bounds: { pieces: bounds.pieces, gap: gapInWords(objectives.pieces, bounds.pieces) },
+    // Finishing may have moved the cuts of the plan that was made by a hair.
+    cuts: listOf(isMade ? recipe.tree : tree),
+  };
+}
+
+function listOf(tree: CutTree): PlanReport['plans'][number]['cuts'] {
+  if (tree.kind === 'leaf') return [];
+  const { plane, locked = false, reason } = tree;
+  return [{ ...plane, locked, reason }, ...listOf(tree.above), ...listOf(tree.below)];
 }
 
 /** Rims are measured in the file's unit; a unit that only the file knows is taken as mm. */

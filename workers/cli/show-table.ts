@@ -6,13 +6,14 @@ export function showTables(
   report: PlanReport,
   outFolder: string | null,
 ): string {
-  const { model, mending, pieces, seams, proof, bounds, timingsMs } = report;
+  const { model, mending, pieces, seams, proof, bounds, plans, timingsMs } = report;
   const size = model.sizeMm.map((side) => side.toFixed(1)).join(' × ');
   const times = Object.entries(timingsMs).map(([step, ms]) => `${step} ${Math.round(ms)} ms`);
   const sections = [
     `${modelName}: ${size} mm, ${model.triangles} triangles, ${cm3(model.volumeMm3)} cm³`,
     ...(mending.length > 0 ? [mending.map((step) => `- ${step.sentence}`).join('\n')] : []),
-    `${counted(pieces.length, 'piece')} (no plan can have fewer than ${bounds.pieces})`,
+    `${counted(pieces.length, 'piece')}; ${bounds.gap || `no plan can have fewer than ${bounds.pieces}`}`,
+    ...(plans.length > 1 ? [offersTable(plans)] : []),
     table(
       ['piece', 'size on the bed, mm', 'volume, cm³', 'triangles', 'fits'],
       pieces.map((piece) => [
@@ -39,6 +40,20 @@ export function showTables(
       : `The pieces are in ${outFolder}.`,
   ];
   return sections.join('\n\n') + '\n';
+}
+
+function offersTable(plans: PlanReport['plans']): string {
+  return table(
+    ['plan', 'pieces', 'support, cm³', 'seam in sight, mm', 'weakest seam, kPa', 'best at'],
+    plans.map(({ isMade, objectives, bestAt }, k) => [
+      `${k + 1}${isMade ? ' (made)' : ''}`,
+      String(objectives.pieces),
+      cm3(objectives.supportMm3),
+      objectives.visibleSeamMm.toFixed(0),
+      objectives.weakestSeamKpa.toFixed(1),
+      bestAt.join(', '),
+    ]),
+  );
 }
 
 function cm3(mm3: number): string {

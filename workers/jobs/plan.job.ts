@@ -21,8 +21,10 @@ export const makePlan: JobHandler<'plan.make'> = async (input, { storage }, cont
       mesh,
       modelName: input.modelName,
       millimetresPerUnit: input.millimetresPerUnit,
-      space: input.space,
+      spaces: [input.space, ...input.otherSpaces],
+      wishes: input.wishes,
       seed: input.seed,
+      tree: input.tree,
     },
     {
       solids,

@@ -56,7 +56,7 @@ export function pointsOnEdges(
   const capEdges = new Map<number, number>();
   if (tags) {
     for (let t = 0; t < tags.length; t++) {
-      if (tags[t] === 0) continue;
+      if (tags[t] <= 0) continue;
       for (let corner = 0; corner < 3; corner++) {
         const from = indices[3 * t + corner];
         const to = indices[3 * t + ((corner + 1) % 3)];

@@ -10,6 +10,7 @@ import { weldTriangles } from '../../shared/geometry/mesh/weld.js';
 import { type CutTree } from '../../shared/jobs/recipe.js';
 import { ballsOnRod, bowl, lumpyBody } from '../../test/support/planning-shapes.js';
 import { box, join, prism, sphere, torusKnot } from '../../test/support/shapes.js';
+import { usualWishes } from '../../shared/jobs/plan-wishes.js';
 import { silentContext } from '../runtime/job-context.js';
 import { JobRefusal } from '../runtime/job-refusal.js';
 import { loadSolids, type Solids } from '../solids/solid-kernel.js';
@@ -33,7 +34,8 @@ beforeAll(async () => {
 function plan(mesh: TriangleMesh, space: BuildSpace, seed = 1, effort = 0.1): PlanChoice {
   return choosePlan({
     mesh,
-    space,
+    spaces: [space],
+    wishes: usualWishes,
     seed,
     effort,
     triangulate: solids.triangulate,
@@ -176,7 +178,8 @@ describe('choosePlan', () => {
     const run = (limit: number) =>
       choosePlan({
         mesh,
-        space: space220,
+        spaces: [space220],
+        wishes: usualWishes,
         seed: 1,
         effort: 0.02,
         triangulate: solids.triangulate,

@@ -1,14 +1,19 @@
+import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import { type Plane } from '../../shared/geometry/vectors/plane.js';
 import { type BodyNodes, bodyNodes } from './body-nodes.js';
 import { bodyFaces } from './body-faces.js';
 import { cellsInFrames, roomInFrames } from './fit-frames.js';
+import { type Crease, creasePlanes } from './judging/creases.js';
+import { ZONE_CLEARANCE_MM } from './judging/plan-zone.js';
 import {
   type CutFigures,
-  type CutWeights,
   expectedPieces,
-  qualityCost,
+  commonCost,
+  type PlanWeights,
+  sightCost,
   wasteCost,
 } from './objectives.js';
+import { SUPPORT_PER_PIECE_MM3 } from './plan-node.js';
 import { type PlanBody, type PlanPart } from './plan-part.js';
 import { type SearchSpace } from './search-space.js';
 import { sweepDirections } from './sweep-directions.js';
@@ -24,6 +29,10 @@ export interface CutCandidate {
   /** Expected pieces plus quality, in pieces: lower is better. */
   readonly score: number;
   readonly quality: number;
+  /** Of the quality, what makes it worse for everybody. */
+  readonly commonCost: number;
+  /** Length of its seam on the surface, by the worth of the surface, mm. */
+  readonly sightMm: number;
   /** Room given away by a fitting side, in pieces. */
   readonly waste: number;
   /** How far the offset may be drawn back towards the fitting side's end, mm. */
@@ -34,6 +43,12 @@ export interface CutCandidate {
 const NODE_SPACING = 0.14;
 /** Dividing cuts kept per direction. */
 const DIVIDING_CUTS = 3;
+/** Planes along creases looked at per direction. */
+const CREASE_PLANES = 4;
+/** Share of a seam's cost that stays where it follows a crease. */
+const CREASE_SHARE = 0.5;
+/** Columns below a leaning face are rarely all needed: share of the bound that counts. Measured, rough. */
+const BOUND_SHARE = 0.5;
 
 export interface SweptCuts {
   /** The most promising first. */
@@ -43,28 +58,58 @@ export interface SweptCuts {
 }
 
 /** Steps per triangle of a sweep, in units of one comparison of a node with one extent. */
-const STEPS_PER_FACE = 12;
+const STEPS_PER_FACE = 14;
 
-/** Sweeps one body of a part along all its directions. */
+/**
+ * Sweeps one body of a part along all its directions. No cut comes near a keep-whole zone of the
+ * part; none at all is found when the zones leave no room.
+ */
 export function cutCandidates(
   part: PlanPart,
   body: PlanBody,
   space: SearchSpace,
-  weights: CutWeights,
+  weights: PlanWeights,
   random: () => number,
 ): SweptCuts {
   const fit = space.aimFrames;
-  const nodes = bodyNodes(body.mesh, body.outer, fit, NODE_SPACING * Math.min(...space.cell));
-  const faces = bodyFaces(body.mesh);
+  const nodes = bodyNodes(body.mesh, body.outer, fit, NODE_SPACING * space.leastSideMm);
+  const faces = bodyFaces(body.mesh, space.worth);
+  const { min, max } = boundingBox(body.mesh.positions);
+  const isNear = ({ from, to }: Crease) =>
+    [0, 1, 2].every((axis) => {
+      const middle = (from[axis] + to[axis]) / 2;
+      return middle >= min[axis] && middle <= max[axis];
+    });
   const found: CutCandidate[] = [];
   const perSweep = nodes.count * fit.axisCount + STEPS_PER_FACE * faces.areas.length;
   let work = 0;
   for (const normal of sweepDirections(body.mesh, random)) {
     work += perSweep;
-    const [low, high] = rangeAlong(body.mesh.positions, normal);
-    const offsets = sweepOffsets(low, high, space.cell);
+    const range = rangeAlong(body.mesh.positions, normal);
+    const [low, high] = range;
+    const kept = part.zones.map((zone) => zone.range(normal));
+    const creases = creasePlanes(space.worth.creases, normal, range, isNear, CREASE_PLANES);
+    const wanted = [
+      ...creases.map((crease) => crease.offset),
+      ...kept.flatMap(([from, to]) => [from - 2 * ZONE_CLEARANCE_MM, to + 2 * ZONE_CLEARANCE_MM]),
+    ];
+    const offsets = sweepOffsets(low, high, space.cells.flat(), wanted).filter((offset) =>
+      kept.every(
+        ([from, to]) => offset <= from - ZONE_CLEARANCE_MM || offset >= to + ZONE_CLEARANCE_MM,
+      ),
+    );
     if (offsets.length === 0) continue;
-    const tables = sweepTables({ low, high, normal, offsets }, nodes, faces, fit);
+    const tables = sweepTables(
+      { low, high, normal, offsets },
+      nodes,
+      faces,
+      fit,
+      space.overhangDegrees,
+    );
+    for (const { offset, lengthMm } of creases) {
+      const j = offsets.indexOf(offset);
+      if (j >= 0) tables.sightMm[j] -= (1 - CREASE_SHARE) * Math.min(lengthMm, tables.sightMm[j]);
+    }
     found.push(
       ...judgeSweep(tables, { part, body, space, weights, nodes, surfaceMm2: faces.surfaceMm2 }),
     );
@@ -76,7 +121,7 @@ interface Judging {
   readonly part: PlanPart;
   readonly body: PlanBody;
   readonly space: SearchSpace;
-  readonly weights: CutWeights;
+  readonly weights: PlanWeights;
   readonly nodes: BodyNodes;
   readonly surfaceMm2: number;
 }
@@ -97,14 +142,19 @@ function judgeSweep(tables: SweepTables, judging: Judging): CutCandidate[] {
     figuresAt(tables, judging, j, j >= firstAbove, j <= lastBelow, others),
   );
   const candidateAt = (j: number, kind: CutKind): CutCandidate => {
-    const quality = qualityCost(figures[j], judging.weights);
+    const common = commonCost(figures[j], judging.weights);
+    const quality = common + sightCost(figures[j].sightMm, judging.weights);
     const waste = wasteCost(figures[j]);
+    const support =
+      (judging.weights.support * BOUND_SHARE * figures[j].supportMm3) / SUPPORT_PER_PIECE_MM3;
     return {
       plane: { normal: tables.normal, offset: tables.offsets[j] },
       kind,
       quality,
+      commonCost: common,
+      sightMm: figures[j].sightMm,
       waste,
-      score: expectedPieces(figures[j]) + waste + quality,
+      score: expectedPieces(figures[j]) + waste + quality + support,
       stepMm: (tables.high - tables.low) / rows,
     };
   };
@@ -163,9 +213,8 @@ function figuresAt(
   const offset = tables.offsets[j];
   const volumeAboveMm3 = tables.volumeAboveMm3[j];
   const volumeBelowMm3 = Math.max(0, body.volumeMm3 - volumeAboveMm3);
-  const [width, depth, height] = space.cell;
   const cells = (low: Float32Array, high: Float32Array, volume: number) =>
-    Math.max(2, volume / space.volumeMm3, cellsInFrames(fit, space.cell, low, high, at));
+    Math.max(2, volume / space.volumeMm3, cellsInFrames(fit, space.cells, low, high, at));
   let alsoCut = 0;
   for (const [low, high] of others) if (low < offset && offset < high) alsoCut++;
   return {
@@ -173,8 +222,12 @@ function figuresAt(
     cellsBelow: belowFits ? 1 : cells(tables.belowLow, tables.belowHigh, volumeBelowMm3),
     alsoCut,
     seamMm2: tables.seamMm2[j],
-    faceMm2: Math.min(width * depth, width * height, depth * height),
-    overhangMm2: tables.overhangAboveMm2[j] + tables.overhangBelowMm2[j],
+    faceMm2: space.leastSideMm ** 2,
+    // Of a side that is cut further nothing can be said yet.
+    supportMm3:
+      (aboveFits ? tables.supportAboveMm3[j] : 0) + (belowFits ? tables.supportBelowMm3[j] : 0),
+    sightMm: tables.sightMm[j],
+    wallMm2: tables.wallMm2[j],
     surfaceMm2,
     thinMm: Math.min(offset - tables.low, tables.high - offset),
     volumeAboveMm3,

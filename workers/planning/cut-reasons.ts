@@ -1,59 +1,105 @@
 import { type Body, countCuts, type PlaneTree } from '../../shared/geometry/cutting/apply-tree.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { spaceInWords } from '../../shared/geometry/fitting/space-measures.js';
-import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
+import { type Plane, type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { type CutTree } from '../../shared/jobs/recipe.js';
 import { leafPath } from './exact-plan.js';
+import { type CutFigures } from './judging/exact-figures.js';
 import { rangeAlong } from './sweep-tables.js';
 
+export interface ExplainedPlan {
+  readonly tree: PlaneTree;
+  readonly bodies: readonly Body[];
+  /** As really used, in preorder. */
+  readonly offsets: readonly number[];
+  readonly cuts: readonly CutFigures[];
+  readonly spaces: readonly BuildSpace[];
+  readonly mirrors: readonly Plane[];
+}
+
 /** The recipe's tree: offsets as really used, every cut with a sentence of real numbers. */
-export function explainTree(
-  tree: PlaneTree,
-  bodies: readonly Body[],
-  offsets: readonly number[],
-  space: BuildSpace,
-): CutTree {
-  const seams = seamAreas(bodies, offsets.length);
+export function explainTree(plan: ExplainedPlan): CutTree {
+  const { bodies, offsets } = plan;
+  const sideOf = (path: string) => bodies.filter((body) => leafPath(body).startsWith(path));
   const explain = (node: PlaneTree, path: string, first: number): CutTree => {
     if (node.kind === 'leaf') return { kind: 'leaf' };
     const { normal } = node.plane;
-    const reason = cutReason(normal, sideOf(`${path}a`), sideOf(`${path}b`), seams[first], space);
+    const plane: Plane = { normal, offset: offsets[first] };
+    const isFree = plan.cuts[first].areaMm2 <= 0;
+    const what = whatItDoes(normal, sideOf(`${path}a`), sideOf(`${path}b`), plan.spaces, isFree);
     return {
       kind: 'cut',
-      plane: { normal: [normal[0], normal[1], normal[2]], offset: offsets[first] },
-      reason,
+      plane: { normal: [normal[0], normal[1], normal[2]], offset: plane.offset },
+      reason: reasonOf(node, plane, what, plan.cuts[first], plan.mirrors),
+      ...(node.locked && { locked: true }),
       above: explain(node.above, `${path}a`, first + 1),
       below: explain(node.below, `${path}b`, first + 1 + countCuts(node.above)),
     };
   };
-  const sideOf = (path: string) => bodies.filter((body) => leafPath(body).startsWith(path));
-  return explain(tree, '', 0);
+  return explain(plan.tree, '', 0);
 }
 
-function cutReason(
+function reasonOf(
+  { locked }: PlaneTree & { kind: 'cut' },
+  plane: Plane,
+  what: string,
+  figures: CutFigures,
+  mirrors: readonly Plane[],
+): string {
+  const clauses = [what];
+  if (mirrors.some((mirror) => isSamePlane(mirror, plane)))
+    clauses.push('it lies in the mirror plane of the model');
+  if (figures.areaMm2 > 0) clauses.push(`seam area ${areaInWords(figures.areaMm2)}`);
+  if (figures.outlineMm > 0) {
+    const inSight = Math.round((100 * figures.sightMm) / figures.outlineMm);
+    const follows =
+      figures.creaseMm > 0.1 * figures.outlineMm
+        ? `, ${mm(figures.creaseMm)} of it along an edge`
+        : '';
+    clauses.push(
+      `${mm(figures.outlineMm)} of line on the surface${follows}, ${inSight} % in sight`,
+    );
+  }
+  const sentence = `${clauses.join('; ')}.`;
+  if (!locked) return sentence;
+  return `Your own cut, kept where it is: ${sentence[0].toLowerCase()}${sentence.slice(1)}`;
+}
+
+function whatItDoes(
   normal: Vector3,
   above: readonly Body[],
   below: readonly Body[],
-  seamMm2: number,
-  space: BuildSpace,
+  spaces: readonly BuildSpace[],
+  isFree: boolean,
 ): string {
   const along = directionInWords(normal);
-  const mm = (length: number) => `${Number(length.toFixed(length < 10 ? 1 : 0))} mm`;
   const pieces = (count: number) => `${count} ${count === 1 ? 'piece' : 'pieces'}`;
   const [a, b] = [extent(above, normal), extent(below, normal)];
+  const space =
+    spaces.length === 1 ? spaceInWords(spaces[0]) : `one of the ${spaces.length} envelopes`;
   if (above.length === 0 || below.length === 0)
-    return `Meets nothing here: one side along ${along} is empty.`;
-  if (seamMm2 <= 0)
-    return `Parts loose bodies along ${along} without cutting any, so that ${pieces(above.length)} above and ${pieces(below.length)} below are planned apart.`;
-  const seam = `seam area ${areaInWords(seamMm2)}`;
+    return `Meets nothing here: one of its 2 sides along ${along} is empty`;
+  if (isFree)
+    return `Parts loose bodies along ${along} without cutting any, so that ${pieces(above.length)} above and ${pieces(below.length)} below are planned apart`;
   const whole = mm(extent([...above, ...below], normal));
   if (above.length === 1 && below.length === 1)
-    return `Splits ${whole} along ${along} into parts of ${mm(a)} and ${mm(b)} so that both fit ${spaceInWords(space)}; ${seam}.`;
+    return `Splits ${whole} along ${along} into parts of ${mm(a)} and ${mm(b)} so that both fit ${space}`;
   if (above.length === 1 || below.length === 1) {
     const [taken, left, rest] = above.length === 1 ? [a, b, below] : [b, a, above];
-    return `Takes ${mm(taken)} of ${whole} along ${along} off as one piece that fits ${spaceInWords(space)}; the other ${mm(left)} become ${pieces(rest.length)}; ${seam}.`;
+    return `Takes ${mm(taken)} of ${whole} along ${along} off as one piece that fits ${space}; the other ${mm(left)} become ${pieces(rest.length)}`;
   }
-  return `Divides ${whole} along ${along} into ${mm(a)} (${pieces(above.length)}) and ${mm(b)} (${pieces(below.length)}); ${seam}.`;
+  return `Divides ${whole} along ${along} into ${mm(a)} (${pieces(above.length)}) and ${mm(b)} (${pieces(below.length)})`;
+}
+
+const mm = (length: number) => `${Number(length.toFixed(length < 10 ? 1 : 0))} mm`;
+
+function isSamePlane(one: Plane, other: Plane): boolean {
+  const cosine =
+    one.normal[0] * other.normal[0] +
+    one.normal[1] * other.normal[1] +
+    one.normal[2] * other.normal[2];
+  const offset = cosine < 0 ? -other.offset : other.offset;
+  return Math.abs(cosine) > 1 - 1e-6 && Math.abs(one.offset - offset) < 0.1;
 }
 
 function directionInWords(normal: Vector3): string {
@@ -75,27 +121,4 @@ function extent(bodies: readonly Body[], normal: Vector3): number {
     high = Math.max(high, most);
   }
   return Math.max(0, high - low);
-}
-
-/** Area of each cut's section, mm², by its number in preorder: half the caps of both sides. */
-function seamAreas(bodies: readonly Body[], cuts: number): Float64Array {
-  const areas = new Float64Array(cuts);
-  for (const { mesh } of bodies) {
-    const { positions: p, indices, tags } = mesh;
-    if (!tags) continue;
-    for (let t = 0; t < tags.length; t++) {
-      if (tags[t] <= 0) continue;
-      const a = 3 * indices[3 * t];
-      const b = 3 * indices[3 * t + 1];
-      const c = 3 * indices[3 * t + 2];
-      const ux = p[b] - p[a];
-      const uy = p[b + 1] - p[a + 1];
-      const uz = p[b + 2] - p[a + 2];
-      const vx = p[c] - p[a];
-      const vy = p[c + 1] - p[a + 1];
-      const vz = p[c + 2] - p[a + 2];
-      areas[tags[t] - 1] += Math.hypot(uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx) / 4;
-    }
-  }
-  return areas;
 }

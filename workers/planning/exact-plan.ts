@@ -7,6 +7,8 @@ import {
 import { type PolygonTriangulator } from '../../shared/geometry/cutting/cut-mesh.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
+import { type Plane } from '../../shared/geometry/vectors/plane.js';
+import { partZones, type PlanZone } from './judging/plan-zone.js';
 import { poseExactly } from './pose-exactly.js';
 import { type PlanNode } from './plan-node.js';
 
@@ -21,7 +23,7 @@ export interface ExactPlan {
 
 export interface ExactCutting {
   readonly mesh: TriangleMesh;
-  readonly space: BuildSpace;
+  readonly spaces: readonly BuildSpace[];
   readonly triangulate: PolygonTriangulator;
   readonly toleranceMm: number;
   /** Called between cuts and checks with the part done; may throw to cancel. */
@@ -30,7 +32,7 @@ export interface ExactCutting {
 
 /** Cuts the exact model and lays every body on the bed. */
 export function cutExactly(tree: PlaneTree, cutting: ExactCutting): ExactPlan {
-  const { mesh, space, triangulate, toleranceMm, onStep } = cutting;
+  const { mesh, spaces, triangulate, toleranceMm, onStep } = cutting;
   const { bodies, offsets } = applyTree(mesh, tree, {
     triangulate,
     toleranceMm,
@@ -39,7 +41,7 @@ export function cutExactly(tree: PlaneTree, cutting: ExactCutting): ExactPlan {
   const over: { body: Body; byMm: number }[] = [];
   for (const [k, body] of bodies.entries()) {
     onStep(0.6 + (0.4 * k) / bodies.length);
-    const pose = poseExactly(body.mesh, space);
+    const pose = poseExactly(body.mesh, spaces);
     if (!pose.fits) over.push({ body, byMm: -pose.slackMm });
   }
   return { tree, bodies, offsets, over };
@@ -50,6 +52,7 @@ export function planeTreeOf(node: PlanNode): PlaneTree {
   return {
     kind: 'cut',
     plane: node.plane,
+    ...(node.motive === 'given' && { locked: true }),
     above: planeTreeOf(node.above),
     below: planeTreeOf(node.below),
   };
@@ -59,10 +62,10 @@ export function planeTreeOf(node: PlanNode): PlaneTree {
 export function listCuts(
   tree: PlaneTree,
   path = '',
-): { path: string; plane: { normal: readonly [number, number, number]; offset: number } }[] {
+): { path: string; plane: Plane; locked: boolean }[] {
   if (tree.kind === 'leaf') return [];
   return [
-    { path, plane: tree.plane },
+    { path, plane: tree.plane, locked: tree.locked ?? false },
     ...listCuts(tree.above, `${path}a`),
     ...listCuts(tree.below, `${path}b`),
   ];
@@ -82,7 +85,7 @@ export function withOffsets(tree: PlaneTree, offsets: readonly number[]): PlaneT
   if (tree.kind === 'leaf') return tree;
   const aboveCuts = countCuts(tree.above);
   return {
-    kind: 'cut',
+    ...tree,
     plane: { normal: tree.plane.normal, offset: offsets[0] },
     above: withOffsets(tree.above, offsets.slice(1, 1 + aboveCuts)),
     below: withOffsets(tree.below, offsets.slice(1 + aboveCuts)),
@@ -93,4 +96,30 @@ export function withOffsets(tree: PlaneTree, offsets: readonly number[]): PlaneT
 export function leafPath(body: Body): string {
   const dot = body.path.indexOf('.');
   return dot < 0 ? body.path : body.path.slice(0, dot);
+}
+
+/**
+ * The zones that lie in the leaf at `path`; null when a cut on the way there crosses one of its
+ * part. With no path the zones of the root.
+ */
+export function zonesOfLeaf(
+  tree: PlaneTree,
+  path: string,
+  zones: readonly PlanZone[],
+): readonly PlanZone[] | null {
+  if (tree.kind === 'leaf' || path === '') return zones;
+  const parted = partZones(zones, tree.plane);
+  if (!parted) return null;
+  return path[0] === 'a'
+    ? zonesOfLeaf(tree.above, path.slice(1), parted.above)
+    : zonesOfLeaf(tree.below, path.slice(1), parted.below);
+}
+
+/** Whether no cut of a tree comes near a zone that lies in what it cuts. */
+export function keepsZones(tree: PlaneTree, zones: readonly PlanZone[]): boolean {
+  if (tree.kind === 'leaf' || zones.length === 0) return true;
+  const parted = partZones(zones, tree.plane);
+  return (
+    parted !== null && keepsZones(tree.above, parted.above) && keepsZones(tree.below, parted.below)
+  );
 }

@@ -6,6 +6,9 @@ import { cross } from '../../shared/geometry/vectors/vector3.js';
 
 /** Rotations on the bed tried per resting direction, evenly over a quarter turn. */
 const TURNS = 4;
+/** Width, depth and height of the cell that parts are measured in, mm. */
+export type Cell = readonly [number, number, number];
+
 /** Directions whose cosine is above this are one axis. */
 const SAME_AXIS = 1 - 1e-9;
 
@@ -22,10 +25,14 @@ export interface FitFrames {
   /** Per frame three axis numbers: height, along, across. Length 3 × frameCount. */
   readonly frames: Uint16Array;
   readonly frameCount: number;
-  readonly space: BuildSpace;
+  /** Any of them will do. */
+  readonly spaces: readonly BuildSpace[];
 }
 
-export function makeFitFrames(space: BuildSpace, extraDowns: readonly Vector3[] = []): FitFrames {
+export function makeFitFrames(
+  spaces: readonly BuildSpace[],
+  extraDowns: readonly Vector3[] = [],
+): FitFrames {
   const axes: Vector3[] = [];
   const frames: number[] = [];
   const numberOf = (axis: Vector3): number => {
@@ -53,7 +60,7 @@ export function makeFitFrames(space: BuildSpace, extraDowns: readonly Vector3[] 
     axisCount: axes.length,
     frames: Uint16Array.from(frames),
     frameCount: frames.length / 3,
-    space,
+    spaces,
   };
 }
 
@@ -62,7 +69,7 @@ function isFirstOfPair([x, y, z]: Vector3): boolean {
 }
 
 /**
- * Room left in the best frame, mm; negative when no frame fits.
+ * Room left in the best frame of the roomiest space, mm; negative when no frame of any space fits.
  * @param low  least projection on each axis, length axisCount, read from `at`
  * @param high greatest projection; both −Infinity/Infinity reversed for an empty part, which fits
  */
@@ -72,7 +79,22 @@ export function roomInFrames(
   high: Float32Array | Float64Array,
   at = 0,
 ): number {
-  const { frames, space } = fit;
+  let best = -Infinity;
+  for (const space of fit.spaces) {
+    const room = roomInSpace(fit, space, low, high, at);
+    if (room > best) best = room;
+  }
+  return best;
+}
+
+function roomInSpace(
+  fit: FitFrames,
+  space: BuildSpace,
+  low: Float32Array | Float64Array,
+  high: Float32Array | Float64Array,
+  at: number,
+): number {
+  const { frames } = fit;
   const isRound = space.shape === 'round';
   const width = isRound ? space.diameterMm : space.widthMm;
   const depth = isRound ? space.diameterMm : space.depthMm;
@@ -143,13 +165,27 @@ function roundReach(
  */
 export function cellsInFrames(
   fit: FitFrames,
-  cell: readonly [number, number, number],
+  cells: readonly Cell[],
   low: Float32Array | Float64Array,
   high: Float32Array | Float64Array,
   at = 0,
 ): number {
+  let best = Infinity;
+  for (const cell of cells) {
+    const count = cellsOfSize(fit, cell, low, high, at);
+    if (count < best) best = count;
+  }
+  return best;
+}
+
+function cellsOfSize(
+  fit: FitFrames,
+  [width, depth, height]: Cell,
+  low: Float32Array | Float64Array,
+  high: Float32Array | Float64Array,
+  at: number,
+): number {
   const { frames } = fit;
-  const [width, depth, height] = cell;
   let best = Infinity;
   for (let k = 0; k < frames.length; k += 3) {
     const h = at + frames[k];

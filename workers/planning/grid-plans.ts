@@ -2,6 +2,9 @@ import { gridCell } from '../../shared/geometry/fitting/space-measures.js';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { wholeCells } from './fit-frames.js';
+import { partZones } from './judging/plan-zone.js';
+import { sectionSight } from './judging/section-sight.js';
+import { type PlanWeights } from './objectives.js';
 import { cutOf, leafOf, type PlanNode } from './plan-node.js';
 import { fitsWhole, type PlanPart, splitPart } from './plan-part.js';
 import { type SearchSpace } from './search-space.js';
@@ -54,27 +57,35 @@ const AXES: readonly Vector3[] = [
 ];
 
 /** A grid as a plan: halves the longest run of cells first and stops where everything fits. */
-export function gridPlan(part: PlanPart, grid: GridOffsets, space: SearchSpace): PlanNode | null {
-  if (fitsWhole(part)) return leafOf(part);
+export function gridPlan(
+  part: PlanPart,
+  grid: GridOffsets,
+  space: SearchSpace,
+  weights: PlanWeights,
+): PlanNode | null {
+  if (fitsWhole(part)) return leafOf(part, space, weights);
   const axis = [0, 1, 2].reduce((a, b) => (grid[b].length > grid[a].length ? b : a));
   const offsets = grid[axis];
   if (offsets.length === 0) return null;
   const middle = offsets.length >> 1;
   const plane = { normal: AXES[axis], offset: offsets[middle] };
-  const { above, below, seamMm2 } = splitPart(part, plane, 1, space);
+  if (!partZones(part.zones, plane)) return null;
+  const { above, below, seamMm2, bendingKpa } = splitPart(part, plane, space);
   const within = (kept: readonly number[]): GridOffsets => {
     const [x, y, z] = grid;
     return axis === 0 ? [kept, y, z] : axis === 1 ? [x, kept, z] : [x, y, kept];
   };
-  const upper = gridPlan(above, within(offsets.slice(middle + 1)), space);
-  const lower = upper && gridPlan(below, within(offsets.slice(0, middle)), space);
+  const upper = gridPlan(above, within(offsets.slice(middle + 1)), space, weights);
+  const lower = upper && gridPlan(below, within(offsets.slice(0, middle)), space, weights);
   if (!upper || !lower) return null;
-  const [width, depth] = space.cell;
-  return cutOf(part, plane, 'grid', (0.2 * seamMm2) / (width * depth), upper, lower);
+  const sightMm = sectionSight(part, plane, space);
+  const commonCost = (weights.seam * seamMm2) / space.leastSideMm ** 2;
+  const own = { commonCost, sightMm, bendingKpa };
+  return cutOf(part, plane, 'grid', own, upper, lower, weights);
 }
 
 /** All grid plans of a part on the proxy, the fewest pieces first. */
-export function gridPlans(part: PlanPart, space: SearchSpace): PlanNode[] {
+export function gridPlans(part: PlanPart, space: SearchSpace, weights: PlanWeights): PlanNode[] {
   const points = part.bodies.map((body) => boundingBox(body.mesh.positions));
   const edge = (side: 'min' | 'max', pick: (...values: number[]) => number): Vector3 => [
     pick(...points.map((box) => box[side][0])),
@@ -85,9 +96,10 @@ export function gridPlans(part: PlanPart, space: SearchSpace): PlanNode[] {
   const max = edge('max', Math.max);
   const size: Vector3 = [max[0] - min[0], max[1] - min[1], max[2] - min[2]];
   const found: PlanNode[] = [];
-  for (const grid of axisGrids(min, size, gridCell(space.space))) {
-    const plan = gridPlan(part, grid, space);
-    if (plan) found.push(plan);
-  }
+  for (const real of space.spaces)
+    for (const grid of axisGrids(min, size, gridCell(real))) {
+      const plan = gridPlan(part, grid, space, weights);
+      if (plan) found.push(plan);
+    }
   return found.sort((a, b) => a.pieces - b.pieces || a.cost - b.cost);
 }

@@ -29,10 +29,16 @@ const MOST_POINTS = 3_000;
  * the size of a set of its surface points no two of which can lie in one piece because they are
  * farther apart than the space's diagonal, the longest line inside it.
  * @param solids the model's loose solids, exact, mm
+ * @param spaces a piece may go to any: the largest volume and the longest diagonal bound it
  */
-export function lowerBound(solids: readonly TriangleMesh[], space: BuildSpace): PieceBound {
-  const capacity = spaceVolume(space);
-  const diagonal = spaceDiagonal(space);
+export function lowerBound(
+  solids: readonly TriangleMesh[],
+  spaces: readonly BuildSpace[],
+): PieceBound {
+  const roomiest = largest(spaces, spaceVolume);
+  const longest = largest(spaces, spaceDiagonal);
+  const capacity = spaceVolume(roomiest);
+  const diagonal = spaceDiagonal(longest);
   let pieces = 0;
   let byVolume = 0;
   let byDistance = 0;
@@ -53,15 +59,26 @@ export function lowerBound(solids: readonly TriangleMesh[], space: BuildSpace): 
   function inWords(): string {
     const litres = (mm3: number) => `${(mm3 / 1e6).toFixed(mm3 < 1e7 ? 2 : 1)} l`;
     if (byVolume > 0 && byDistance === 0 && solids.length === 1)
-      return `The solid is ${litres(volume)} and ${spaceInWords(space)} hold ${litres(capacity)}.`;
+      return `The solid is ${litres(volume)} and ${spaceInWords(roomiest)} hold ${litres(capacity)}.`;
     if (byDistance > 0 && byVolume === 0 && solids.length === 1)
-      return `${points} points of the surface lie more than ${diagonal.toFixed(1)} mm apart from one another, the longest line inside ${spaceInWords(space)}.`;
+      return `${points} points of the surface lie more than ${diagonal.toFixed(1)} mm apart from one another, the longest line inside ${spaceInWords(longest)}.`;
     if (solids.length > 1)
       return byVolume + byDistance === 0
         ? `The model has ${solids.length} loose solids.`
         : `The model has ${solids.length} loose solids, and each needs as many pieces as its volume and its length ask for.`;
     return 'Nothing in its volume or its length asks for more than one piece.';
   }
+}
+
+function largest(spaces: readonly BuildSpace[], of: (space: BuildSpace) => number): BuildSpace {
+  return spaces.reduce((a, b) => (of(b) > of(a) ? b : a));
+}
+
+/** How far a plan may be from the fewest pieces possible, in words. */
+export function gapInWords(pieces: number, bound: number): string {
+  if (pieces <= bound) return 'No plan can have fewer.';
+  const over = pieces - bound;
+  return `At most ${over} ${over === 1 ? 'piece' : 'pieces'} more than the fewest possible: no plan can have fewer than ${bound}.`;
 }
 
 /**

@@ -1,7 +1,8 @@
+import { type Preferences } from '../../shared/jobs/plan-wishes.js';
+
 /**
- * What the search wants, as separate pure functions, all in the unit "pieces": a whole piece
- * saved outweighs all the rest, which only ranks cuts of equal piece count. Weights are common
- * practice, no source.
+ * What the search wants, as separate pure functions, all in the unit "pieces". Weights and scales
+ * are common practice, no source.
  */
 
 /** What a cut is judged by before it is made. */
@@ -14,8 +15,12 @@ export interface CutFigures {
   readonly seamMm2: number;
   /** Smallest face of the space, mm²: the scale of seams. */
   readonly faceMm2: number;
-  /** Area that hangs over when both sides stand on the new faces. */
-  readonly overhangMm2: number;
+  /** Volume under leaning faces when both sides stand on the new faces: as much as it can be. */
+  readonly supportMm3: number;
+  /** Length of the seam on the surface, by exposure. */
+  readonly sightMm: number;
+  /** Of the section that runs inside a wall along the cut. */
+  readonly wallMm2: number;
   readonly surfaceMm2: number;
   /** Extent of the thinner side across the cut, mm. */
   readonly thinMm: number;
@@ -47,20 +52,26 @@ export function wasteCost(cut: CutFigures): number {
   return Math.max(0, 1 - (share * cut.cells) / FAIR_SHARE);
 }
 
-/** Long or wide seams show and take glue. */
+/** Wide seams take glue and have to be flat. */
 export function seamCost(cut: CutFigures): number {
   return Math.min(1, cut.seamMm2 / cut.faceMm2);
 }
 
-export function overhangCost(cut: CutFigures): number {
-  return cut.surfaceMm2 > 0 ? Math.min(1, cut.overhangMm2 / cut.surfaceMm2) : 0;
+/** Seams smaller than this leave no room for a joint of any kind, mm²: a 3 mm pin and its walls. */
+const LEAST_SEAM_MM2 = 25;
+
+export function smallSeamCost(cut: CutFigures): number {
+  if (cut.seamMm2 <= 0) return 0;
+  return Math.max(0, 1 - cut.seamMm2 / LEAST_SEAM_MM2);
 }
 
-/** Sides thinner than this are fragile and hard to glue, mm. */
-const SLIVER_MM = 12;
+export function sliverCost(cut: CutFigures, leastPieceMm: number): number {
+  return cut.thinMm >= leastPieceMm ? 0 : 1 - cut.thinMm / leastPieceMm;
+}
 
-export function sliverCost(cut: CutFigures): number {
-  return cut.thinMm >= SLIVER_MM ? 0 : 1 - cut.thinMm / SLIVER_MM;
+/** A cut along a wall leaves two sheets; a whole piece when all of the section is that. */
+export function wallCost(cut: CutFigures): number {
+  return cut.seamMm2 > 0 ? Math.min(1, cut.wallMm2 / cut.seamMm2) : 0;
 }
 
 export function balanceCost(cut: CutFigures): number {
@@ -68,21 +79,62 @@ export function balanceCost(cut: CutFigures): number {
   return total > 0 ? Math.abs(cut.volumeAboveMm3 - cut.volumeBelowMm3) / total : 0;
 }
 
-export interface CutWeights {
-  readonly seam: number;
-  readonly overhang: number;
-  readonly sliver: number;
-  readonly balance: number;
+/** Seam in full view that is worth a piece at weight 1, mm: a metre. */
+const SIGHT_PER_PIECE_MM = 1000;
+
+export function sightCost(sightMm: number, weights: PlanWeights): number {
+  return (weights.sight * sightMm) / SIGHT_PER_PIECE_MM;
 }
 
-export const defaultWeights: CutWeights = { seam: 0.2, overhang: 0.2, sliver: 0.6, balance: 0.05 };
+/** Stress at which a seam costs half of its weight, kPa: far below what epoxy holds. */
+const HALF_STRESS_KPA = 200;
 
-/** Everything but the number of pieces, in pieces. */
-export function qualityCost(cut: CutFigures, weights: CutWeights): number {
+export function bendingCost(bendingKpa: number, weights: PlanWeights): number {
+  return (weights.bending * bendingKpa) / (bendingKpa + HALF_STRESS_KPA);
+}
+
+/** How much a thing counts, in pieces. */
+export interface PlanWeights {
+  /** Whether a piece saved outweighs all the rest, which then only ranks plans of equal number. */
+  readonly isPiecesFirst: boolean;
+  /** Per 100 cm³ of support. */
+  readonly support: number;
+  /** Per metre of seam in full view. */
+  readonly sight: number;
+  /** Of a seam under great stress. */
+  readonly bending: number;
+  readonly seam: number;
+  readonly smallSeam: number;
+  readonly sliver: number;
+  readonly wall: number;
+  readonly balance: number;
+  readonly leastPieceMm: number;
+}
+
+/** Costs that have no slider: a plan without them is worse for everybody. */
+const COMMON = { seam: 0.1, smallSeam: 0.5, sliver: 0.6, wall: 0.8, balance: 0.05 };
+
+/** The person's preferences as weights: squares, so that the lower half of a slider is fine-grained. */
+export function weightsOf(preferences: Preferences, leastPieceMm: number): PlanWeights {
+  const { fewPieces, littleSupport, hiddenSeams, sturdySeams } = preferences;
+  const piece = 0.25 + 2.5 * fewPieces ** 2;
+  return {
+    ...COMMON,
+    isPiecesFirst: fewPieces >= 1,
+    support: (2 * littleSupport ** 2) / piece,
+    sight: (2 * hiddenSeams ** 2) / piece,
+    bending: (2 * sturdySeams ** 2) / piece,
+    leastPieceMm,
+  };
+}
+
+/** What makes a cut worse for everybody, in pieces. */
+export function commonCost(cut: CutFigures, weights: PlanWeights): number {
   return (
     weights.seam * seamCost(cut) +
-    weights.overhang * overhangCost(cut) +
-    weights.sliver * sliverCost(cut) +
+    weights.smallSeam * smallSeamCost(cut) +
+    weights.sliver * sliverCost(cut, weights.leastPieceMm) +
+    weights.wall * wallCost(cut) +
     weights.balance * balanceCost(cut)
   );
 }

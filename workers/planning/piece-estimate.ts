@@ -10,7 +10,12 @@ const PLANNED_SHARE = 0.65;
  * A cautious estimate of the pieces a model needs, made from its volume and surface alone, so that
  * hopeless jobs end at once: solids fill spaces, walls pass through cells with both their sides.
  */
-export function estimatePieces(mesh: TriangleMesh, space: BuildSpace): number {
+/** The spaces' least estimate: a piece may go to any. */
+export function estimatePieces(mesh: TriangleMesh, spaces: readonly BuildSpace[]): number {
+  return Math.min(...spaces.map((space) => estimateIn(mesh, space)));
+}
+
+function estimateIn(mesh: TriangleMesh, space: BuildSpace): number {
   const [width, depth, height] = gridCell(space);
   const filled = signedVolume(mesh) / (width * depth * height);
   const face = Math.max(width * depth, width * height, depth * height);

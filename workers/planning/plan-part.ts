@@ -5,9 +5,12 @@ import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { cutMesh } from '../../shared/geometry/cutting/cut-mesh.js';
 import { type Plane } from '../../shared/geometry/vectors/plane.js';
 import { cellsInFrames, extentsOf, roomInFrames } from './fit-frames.js';
+import { type BodySupport, leastSupport } from './judging/body-support.js';
+import { bendingStress, bondedSection, type Side, sideOf } from './judging/seam-strength.js';
+import { partZones, type PlanZone } from './judging/plan-zone.js';
 import { poseExactly } from './pose-exactly.js';
 import { type SearchSpace } from './search-space.js';
-import { signedFan } from './signed-fan.js';
+import { trialCaps } from './trial-caps.js';
 
 /** One loose solid of the trial model. */
 export interface PlanBody {
@@ -15,6 +18,8 @@ export interface PlanBody {
   /** The vertices that decide extents, flat xyz: all, or an outer selection of many. */
   readonly outer: Float64Array;
   readonly volumeMm3: number;
+  /** Middle of its volume. */
+  readonly middle: Side['middle'];
   /** Whether it fits the space, laid in its best orientation. */
   readonly fits: boolean;
   /** Rough number of spaces it fills; 1 when it fits. */
@@ -24,44 +29,67 @@ export interface PlanBody {
 /** What lies in one leaf of a growing tree: every further plane cuts all of its bodies. */
 export interface PlanPart {
   readonly bodies: readonly PlanBody[];
+  /** The keep-whole zones in here: no further plane may cross them. */
+  readonly zones: readonly PlanZone[];
 }
+
+/** Caps of all trial cuts are told apart by their tags, whatever search made them. */
+let nextCapTag = 1;
 
 /** Cut area that a plane leaves on a part, and the two parts. */
 export interface PartSplit {
   readonly above: PlanPart;
   readonly below: PlanPart;
   readonly seamMm2: number;
+  /** Bending stress of the most strained of the bodies' seams, kPa. */
+  readonly bendingKpa: number;
 }
 
-export function partOf(mesh: TriangleMesh, space: SearchSpace): PlanPart {
-  return { bodies: bodiesOf(mesh, space) };
+export function partOf(
+  mesh: TriangleMesh,
+  space: SearchSpace,
+  zones: readonly PlanZone[] = [],
+): PlanPart {
+  return { bodies: bodiesOf(mesh, space), zones };
 }
 
 export function fitsWhole(part: PlanPart): boolean {
   return part.bodies.every((body) => body.fits);
 }
 
-/** Cuts every body of a part that the plane crosses. Tags of new caps are `capTag`. */
-export function splitPart(
-  part: PlanPart,
-  plane: Plane,
-  capTag: number,
-  space: SearchSpace,
-): PartSplit {
+/**
+ * Cuts every body of a part that the plane crosses. Whoever asks
+ * has made sure that no zone is crossed; one that is goes with the side above.
+ */
+export function splitPart(part: PlanPart, plane: Plane, space: SearchSpace): PartSplit {
+  const capTag = nextCapTag++;
   const above: PlanBody[] = [];
   const below: PlanBody[] = [];
   let seamMm2 = 0;
+  let bendingKpa = 0;
   for (const body of part.bodies) {
-    const cut = cutMesh(body.mesh, plane, { triangulate: signedFan, capTag });
+    const cut = cutMesh(body.mesh, plane, { triangulate: trialCaps, capTag });
     if (cut.below === body.mesh) below.push(body);
     else if (cut.above === body.mesh) above.push(body);
     else {
       seamMm2 += cut.sectionAreaMm2;
+      const section = bondedSection(cut.below, plane, capTag);
+      if (section)
+        bendingKpa = Math.max(
+          bendingKpa,
+          bendingStress(section, sideOf([cut.above]), sideOf([cut.below])),
+        );
       above.push(...bodiesOf(cut.above, space));
       below.push(...bodiesOf(cut.below, space));
     }
   }
-  return { above: { bodies: above }, below: { bodies: below }, seamMm2 };
+  const zones = partZones(part.zones, plane) ?? { above: part.zones, below: [] };
+  return {
+    above: { bodies: above, zones: zones.above },
+    below: { bodies: below, zones: zones.below },
+    seamMm2,
+    bendingKpa,
+  };
 }
 
 function bodiesOf(mesh: TriangleMesh, space: SearchSpace): PlanBody[] {
@@ -130,16 +158,37 @@ function measureBody(mesh: TriangleMesh, space: SearchSpace): PlanBody {
   const outer = outerVertices(mesh.positions);
   extentsOf(fitFrames, outer, low, high);
   let room = roomInFrames(fitFrames, low, high);
-  const cells = Math.max(2, cellsInFrames(fitFrames, space.cell, low, high));
+  const cells = Math.max(2, cellsInFrames(fitFrames, space.cells, low, high));
   // The selection can only be too small, so what is far over stays over.
   if (outer !== mesh.positions && isNear(room, space)) {
     extentsOf(fitFrames, mesh.positions, low, high);
     room = roomInFrames(fitFrames, low, high);
   }
-  const fits = room >= 0 || (isNear(room, space) && poseExactly(mesh, space.fit, outer).fits);
-  return { mesh, outer, volumeMm3: signedVolume(mesh), fits, cells: fits ? 1 : cells };
+  const fits = room >= 0 || (isNear(room, space) && poseExactly(mesh, space.fits, outer).fits);
+  return { mesh, outer, ...sideOf([mesh]), fits, cells: fits ? 1 : cells };
 }
 
-function isNear(room: number, { cell }: SearchSpace): boolean {
-  return room > -NEAR_SHARE * Math.min(...cell);
+function isNear(room: number, { leastSideMm }: SearchSpace): boolean {
+  return room > -NEAR_SHARE * leastSideMm;
+}
+
+/** Columns across a trial body, and resting directions looked at: as coarse as ranks bodies well. */
+const TRIAL_COLUMNS = 36;
+const TRIAL_TRIES = 3;
+
+const supports = new WeakMap<PlanBody, BodySupport | null>();
+
+/** Support of a trial body that fits, in its own best orientation, mm³; found once a body. */
+export function supportOf(body: PlanBody, { fits, overhangDegrees }: SearchSpace): number {
+  let known = supports.get(body);
+  if (known === undefined) {
+    known = leastSupport(
+      body.mesh,
+      { spaces: fits, overhangDegrees, columns: TRIAL_COLUMNS, tries: TRIAL_TRIES },
+      body.outer,
+    );
+    supports.set(body, known);
+  }
+  // Only a diagonal holds it: as much support as a pyramid of its own volume, a rough guess.
+  return known?.supportMm3 ?? body.volumeMm3;
 }

@@ -4,23 +4,34 @@ import {
   shrinkSpace,
   spaceVolume,
 } from '../../shared/geometry/fitting/space-measures.js';
-import { type FitFrames, makeFitFrames } from './fit-frames.js';
+import { type Cell, type FitFrames, makeFitFrames } from './fit-frames.js';
+import { plainWorth, type SurfaceWorth } from './judging/surface-worth.js';
 
 /** Room beyond the placing tolerance of a cut and rounding to float32, mm. */
 const SPARE_MM = 0.01;
 
-/** The build space as the search sees it. */
-export interface SearchSpace {
-  /** The real space: the exact pieces have to fit in here. */
-  readonly space: BuildSpace;
-  /** What a trial part must fit in: the real space less what the proxy may be off. */
-  readonly fit: BuildSpace;
-  /** What new cuts aim at: a little less still, so that placing a cut cannot push a piece over. */
-  readonly aim: BuildSpace;
+/** What parts are judged by beside their size. */
+export interface Judging {
+  readonly worth: SurfaceWorth;
+  /** Faces that lean further from the vertical need support, degrees. */
+  readonly overhangDegrees: number;
+}
+
+const plainJudging: Judging = { worth: plainWorth, overhangDegrees: 45 };
+
+/** The build spaces as the search sees them; a piece may go to any. */
+export interface SearchSpace extends Judging {
+  /** The real spaces, the preferred first: the exact pieces have to fit in one. */
+  readonly spaces: readonly BuildSpace[];
+  /** What a trial part must fit in: the real spaces less what the proxy may be off. */
+  readonly fits: readonly BuildSpace[];
   readonly fitFrames: FitFrames;
+  /** What new cuts aim at: a little less still, so that placing a cut cannot push a piece over. */
   readonly aimFrames: FitFrames;
-  /** Width, depth and height of the cell that parts are measured in, mm. */
-  readonly cell: readonly [number, number, number];
+  readonly cells: readonly Cell[];
+  /** Shortest side of all spaces, mm. */
+  readonly leastSideMm: number;
+  /** Of the largest space. */
   readonly volumeMm3: number;
 }
 
@@ -29,19 +40,22 @@ export interface SearchSpace {
  * @param toleranceMm how far an exact cut may move from its wanted place
  */
 export function makeSearchSpace(
-  space: BuildSpace,
+  spaces: readonly BuildSpace[],
   deviationMm: number,
   toleranceMm: number,
+  judging: Judging = plainJudging,
 ): SearchSpace {
-  const fit = deviationMm > 0 ? shrinkSpace(space, deviationMm) : space;
-  const aim = shrinkSpace(fit, 2 * toleranceMm + SPARE_MM);
+  const fits = deviationMm > 0 ? spaces.map((space) => shrinkSpace(space, deviationMm)) : spaces;
+  const aims = fits.map((space) => shrinkSpace(space, 2 * toleranceMm + SPARE_MM));
+  const cells = aims.map(gridCell);
   return {
-    space,
-    fit,
-    aim,
-    fitFrames: makeFitFrames(fit),
-    aimFrames: makeFitFrames(aim),
-    cell: gridCell(aim),
-    volumeMm3: spaceVolume(space),
+    ...judging,
+    spaces,
+    fits,
+    fitFrames: makeFitFrames(fits),
+    aimFrames: makeFitFrames(aims),
+    cells,
+    leastSideMm: Math.min(...cells.flat()),
+    volumeMm3: Math.max(...spaces.map(spaceVolume)),
   };
 }

@@ -9,11 +9,17 @@ const SAME_OFFSET = 1e-4;
  * Where cuts across [low, high] are looked at, mm, ascending, all strictly inside: evenly, where
  * the range divides into equal lengths that a side of the space holds, and one full side from
  * either end.
- * @param sides the space's width, depth and height
+ * @param sides widths, depths and heights of the spaces
+ * @param wanted further places
  */
-export function sweepOffsets(low: number, high: number, sides: readonly number[]): Float64Array {
+export function sweepOffsets(
+  low: number,
+  high: number,
+  sides: readonly number[],
+  wanted: readonly number[] = [],
+): Float64Array {
   const range = high - low;
-  const found: number[] = [];
+  const found: number[] = [...wanted];
   for (let k = 1; k < EVEN_OFFSETS; k++) found.push(low + (range * k) / EVEN_OFFSETS);
   for (const side of new Set(sides)) {
     const parts = Math.ceil(range / side - 1e-9);

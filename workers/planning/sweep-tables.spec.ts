@@ -12,9 +12,10 @@ import { bodyNodes } from './body-nodes.js';
 import { extentsOf, makeFitFrames } from './fit-frames.js';
 import { signedFan } from './signed-fan.js';
 import { sweepOffsets } from './sweep-offsets.js';
+import { plainWorth } from './judging/surface-worth.js';
 import { rangeAlong, sweepTables } from './sweep-tables.js';
 
-const fit = makeFitFrames({ shape: 'rectangular', widthMm: 200, depthMm: 200, heightMm: 200 });
+const fit = makeFitFrames([{ shape: 'rectangular', widthMm: 200, depthMm: 200, heightMm: 200 }]);
 const spacingMm = 8;
 
 const shapes: [string, TriangleMesh][] = [
@@ -35,7 +36,8 @@ describe('sweepTables against real cuts', () => {
         const normal = randomDirection(random);
         const [low, high] = rangeAlong(mesh.positions, normal);
         const offsets = sweepOffsets(low, high, [200, 200, 200]);
-        const tables = sweepTables({ normal, low, high, offsets }, nodes, bodyFaces(mesh), fit);
+        const faces = bodyFaces(mesh, plainWorth);
+        const tables = sweepTables({ normal, low, high, offsets }, nodes, faces, fit, 45);
         for (let j = 0; j < offsets.length; j += 7) {
           const options = { triangulate: signedFan, capTag: 1 };
           const cut = cutMesh(mesh, { normal, offset: offsets[j] }, options);

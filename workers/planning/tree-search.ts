@@ -1,17 +1,38 @@
 import { seededRandom } from './seeded-random.js';
 import { type CutCandidate, cutCandidates } from './cut-candidates.js';
-import { type CutWeights } from './objectives.js';
-import { cutOf, isBetter, leafOf, type PlanNode } from './plan-node.js';
-import { fitsWhole, type PartSplit, type PlanBody, type PlanPart, splitPart } from './plan-part.js';
+import { partZones } from './judging/plan-zone.js';
+import { sectionSight } from './judging/section-sight.js';
+import { bendingCost, type PlanWeights } from './objectives.js';
+import { cutOf, isBetter, leafOf, type PlanNode, supportCost } from './plan-node.js';
+import {
+  fitsWhole,
+  type PartSplit,
+  type PlanBody,
+  type PlanPart,
+  splitPart,
+  supportOf,
+} from './plan-part.js';
+import { type CutMotive } from './plan-node.js';
 import { type SearchSpace } from './search-space.js';
 import { separatingPlane } from './separate-bodies.js';
+import { rangeAlong } from './sweep-tables.js';
+import { type Plane } from '../../shared/geometry/vectors/plane.js';
 
 export interface TreeSearchOptions {
   readonly space: SearchSpace;
-  readonly weights: CutWeights;
+  readonly weights: PlanWeights;
   readonly seed: number;
   /** Called before every sweep; may throw to cancel. */
   readonly onStep: () => void;
+  /**
+   * Support that a space's worth of the model is expected to need, mm³. Without it a search that
+   * minds support would nibble: crumbs need none, and what is left would seem to need none either.
+   */
+  readonly supportPerCellMm3?: number;
+  /** Work after which a plan in the making is given up; it then has a hopeless leaf. */
+  readonly giveUpAt?: number;
+  /** Whether to stop improving and take what there is. */
+  readonly isEnough?: () => boolean;
 }
 
 /** Cuts really made before the greedy search settles on one. */
@@ -42,6 +63,11 @@ export class TreeSearch {
 
   constructor(private readonly options: TreeSearchOptions) {}
 
+  /** Whether no more work is to be done. */
+  isOver(budget: number): boolean {
+    return this.work >= budget || (this.options.isEnough?.() ?? false);
+  }
+
   /** The best plan known of a part; at first one in which every cut is the best of a few. */
   greedy(part: PlanPart): PlanNode {
     const known = this.bestPlans.get(part);
@@ -51,12 +77,15 @@ export class TreeSearch {
     return plan;
   }
 
+  /** A part of which nothing more can be cut off (zones forbid it) ends in a hopeless leaf. */
   private makeGreedy(part: PlanPart): PlanNode {
-    if (fitsWhole(part)) return leafOf(part);
+    const { space, weights } = this.options;
+    if (fitsWhole(part)) return leafOf(part, space, weights);
     const separated = this.separate(part, (side) => this.greedy(side));
     if (separated) return separated;
+    if (this.work > (this.options.giveUpAt ?? Infinity)) return leafOf(part, space, weights);
     const made = this.bestCuts(part, GREEDY_TRIES);
-    if (made.length === 0) throw new Error('A part that does not fit has no cut.');
+    if (made.length === 0) return leafOf(part, space, weights);
     return this.planOf(part, made[0], (side) => this.greedy(side));
   }
 
@@ -67,29 +96,69 @@ export class TreeSearch {
    * @param budget work after which no more is tried
    */
   improve(plan: PlanNode, width: number, budget: number): PlanNode {
-    if (plan.kind === 'leaf' || plan.pieces <= 2 || this.work >= budget) return plan;
+    if (plan.kind === 'leaf' || this.isOver(budget)) return plan;
+    const { weights } = this.options;
     let best: PlanNode = plan;
-    if (plan.motive !== 'separates') {
+    if (plan.motive !== 'separates' && plan.motive !== 'given') {
       for (const made of this.bestCuts(plan.part, width)) {
-        if (this.work >= budget) break;
+        if (this.isOver(budget)) break;
         const other = this.planOf(plan.part, made, (side) => this.greedy(side));
-        if (isBetter(other, best)) best = other;
+        if (isBetter(other, best, weights)) best = other;
       }
     }
     if (best.kind === 'leaf') return best;
     const above = this.improve(best.above, width, budget);
     const below = this.improve(best.below, width, budget);
-    const quality = best.cost - best.above.cost - best.below.cost;
-    const improved = cutOf(best.part, best.plane, best.motive, quality, above, below);
-    this.bestPlans.set(improved.part, improved);
+    const improved = cutOf(best.part, best.plane, best.motive, best.own, above, below, weights);
+    if (best.motive !== 'given') this.bestPlans.set(improved.part, improved);
     return improved;
+  }
+
+  /**
+   * The plan that makes these planes first, in their order, through all that they meet, and plans
+   * the rest. Null when one of them crosses a keep-whole zone.
+   */
+  around(part: PlanPart, planes: readonly Plane[], motive: CutMotive = 'given'): PlanNode | null {
+    const [plane, ...rest] = planes;
+    if (!plane) return this.greedy(part);
+    const meets = part.bodies.some(({ mesh }) => {
+      const [low, high] = rangeAlong(mesh.positions, plane.normal);
+      return low < plane.offset && plane.offset < high;
+    });
+    if (!meets) return this.around(part, rest, motive);
+    if (!partZones(part.zones, plane)) return null;
+    const split = splitPart(part, plane, this.options.space);
+    const above = this.around(split.above, rest, motive);
+    const below = above && this.around(split.below, rest, motive);
+    if (!above || !below) return null;
+    const sightMm = sectionSight(part, plane, this.options.space);
+    const own = { commonCost: 0, sightMm, bendingKpa: split.bendingKpa };
+    return cutOf(part, plane, motive, own, above, below, this.options.weights);
+  }
+
+  /** The same cuts made on another part, mirrored or not: as long as every leaf fits. */
+  replay(part: PlanPart, tree: PlanNode, turn: (plane: Plane) => Plane): PlanNode {
+    const { space, weights } = this.options;
+    if (tree.kind === 'leaf') return leafOf(part, space, weights);
+    const plane = turn(tree.plane);
+    const split = splitPart(part, plane, space);
+    return cutOf(
+      part,
+      plane,
+      tree.motive,
+      { ...tree.own, bendingKpa: split.bendingKpa },
+      this.replay(split.above, tree.above, turn),
+      this.replay(split.below, tree.below, turn),
+      weights,
+    );
   }
 
   private separate(part: PlanPart, plan: (side: PlanPart) => PlanNode): PlanNode | null {
     const plane = separatingPlane(part);
-    if (!plane) return null;
-    const { above, below } = splitPart(part, plane, 1, this.options.space);
-    return cutOf(part, plane, 'separates', 0, plan(above), plan(below));
+    if (!plane || !partZones(part.zones, plane)) return null;
+    const { above, below } = splitPart(part, plane, this.options.space);
+    const free = { commonCost: 0, sightMm: 0, bendingKpa: 0 };
+    return cutOf(part, plane, 'separates', free, plan(above), plan(below), this.options.weights);
   }
 
   private planOf(
@@ -98,7 +167,9 @@ export class TreeSearch {
     plan: (side: PlanPart) => PlanNode,
   ): PlanNode {
     const [above, below] = [plan(split.above), plan(split.below)];
-    return cutOf(part, candidate.plane, candidate.kind, candidate.quality, above, below);
+    const { commonCost, sightMm } = candidate;
+    const own = { commonCost, sightMm, bendingKpa: split.bendingKpa };
+    return cutOf(part, candidate.plane, candidate.kind, own, above, below, this.options.weights);
   }
 
   /** Makes the `count` most promising cuts of a part, all different; the best first. */
@@ -132,10 +203,17 @@ export class TreeSearch {
     for (let k = 0; k < RETREATS && isOver(split, used.kind); k++) {
       const back = used.kind === 'takesAbove' ? candidate.stepMm / 2 : -candidate.stepMm / 2;
       const { normal, offset } = used.plane;
-      used = { ...used, plane: { normal, offset: offset + back } };
+      const drawn = { normal, offset: offset + back };
+      if (!partZones(part.zones, drawn)) break;
+      used = { ...used, plane: drawn };
       split = this.split(part, used);
     }
-    const value = expected(split.above) + expected(split.below) + used.quality + used.waste;
+    const value =
+      this.expected(split.above) +
+      this.expected(split.below) +
+      used.quality +
+      used.waste +
+      bendingCost(split.bendingKpa, this.options.weights);
     const made = { candidate: used, split, value };
     this.madeCuts.set(candidate, made);
     return made;
@@ -143,22 +221,36 @@ export class TreeSearch {
 
   private split(part: PlanPart, { plane }: CutCandidate): PartSplit {
     for (const body of part.bodies) this.work += STEPS_PER_CUT_INDEX * body.mesh.indices.length;
-    return splitPart(part, plane, ++this.capTag, this.options.space);
+    return splitPart(part, plane, this.options.space);
   }
-  private capTag = 0;
+
+  /** Pieces that a part is expected to become, with the support of those bodies that fit. */
+  private expected(part: PlanPart): number {
+    const { space, weights } = this.options;
+    let sum = 0;
+    for (const body of part.bodies) {
+      sum += body.cells;
+      if (weights.support === 0) continue;
+      if (!body.fits) {
+        sum += supportCost(body.cells * (this.options.supportPerCellMm3 ?? 0), weights);
+        continue;
+      }
+      sum += supportCost(supportOf(body, space), weights);
+      this.work += STEPS_PER_SUPPORT_INDEX * body.mesh.indices.length;
+    }
+    return sum;
+  }
 }
 
 /** Steps of a trial cut per triangle corner, its sides' extents included; measured, rough. */
 const STEPS_PER_CUT_INDEX = 60;
+/** The same for the support of a body in its best orientation. */
+const STEPS_PER_SUPPORT_INDEX = 120;
 
 function isOver(split: PartSplit, kind: CutCandidate['kind']): boolean {
   if (kind === 'takesAbove') return !fitsWhole(split.above) && split.above.bodies.length === 1;
   if (kind === 'takesBelow') return !fitsWhole(split.below) && split.below.bodies.length === 1;
   return false;
-}
-
-function expected(part: PlanPart): number {
-  return part.bodies.reduce((sum, body) => sum + body.cells, 0);
 }
 
 function largestPending(part: PlanPart): PlanBody {

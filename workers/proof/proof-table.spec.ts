@@ -26,7 +26,7 @@ const failed = (
 ) =>
   proofTable({
     pieces: [sound, { ...sound, name: 'P02', ...piece }],
-    space: bed,
+    spaces: [bed, bed],
     modelVolumeMm3: 2000,
     failures: [],
     ...more,
@@ -37,7 +37,7 @@ const failed = (
 describe('proofTable', () => {
   it('passes sound pieces that fill the bed to its edge', () => {
     expect(failed({})).toEqual([]);
-    expect(failed({}, { space: roundBed })).toEqual([]);
+    expect(failed({}, { spaces: [roundBed, roundBed] })).toEqual([]);
   });
 
   it.each([
@@ -60,7 +60,7 @@ describe('proofTable', () => {
     expect(over([10, 221, 10])).toHaveLength(1);
     expect(over([10, 10, 250.01])).toHaveLength(1);
     expect(over([10, 10, 10], [-0.001, 0, 0])).toHaveLength(1);
-    expect(failed({ radiusMm: 100.01 }, { space: roundBed })).toHaveLength(1);
+    expect(failed({ radiusMm: 100.01 }, { spaces: [roundBed, roundBed] })).toHaveLength(1);
   });
 
   it('compares the sum of the volumes with the model to one part in a million', () => {
@@ -78,7 +78,7 @@ describe('proofTable', () => {
   it('says which pieces have hollows without failing them', () => {
     const rows = proofTable({
       pieces: [{ ...sound, hollows: 2 }],
-      space: bed,
+      spaces: [bed],
       modelVolumeMm3: 1000,
       failures: [],
     });

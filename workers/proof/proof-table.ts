@@ -1,6 +1,7 @@
 import { type ProofRow } from '../../shared/jobs/plan-make.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { counted, length, listed, shown, spaceInWords, sum } from './measured-words.js';
+import { type ZoneClearance } from './zone-clearance.js';
 import { type WrittenPiece } from './measure-written-piece.js';
 
 /**
@@ -14,9 +15,12 @@ export const VOLUME_TOLERANCE = 1e-6;
 
 export interface ProofInput {
   pieces: readonly WrittenPiece[];
-  space: BuildSpace;
+  /** For each piece the space it goes to. */
+  spaces: readonly BuildSpace[];
   /** Volume of the solid that was cut, mm³. */
   modelVolumeMm3: number;
+  /** Seams measured against the keep-whole zones; absent when there are none. */
+  keepWhole?: ZoneClearance;
   /** Sentences about pieces that could not be finished; each fails a row of its own. */
   failures: readonly string[];
 }
@@ -30,8 +34,9 @@ export function proofTable(input: ProofInput): ProofRow[] {
     turnedOutward(pieces),
     oneBodyEach(pieces),
     restsOnBed(pieces),
-    fitsTheSpace(pieces, input.space),
+    fitsTheSpaces(pieces, input.spaces),
     volumesAddUp(pieces, input.modelVolumeMm3),
+    ...(input.keepWhole ? [zonesStayWhole(input.keepWhole)] : []),
     ...input.failures.map((sentence) => ({
       check: 'Finishing of every piece',
       measured: sentence,
@@ -122,9 +127,10 @@ function restsOnBed(pieces: readonly WrittenPiece[]): ProofRow {
   };
 }
 
-function fitsTheSpace(pieces: readonly WrittenPiece[], space: BuildSpace): ProofRow {
-  const bad = pieces.filter((piece) => !pieceFits(piece, space));
-  const tightest = worstOf(pieces, (piece) => overhangMm(piece, space));
+function fitsTheSpaces(pieces: readonly WrittenPiece[], spaces: readonly BuildSpace[]): ProofRow {
+  const spaceOf = new Map(pieces.map((piece, k) => [piece, spaces[k]]));
+  const bad = pieces.filter((piece) => !pieceFits(piece, spaceOf.get(piece)!));
+  const tightest = worstOf(pieces, (piece) => overhangMm(piece, spaceOf.get(piece)!));
   const room = Math.max(0, -tightest.value);
   return {
     check: 'Pieces fit the build volume',
@@ -132,8 +138,22 @@ function fitsTheSpace(pieces: readonly WrittenPiece[], space: BuildSpace): Proof
       bad.length > 0
         ? `${listed(bad)} over, ${tightest.name} by ${length(tightest.value)} mm`
         : `least room ${length(room)} mm (${tightest.name})`,
-    limit: `${spaceInWords(space)}, ± ${FIT_TOLERANCE_MM} mm`,
+    limit: `${[...new Set(spaces.map(spaceInWords))].join(' or ')}, ± ${FIT_TOLERANCE_MM} mm`,
     passed: bad.length === 0,
+  };
+}
+
+function zonesStayWhole({ zones, leastMm, nearest, crossed }: ZoneClearance): ProofRow {
+  return {
+    check: 'Keep-whole zones are whole',
+    measured:
+      crossed.length > 0
+        ? `seams in ${crossed.map((name) => `“${name}”`).join(', ')}`
+        : leastMm === Infinity
+          ? `no seam near ${counted(zones, 'zone')}`
+          : `nearest seam ${length(leastMm)} mm from “${nearest}”`,
+    limit: 'no seam inside any of them',
+    passed: crossed.length === 0,
   };
 }
 

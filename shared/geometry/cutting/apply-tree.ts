@@ -11,6 +11,8 @@ export type PlaneTree =
   | {
       readonly kind: 'cut';
       readonly plane: Plane;
+      /** A cut that stays exactly where it is, whatever the tolerance. */
+      readonly locked?: boolean | undefined;
       readonly above: PlaneTree;
       readonly below: PlaneTree;
     };
@@ -60,7 +62,8 @@ export function applyTree(mesh: TriangleMesh, tree: PlaneTree, options: TreeOpti
       }
       return;
     }
-    const plane = placeCut(part, node.plane, options.toleranceMm, snapMm);
+    const toleranceMm = node.locked ? 0 : options.toleranceMm;
+    const plane = placeCut(part, node.plane, toleranceMm, snapMm);
     offsets.push(plane.offset);
     const cut = cutMesh(part, plane, {
       triangulate: options.triangulate,

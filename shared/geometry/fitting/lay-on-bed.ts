@@ -58,12 +58,15 @@ export function layOnBed(
   return best as BedPose;
 }
 
-/** The pose on one resting direction, or null when it leaves no more than `atLeast` of room. */
-function poseOn(
+/**
+ * The pose on one resting direction, or null when it leaves no more than `atLeast` of room.
+ * @param support flat xyz, mm, whose hull is the piece's hull
+ */
+export function poseOn(
   support: Float64Array,
   space: BuildSpace,
   down: Vector3,
-  atLeast: number,
+  atLeast = -Infinity,
 ): BedPose | null {
   const [ux, uy, uz, vx, vy, vz] = bedAxes(down);
   const count = support.length / 3;
