@@ -41,8 +41,8 @@ export type Preferences = z.infer<typeof preferencesSchema>;
 /** What a person asks of a plan; stored in its recipe. */
 export const planWishes = z.object({
   preferences: preferencesSchema.default({
-    fewPieces: 0.8,
-    littleSupport: 0.5,
+    fewPieces: 0.75,
+    littleSupport: 0.75,
     hiddenSeams: 0.5,
     sturdySeams: 0.3,
   }),

@@ -33,6 +33,8 @@ export interface CutCandidate {
   readonly commonCost: number;
   /** Length of its seam on the surface, by the worth of the surface, mm. */
   readonly sightMm: number;
+  /** Whether one side is so little of the body that the cut is no progress. */
+  readonly isCrumb: boolean;
   /** Room given away by a fitting side, in pieces. */
   readonly waste: number;
   /** How far the offset may be drawn back towards the fitting side's end, mm. */
@@ -59,6 +61,8 @@ export interface SweptCuts {
 
 /** Steps per triangle of a sweep, in units of one comparison of a node with one extent. */
 const STEPS_PER_FACE = 14;
+/** Steps of a sweep whatever the body: judging its offsets. */
+const STEPS_PER_SWEEP = 15_000;
 
 /**
  * Sweeps one body of a part along all its directions. No cut comes near a keep-whole zone of the
@@ -81,7 +85,8 @@ export function cutCandidates(
       return middle >= min[axis] && middle <= max[axis];
     });
   const found: CutCandidate[] = [];
-  const perSweep = nodes.count * fit.axisCount + STEPS_PER_FACE * faces.areas.length;
+  const perSweep =
+    STEPS_PER_SWEEP + nodes.count * fit.axisCount + STEPS_PER_FACE * faces.areas.length;
   let work = 0;
   for (const normal of sweepDirections(body.mesh, random)) {
     work += perSweep;
@@ -110,9 +115,8 @@ export function cutCandidates(
       const j = offsets.indexOf(offset);
       if (j >= 0) tables.sightMm[j] -= (1 - CREASE_SHARE) * Math.min(lengthMm, tables.sightMm[j]);
     }
-    found.push(
-      ...judgeSweep(tables, { part, body, space, weights, nodes, surfaceMm2: faces.surfaceMm2 }),
-    );
+    const judged = { part, body, space, weights, nodes, surfaceMm2: faces.surfaceMm2 };
+    found.push(...judgeSweep(tables, judged).filter((cut) => !cut.isCrumb));
   }
   return { cuts: found.sort((a, b) => a.score - b.score), work };
 }
@@ -153,6 +157,7 @@ function judgeSweep(tables: SweepTables, judging: Judging): CutCandidate[] {
       quality,
       commonCost: common,
       sightMm: figures[j].sightMm,
+      isCrumb: isCrumb(figures[j]),
       waste,
       score: expectedPieces(figures[j]) + waste + quality + support,
       stepMm: (tables.high - tables.low) / rows,
@@ -175,6 +180,16 @@ function judgeSweep(tables: SweepTables, judging: Judging): CutCandidate[] {
   dividing.sort((a, b) => a.score - b.score);
   found.push(...dividing.slice(0, DIVIDING_CUTS));
   return found;
+}
+
+/** Less of a body's volume and of its surface than that is a crumb. */
+const CRUMB_SHARE = 1e-3;
+
+function isCrumb(cut: CutFigures): boolean {
+  const total = cut.volumeAboveMm3 + cut.volumeBelowMm3;
+  const volume = Math.min(cut.volumeAboveMm3, cut.volumeBelowMm3) / (total || 1);
+  const above = cut.surfaceAboveMm2 / (cut.surfaceMm2 || 1);
+  return volume < CRUMB_SHARE && Math.min(above, 1 - above) < CRUMB_SHARE;
 }
 
 function best(options: readonly CutCandidate[]): CutCandidate {

@@ -17,10 +17,13 @@ import { TreeSearch } from './tree-search.js';
 /** Cuts tried at every node of the plan that is being improved, pass after pass. */
 const IMPROVE_WIDTHS = [5, 10, 20];
 /** Inner-loop steps of the search by the person's own weights: about three seconds on one core of 2024. */
-const WORK_BUDGET = 0.42e9;
+const WORK_BUDGET = 0.5e9;
 /** Searches that lean to one side get this share of it; the one for few pieces is the hardest. */
-const LEANING_SHARE = 0.4;
+const LEANING_SHARE = 0.3;
 const FEW_PIECES_SHARE = 0.8;
+
+/** Preferences between few pieces and little support, where many good plans lie. */
+const BETWEEN = { fewPieces: 0.85, littleSupport: 0.5, hiddenSeams: 0.4, sturdySeams: 0.3 };
 
 export interface FoundPlans {
   /** Plans on the proxy, the best by the person's weights first; at least one. */
@@ -100,11 +103,12 @@ export function searchPlans(input: PlanSearch): FoundPlans {
     }
   };
 
-  // Few pieces first: that search cannot go astray, and tells how much support is usual.
+  // Few pieces first: that search cannot go astray, and tells how much support is usual. The
+  // person's own comes last and begins with the best of all that was found.
   const order = [
     ...leanings.filter((one) => one.isPiecesFirst),
-    own,
     ...leanings.filter((one) => !one.isPiecesFirst),
+    own,
   ];
   for (const weights of order) {
     const share = weights === own ? 1 : weights.isPiecesFirst ? FEW_PIECES_SHARE : LEANING_SHARE;
@@ -154,9 +158,8 @@ function fewest(plans: readonly PlanNode[]): number | null {
 /** Weights that care for one thing above all, those like the person's own left out. */
 function leaningWeights(own: PlanWeights, { leastPieceMm }: PlanWishes): PlanWeights[] {
   const known = new Set([JSON.stringify(own)]);
-  return preferencePresets
-    .filter(({ id }) => id !== 'even')
-    .map(({ preferences }) => weightsOf(preferences, leastPieceMm))
+  return [...preferencePresets.map(({ preferences }) => preferences), BETWEEN]
+    .map((preferences) => weightsOf(preferences, leastPieceMm))
     .filter((weights) => {
       const key = JSON.stringify(weights);
       return !known.has(key) && known.add(key);

@@ -3,7 +3,14 @@ import { type CutCandidate, cutCandidates } from './cut-candidates.js';
 import { partZones } from './judging/plan-zone.js';
 import { sectionSight } from './judging/section-sight.js';
 import { bendingCost, type PlanWeights } from './objectives.js';
-import { cutOf, isBetter, leafOf, type PlanNode, supportCost } from './plan-node.js';
+import {
+  cutOf,
+  HOPELESS_PIECES,
+  isBetter,
+  leafOf,
+  type PlanNode,
+  supportCost,
+} from './plan-node.js';
 import {
   fitsWhole,
   type PartSplit,
@@ -37,6 +44,10 @@ export interface TreeSearchOptions {
 
 /** Cuts really made before the greedy search settles on one. */
 const GREEDY_TRIES = 3;
+/** Cuts below cuts, at most: more only shave off crumbs. */
+const DEEPEST = 150;
+/** How often a greedy plan that came to nothing is begun otherwise. */
+const MOST_WAYS_BACK = 30;
 /** A fitting side that turns out to be over is drawn back this often. */
 const RETREATS = 2;
 
@@ -57,6 +68,8 @@ interface MadeCut {
  */
 export class TreeSearch {
   work = 0;
+  private depth = 0;
+  private wayBacks = 0;
   private readonly bestPlans = new WeakMap<PlanPart, PlanNode>();
   private readonly candidates = new WeakMap<PlanPart, CutCandidate[]>();
   private readonly madeCuts = new WeakMap<CutCandidate, MadeCut>();
@@ -72,7 +85,9 @@ export class TreeSearch {
   greedy(part: PlanPart): PlanNode {
     const known = this.bestPlans.get(part);
     if (known) return known;
+    this.depth++;
     const plan = this.makeGreedy(part);
+    this.depth--;
     this.bestPlans.set(part, plan);
     return plan;
   }
@@ -83,10 +98,16 @@ export class TreeSearch {
     if (fitsWhole(part)) return leafOf(part, space, weights);
     const separated = this.separate(part, (side) => this.greedy(side));
     if (separated) return separated;
-    if (this.work > (this.options.giveUpAt ?? Infinity)) return leafOf(part, space, weights);
+    if (this.work > (this.options.giveUpAt ?? Infinity) || this.depth > DEEPEST)
+      return leafOf(part, space, weights);
     const made = this.bestCuts(part, GREEDY_TRIES);
-    if (made.length === 0) return leafOf(part, space, weights);
-    return this.planOf(part, made[0], (side) => this.greedy(side));
+    let plan: PlanNode = leafOf(part, space, weights);
+    for (const cut of made) {
+      plan = this.planOf(part, cut, (side) => this.greedy(side));
+      // Zones may leave a side of which nothing can be made; another cut may do better.
+      if (plan.pieces < HOPELESS_PIECES || this.wayBacks++ > MOST_WAYS_BACK) break;
+    }
+    return plan;
   }
 
   /**
@@ -176,7 +197,9 @@ export class TreeSearch {
   private bestCuts(part: PlanPart, count: number): MadeCut[] {
     const made: MadeCut[] = [];
     for (const candidate of diverse(this.candidatesOf(part), count)) {
-      made.push(this.make(part, candidate));
+      const cut = this.make(part, candidate);
+      // Drawn back past the body's end it cuts nothing.
+      if (cut.split.above.bodies.length > 0 && cut.split.below.bodies.length > 0) made.push(cut);
     }
     return made.sort((a, b) => a.value - b.value);
   }
@@ -220,7 +243,8 @@ export class TreeSearch {
   }
 
   private split(part: PlanPart, { plane }: CutCandidate): PartSplit {
-    for (const body of part.bodies) this.work += STEPS_PER_CUT_INDEX * body.mesh.indices.length;
+    for (const body of part.bodies)
+      this.work += STEPS_PER_CUT + STEPS_PER_CUT_INDEX * body.mesh.indices.length;
     return splitPart(part, plane, this.options.space);
   }
 
@@ -242,6 +266,8 @@ export class TreeSearch {
   }
 }
 
+/** Steps of a trial cut whatever the body: posing both sides. */
+const STEPS_PER_CUT = 20_000;
 /** Steps of a trial cut per triangle corner, its sides' extents included; measured, rough. */
 const STEPS_PER_CUT_INDEX = 60;
 /** The same for the support of a body in its best orientation. */

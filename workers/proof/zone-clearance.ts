@@ -42,6 +42,10 @@ export function measureZones(
   return { zones: zones.length, leastMm, nearest, crossed };
 }
 
+/** Farther off than this the distance of the boxes will do for painted zones, mm. */
+const FAR_MM = 20;
+const LEAST_AREA_MM2 = 1e-9;
+
 function cutFaces({ positions, indices, tags }: TriangleMesh): Triangle[] {
   const found: Triangle[] = [];
   for (let t = 0; t < indices.length / 3; t++) {
@@ -49,7 +53,9 @@ function cutFaces({ positions, indices, tags }: TriangleMesh): Triangle[] {
     const [a, b, c] = [0, 1, 2].map((corner) =>
       new Vector3().fromArray(positions, 3 * indices[3 * t + corner]),
     );
-    found.push(new Triangle(a, b, c));
+    const face = new Triangle(a, b, c);
+    // A triangle of no area has no nearest point; its neighbours cover it.
+    if (face.getArea() > LEAST_AREA_MM2) found.push(face);
   }
   return found;
 }
@@ -92,7 +98,8 @@ function distanceTo(zone: Zone, solid: TriangleMesh): (face: Triangle) => number
   const own = new Box3();
   return (face) => {
     own.setFromPoints([face.a, face.b, face.c]);
-    if (!own.intersectsBox(around)) return gapBetween(own, around);
+    const apart = gapBetween(own, around);
+    if (apart > FAR_MM) return apart;
     let least = Infinity;
     for (const point of points)
       least = Math.min(least, face.closestPointToPoint(point, at).distanceTo(point));

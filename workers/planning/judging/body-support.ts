@@ -61,7 +61,7 @@ export function leastSupport(
     if (space < 0) continue;
     tried++;
     const supportMm3 =
-      bounds[k] <= NEXT_TO_NOTHING_MM3 ? bounds[k] : measured(mesh, downs[k], task);
+      bounds[k] <= NEXT_TO_NOTHING_MM3 ? Math.max(0, bounds[k]) : measured(mesh, downs[k], task);
     if (!best || supportMm3 < best.supportMm3) best = { supportMm3, down: downs[k], space };
     if (best.supportMm3 <= NEXT_TO_NOTHING_MM3) break;
   }
