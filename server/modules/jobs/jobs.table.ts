@@ -33,6 +33,8 @@ export const jobs = mysqlTable(
     output: json('output'),
     error: json('error').$type<JobError>(),
     attempts: int('attempts').notNull().default(0),
+    /** Someone wants the job to end with the best it has. */
+    enoughRequested: boolean('enough_requested').notNull().default(false),
     cancelRequested: boolean('cancel_requested').notNull().default(false),
     leaseToken: char('lease_token', { length: 36 }),
     leaseUntil: momentColumn('lease_until'),
