@@ -18,6 +18,10 @@ export const errorCodes = [
   'envelope.nameTaken',
   'plan.notFound',
   'plan.notReady',
+  'plan.offerNotFound',
+  'plan.offerOutdated',
+  'plan.offerNotFound',
+  'plan.offerOutdated',
   'job.notFound',
   'server.failed',
 ] as const;

@@ -1,12 +1,22 @@
 import * as z from 'zod';
-import { planOutput } from '../jobs/plan-make.js';
+import { objectivesSchema, planOutput } from '../jobs/plan-make.js';
+import { planWishes } from '../jobs/plan-wishes.js';
 import { envelopeResponse } from './envelopes.contract.js';
 import { recordId } from './ids.js';
 import { jobResponse } from './jobs.contract.js';
 
-export const planRequest = z.object({
+const planOrder = z.object({
   modelId: recordId,
-  envelopeId: recordId,
+  /** Pieces go to this envelope when it holds them; only an offer brings its own. */
+  envelopeId: recordId.optional(),
+  /** Further envelopes, for pieces that the ones before do not hold. */
+  otherEnvelopeIds: z.array(recordId).max(7).default([]),
+  wishes: planWishes.optional(),
+  /**
+   * Another plan that the same search found: its cuts are made as they are, with the envelopes,
+   * wishes and seed of that plan.
+   */
+  fromOffer: z.object({ planId: recordId, offer: z.number().int().min(0).max(99) }).optional(),
   seed: z
     .number()
     .int()
@@ -14,6 +24,10 @@ export const planRequest = z.object({
     .max(2 ** 31 - 1)
     .default(1),
 });
+export const planRequest = planOrder.refine(
+  (order) => order.envelopeId !== undefined || order.fromOffer !== undefined,
+  { path: ['envelopeId'], message: 'Choose an envelope' },
+);
 export type PlanRequest = z.input<typeof planRequest>;
 
 export const planSummary = z.object({
@@ -26,11 +40,17 @@ export const planSummary = z.object({
   seed: z.number().int(),
   /** The envelope as it was when the plan was made. */
   envelope: envelopeResponse,
+  otherEnvelopes: z.array(envelopeResponse),
+  wishes: planWishes,
+  /** Number of the plan among whose offers this was found; null for a plan that was searched. */
+  fromPlan: z.number().int().nullable(),
   createdAt: z.iso.datetime(),
   createdBy: z.string(),
   job: jobResponse,
   pieceCount: z.number().int().nullable(),
   allPassed: z.boolean().nullable(),
+  /** What the plans of a model are compared by; null until made, and for plans of before. */
+  objectives: objectivesSchema.nullable(),
 });
 export type PlanSummary = z.infer<typeof planSummary>;
 export const planListResponse = z.object({ plans: z.array(planSummary) });

@@ -3,6 +3,7 @@ import { afterAll, beforeAll, describe, expect, inject, it } from 'vitest';
 import { modelResponse } from '../../shared/api/models.contract.js';
 import { planListResponse, planResponse } from '../../shared/api/plans.contract.js';
 import { jobSchemas } from '../../shared/jobs/job-map.js';
+import { planWishes, usualWishes } from '../../shared/jobs/plan-wishes.js';
 import type { ApiClient } from './support/api-client.js';
 import { startTestProduct, type TestProduct } from './support/test-product.js';
 import {
@@ -213,6 +214,13 @@ describe('ordering a plan', () => {
     ['a seed that is no whole number', { seed: 1.5 }],
     ['no model', { modelId: undefined }],
     ['an envelope that is no identifier', { envelopeId: 'large' }],
+    ['neither envelope nor offer', { envelopeId: undefined }],
+    ['a preference beyond its scale', { wishes: { preferences: { fewPieces: 2 } } }],
+    [
+      'a zone without a name',
+      { wishes: { keepWhole: [{ shape: 'sphere', centre: [0, 0, 0], radiusMm: 5 }] } },
+    ],
+    ['a ninth envelope', { otherEnvelopeIds: Array(8).fill('a'.repeat(20)) }],
   ])('is refused with %s', async (_case, change) => {
     const body = { modelId: 'a'.repeat(20), envelopeId, seed: 1, ...change };
     const response = await designer.send('post', '/api/plans', body);
@@ -284,6 +292,120 @@ describe('a finished plan', () => {
       [jobId, model.revision.job.id],
     );
     expect(left).toEqual([]);
+  });
+});
+
+describe('what is asked of a plan', () => {
+  const wishes = planWishes.parse({
+    preferences: { fewPieces: 0.4, littleSupport: 1, hiddenSeams: 0.2, sturdySeams: 0.2 },
+    showDirections: [[0, -1, 0]],
+    keepWhole: [{ shape: 'sphere', name: 'boss', centre: [1, 2, 3], radiusMm: 9 }],
+    lockedCuts: [{ normal: [0, 0, 1], offset: 120 }],
+  });
+
+  async function finishedPlan(order: object) {
+    const model = await inspectedModel(product, designer);
+    const plan = await designer.send('post', '/api/plans', { modelId: model.id, ...order });
+    expect(plan.status).toBe(201);
+    const jobId = plan.body.job.id as string;
+    const output = await planResult(product, jobId);
+    output.objectives = { pieces: 2, supportMm3: 500, visibleSeamMm: 900, weakestSeamKpa: 3 };
+    output.offers = [
+      { bestAt: ['fewest pieces'], objectives: output.objectives, tree: output.recipe.tree },
+      { bestAt: ['least support'], objectives: output.objectives, tree: output.recipe.tree },
+    ];
+    output.chosenOffer = 0;
+    await finishJob(product, jobId, { state: 'done', output });
+    await settle();
+    return { model, id: plan.body.id as string, jobId, output };
+  }
+
+  it('goes to the worker and stays with the plan, several envelopes in their order', async () => {
+    const tall = { ...boxEnvelope, name: 'Tall bed', heightMm: 900, marginMm: 5 };
+    const other = (await lead.send('post', '/api/envelopes', tall)).body.id as string;
+    const order = { envelopeId, otherEnvelopeIds: [other, envelopeId], wishes };
+    const { id, jobId } = await finishedPlan(order);
+    expect(await inputOf<'plan.make'>(product, jobId)).toMatchObject({
+      space: { heightMm: 250 },
+      otherSpaces: [{ shape: 'rectangular', heightMm: 900, widthMm: boxEnvelope.widthMm - 10 }],
+      wishes,
+      tree: null,
+    });
+    const stored = planResponse.parse((await designer.get(`/api/plans/${id}`)).body);
+    expect(stored.otherEnvelopes.map((one) => one.name)).toEqual(['Tall bed']);
+    expect(stored).toMatchObject({ wishes, fromPlan: null, objectives: { pieces: 2 } });
+    const { plans } = planListResponse.parse((await designer.get('/api/plans')).body);
+    expect(plans.find((plan) => plan.id === id)?.objectives).toEqual(stored.objectives);
+  });
+
+  it('is taken over, with the cuts, by a plan made from an offer', async () => {
+    const { model, id, output } = await finishedPlan({ envelopeId, wishes, seed: 7 });
+    const order = { modelId: model.id, fromOffer: { planId: id, offer: 1 } };
+    const made = planResponse.parse((await designer.send('post', '/api/plans', order)).body);
+    expect(made).toMatchObject({ seed: 7, wishes, fromPlan: 1, number: 2 });
+    expect(made.envelope.id).toBe(envelopeId);
+    const input = await inputOf<'plan.make'>(product, made.job.id);
+    expect(input.tree).toEqual(output.offers[1]!.tree);
+    expect(input.wishes).toEqual(wishes);
+  });
+
+  it('is refused for an offer that is not there, is not ready, or is of another scale or workshop', async () => {
+    const { model, id } = await finishedPlan({ envelopeId });
+    const from = (planId: string, offer: number, modelId: string = model.id) =>
+      designer.send('post', '/api/plans', { modelId, fromOffer: { planId, offer } });
+    const codeOf = async (answer: ReturnType<typeof from>) => {
+      const { status, body } = await answer;
+      return [status, body.error.code];
+    };
+    expect(await codeOf(from(id, 2))).toEqual([404, 'plan.offerNotFound']);
+    expect(await codeOf(from('f'.repeat(20), 0))).toEqual([404, 'plan.notFound']);
+    const waiting = (await makePlan(model.id)).body.id as string;
+    expect(await codeOf(from(waiting, 0))).toEqual([409, 'plan.notReady']);
+    const another = await inspectedModel(product, designer);
+    expect(await codeOf(from(id, 0, another.id))).toEqual([409, 'plan.offerOutdated']);
+    await product.database.pool.query('UPDATE plans SET millimetres_per_unit = 25.4 WHERE id = ?', [
+      id,
+    ]);
+    expect(await codeOf(from(id, 0))).toEqual([409, 'plan.offerOutdated']);
+  });
+
+  it('is as usual for plans stored before anything could be asked', async () => {
+    const { id } = await finishedPlan({ envelopeId });
+    await product.database.pool.query(
+      `UPDATE plans SET wishes = NULL, other_envelopes = NULL, objectives = NULL,
+       result = JSON_REMOVE(result, '$.offers', '$.objectives', '$.chosenOffer', '$.bounds.gap',
+       '$.recipe.wishes', '$.recipe.otherSpaces', '$.pieces[0].supportMm3', '$.seams[0].visibleMm')
+       WHERE id = ?`,
+      [id],
+    );
+    const old = planResponse.parse((await designer.get(`/api/plans/${id}`)).body);
+    expect(old).toMatchObject({ wishes: usualWishes, otherEnvelopes: [], objectives: null });
+    expect(old.result).toMatchObject({ offers: [], objectives: null, chosenOffer: null });
+    expect(old.result!.pieces[0]!.supportMm3).toBe(0);
+    expect(old.result!.recipe.wishes).toEqual(usualWishes);
+  });
+});
+
+describe('taking the best so far', () => {
+  it('asks the worker of a job that waits or runs, and leaves a finished one as it is', async () => {
+    const model = await inspectedModel(product, designer);
+    const plan = await makePlan(model.id);
+    const jobId = plan.body.job.id as string;
+    const { pool } = product.database;
+    const asked = async () => {
+      const [rows] = await pool.query<RowDataPacket[]>(
+        'SELECT enough_requested AS enough, cancel_requested AS cancel FROM jobs WHERE id = ?',
+        [jobId],
+      );
+      return rows[0];
+    };
+    expect(await asked()).toEqual({ enough: 0, cancel: 0 });
+    const answer = await designer.send('post', `/api/jobs/${jobId}/enough`, {});
+    expect([answer.status, answer.body.state]).toEqual([200, 'queued']);
+    expect(await asked()).toEqual({ enough: 1, cancel: 0 });
+    await finishJob(product, jobId, { state: 'done', output: await planResult(product, jobId) });
+    await settle();
+    expect((await designer.send('post', `/api/jobs/${jobId}/enough`, {})).body.state).toBe('done');
   });
 });
 

@@ -38,6 +38,7 @@ const expected: Record<string, 'public' | readonly Role[]> = {
   'get /api/plans/:id/download': everyone,
   'get /api/jobs/:id': everyone,
   'post /api/jobs/:id/cancel': makers,
+  'post /api/jobs/:id/enough': makers,
   'get /api/jobs/:id/events': everyone,
 };
 

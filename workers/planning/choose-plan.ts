@@ -116,7 +116,7 @@ export function choosePlan(input: PlanInput): PlanChoice {
         best === null ? 'Searching for cuts' : `Searching for cuts, ${best} pieces so far`,
         0.05 + 0.6 * part,
       ),
-    isEnough: (context as { isEnough?: () => boolean }).isEnough ?? (() => false),
+    isEnough: context.isEnough ?? (() => false),
   });
   refuseOver(found.plans[0].pieces, spaces);
   const searchedMs = performance.now();

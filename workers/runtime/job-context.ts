@@ -5,6 +5,8 @@ export interface JobContext {
   /** Throws the `AbortError` of cancellation.ts when the job was cancelled. Cheap: call it often. */
   readonly throwIfCancelled: () => void;
   readonly progress: ReportProgress;
+  /** Whether the person takes the best so far; a job that has nothing yet goes on. Never by default. */
+  readonly isEnough?: () => boolean;
 }
 
 /** For tests and for callers who neither watch nor cancel. */
@@ -17,6 +19,7 @@ export const silentContext: JobContext = { throwIfCancelled: () => {}, progress:
 export function portionOf(context: JobContext, from: number, to: number): JobContext {
   return {
     throwIfCancelled: context.throwIfCancelled,
+    ...(context.isEnough && { isEnough: context.isEnough }),
     progress: (stage, fraction) => {
       context.throwIfCancelled();
       context.progress(stage, from + (to - from) * Math.min(1, Math.max(0, fraction)));

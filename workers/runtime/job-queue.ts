@@ -23,6 +23,7 @@ interface JobRow extends RowDataPacket {
   attempts: number;
   state: 'queued' | 'running';
   cancelRequested: number;
+  enoughRequested: number;
 }
 
 const columns = 'id, kind, input, attempts, state, cancel_requested AS cancelRequested';
@@ -50,14 +51,15 @@ export function createJobQueue({ pool }: { pool: Pool }) {
     return await write(job, 'stage = ?, fraction = ?', [stage.slice(0, 120), fraction]);
   }
 
-  /** Whether someone wants the job stopped; `lost` when it is no longer ours. */
-  async function wish(job: ClaimedJob): Promise<'go on' | 'cancel' | 'lost'> {
+  /** What someone wants of the job; `lost` when it is no longer ours. */
+  async function wish(job: ClaimedJob): Promise<'go on' | 'enough' | 'cancel' | 'lost'> {
     const [rows] = await pool.execute<JobRow[]>(
-      `SELECT cancel_requested AS cancelRequested FROM jobs WHERE id = ? AND lease_token = ?`,
+      `SELECT cancel_requested AS cancelRequested, enough_requested AS enoughRequested FROM jobs WHERE id = ? AND lease_token = ?`,
       [job.id, job.leaseToken],
     );
     if (rows.length === 0) return 'lost';
-    return rows[0].cancelRequested ? 'cancel' : 'go on';
+    if (rows[0].cancelRequested) return 'cancel';
+    return rows[0].enoughRequested ? 'enough' : 'go on';
   }
 
   async function finish(job: ClaimedJob, output: unknown): Promise<boolean> {

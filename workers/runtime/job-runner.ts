@@ -45,7 +45,10 @@ export async function runClaimedJob(options: {
       if (!(await queue.renew(job))) return 'lost';
       renewAtMs = performance.now() + renewEveryMs;
     }
-    return await queue.wish(job);
+    const wish = await queue.wish(job);
+    if (wish !== 'enough') return wish;
+    run.enough();
+    return 'go on';
   }
 
   let outcome: ThreadOutcome | void;

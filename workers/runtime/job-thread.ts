@@ -1,7 +1,7 @@
 import type { MessagePort } from 'node:worker_threads';
 import { jobSchemas, type JobMap, type JobName } from '../../shared/jobs/job-map.js';
 import { jobHandlers } from '../jobs/job-handlers.js';
-import { isAbortError, throwWhenSet } from './cancellation.js';
+import { isAbortError, isEnoughWhenSet, throwWhenSet } from './cancellation.js';
 import type { JobHandler } from './job-handler.js';
 import { JobRefusal } from './job-refusal.js';
 import { steadyProgress } from './progress.js';
@@ -58,6 +58,7 @@ async function runKind<N extends JobName>(kind: N, task: ThreadTask): Promise<un
     { storage: createDiskStorage(task.storageFolder) },
     {
       throwIfCancelled: throwWhenSet(task.cancelFlag),
+      isEnough: isEnoughWhenSet(task.cancelFlag),
       progress: steadyProgress((stage, fraction) =>
         task.port.postMessage({ stage, fraction } satisfies ProgressMessage),
       ),

@@ -1,6 +1,6 @@
 import { MessageChannel } from 'node:worker_threads';
 import { Piscina } from 'piscina';
-import { createCancelFlag, setCancelFlag } from './cancellation.js';
+import { createCancelFlag, setCancelFlag, setEnoughFlag } from './cancellation.js';
 import type { ProgressMessage, ThreadOutcome, ThreadTask } from './job-thread.js';
 
 /** How long a job may ignore its cancellation before its thread is ended, ms. */
@@ -13,6 +13,8 @@ export interface ThreadRun {
   readonly outcome: Promise<ThreadOutcome>;
   /** Asks the job to stop, and ends its thread when it does not within two seconds. */
   readonly cancel: () => void;
+  /** Asks the job to end with the best it has; it may take its time. */
+  readonly enough: () => void;
 }
 
 export interface JobThread {
@@ -75,6 +77,7 @@ export function createJobThread(storageFolder: string, entry: URL = jobEntry): J
           setCancelFlag(cancelFlag);
           deafTimer ??= setTimeout(() => kill.abort(), deafAfterMs);
         },
+        enough: () => setEnoughFlag(cancelFlag),
       };
     },
     discard: async () => {

@@ -71,6 +71,14 @@ export function createJobsRepository({ db }: { db: Db }) {
 
     cancel,
 
+    /** Asks the worker of a waiting or running job to end it with the best it has. */
+    async enough(key: { id: string; workshopId: string }): Promise<void> {
+      await db
+        .update(jobs)
+        .set({ enoughRequested: true })
+        .where(and(isMine(key), inArray(jobs.state, ['queued', 'running'])));
+    },
+
     /** Final jobs whose result is not stored yet, oldest first. */
     async listUnsettled(limit: number): Promise<string[]> {
       const rows = await db

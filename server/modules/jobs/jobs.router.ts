@@ -9,7 +9,7 @@ import { toJobResponse } from './jobs.mapper.js';
 import type { JobsRepository } from './jobs.repository.js';
 
 export function createJobsRoutes(deps: {
-  jobs: Pick<JobsRepository, 'find' | 'cancel'>;
+  jobs: Pick<JobsRepository, 'find' | 'cancel' | 'enough'>;
   monitor: JobMonitor;
   isStillLive: (session: Session) => Promise<boolean>;
 }): Route[] {
@@ -37,6 +37,15 @@ export function createJobsRoutes(deps: {
       access: 'job.cancel',
       handle: async (req, res) => {
         await jobs.cancel(await find(req));
+        res.json(toJobResponse(await find(req)));
+      },
+    },
+    {
+      method: 'post',
+      path: '/api/jobs/:id/enough',
+      access: 'job.cancel',
+      handle: async (req, res) => {
+        await jobs.enough(await find(req));
         res.json(toJobResponse(await find(req)));
       },
     },

@@ -20,6 +20,7 @@ export const settlePlan: Settlement<{ plans: PlansRepository }> = async (job, re
   await repos.plans.storeResult(plan.id, {
     result,
     pieceCount: result.pieces.length,
+    objectives: result.objectives,
     allPassed: result.proof.every((row) => row.passed),
     archiveBytes: result.files.archive.reduce((sum, file) => sum + file.bytes, 0),
   });

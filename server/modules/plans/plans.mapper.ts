@@ -1,7 +1,10 @@
 import type { PlanResponse, PlanSummary } from '../../../shared/api/plans.contract.js';
-import type { PlanOutput } from '../../../shared/jobs/plan-make.js';
+import { planOutput, type PlanOutput } from '../../../shared/jobs/plan-make.js';
+import { usualWishes } from '../../../shared/jobs/plan-wishes.js';
 import { toJobResponse } from '../jobs/jobs.mapper.js';
 import type { PlanView } from './plans.service.js';
+
+const shownOf = planOutput.omit({ files: true });
 
 export function toPlanSummary(view: PlanView): PlanSummary {
   const { plan, job } = view;
@@ -13,11 +16,15 @@ export function toPlanSummary(view: PlanView): PlanSummary {
     number: plan.number,
     seed: plan.seed,
     envelope: plan.envelope,
+    otherEnvelopes: plan.otherEnvelopes ?? [],
+    wishes: plan.wishes ?? usualWishes,
+    fromPlan: plan.fromPlan,
     createdAt: plan.createdAt.toISOString(),
     createdBy: view.createdByName,
     job: toJobResponse(job),
     pieceCount: plan.pieceCount,
     allPassed: plan.allPassed,
+    objectives: plan.objectives,
   };
 }
 
@@ -26,10 +33,10 @@ export function toPlanResponse(
 ): PlanResponse {
   const { result } = view.plan;
   if (!result) return { ...toPlanSummary(view), result: null };
-  const { files: _files, ...shown } = result;
   const archiveBytes = view.plan.archiveBytes ?? 0;
   return {
     ...toPlanSummary(view),
-    result: { ...shown, archiveBytes },
+    // Results stored before something was added to them get its default; keys stay here.
+    result: { ...shownOf.parse(result), archiveBytes },
   };
 }

@@ -1,6 +1,7 @@
 import { and, count, desc, eq, inArray } from 'drizzle-orm';
 import type { EnvelopeResponse } from '../../../shared/api/envelopes.contract.js';
-import type { PlanOutput } from '../../../shared/jobs/plan-make.js';
+import type { Objectives, PlanOutput } from '../../../shared/jobs/plan-make.js';
+import type { PlanWishes } from '../../../shared/jobs/plan-wishes.js';
 import type { Db } from '../../platform/db/client.js';
 import { plans } from './plans.table.js';
 
@@ -21,6 +22,11 @@ const summary = {
   number: plans.number,
   seed: plans.seed,
   envelope: plans.envelope,
+  otherEnvelopes: plans.otherEnvelopes,
+  wishes: plans.wishes,
+  fromPlan: plans.fromPlan,
+  millimetresPerUnit: plans.millimetresPerUnit,
+  objectives: plans.objectives,
   jobId: plans.jobId,
   pieceCount: plans.pieceCount,
   allPassed: plans.allPassed,
@@ -82,6 +88,9 @@ export function createPlansRepository({ db }: { db: Db }) {
       number: number;
       seed: number;
       envelope: EnvelopeResponse;
+      otherEnvelopes: EnvelopeResponse[];
+      wishes: PlanWishes;
+      fromPlan: number | null;
       millimetresPerUnit: number;
       jobId: string;
       createdAt: Date;
@@ -108,7 +117,13 @@ export function createPlansRepository({ db }: { db: Db }) {
 
     async storeResult(
       id: string,
-      found: { result: PlanOutput; pieceCount: number; allPassed: boolean; archiveBytes: number },
+      found: {
+        result: PlanOutput;
+        pieceCount: number;
+        allPassed: boolean;
+        objectives: Objectives | null;
+        archiveBytes: number;
+      },
     ): Promise<void> {
       await db.update(plans).set(found).where(eq(plans.id, id));
     },

@@ -1,5 +1,9 @@
 import { mayBePlanned } from '../../../shared/jobs/model-inspect.js';
-import { usualWishes } from '../../../shared/jobs/plan-wishes.js';
+import { type PlanWishes, usualWishes } from '../../../shared/jobs/plan-wishes.js';
+import type { CutTree } from '../../../shared/jobs/recipe.js';
+import type { EnvelopeResponse } from '../../../shared/api/envelopes.contract.js';
+import type { planRequest } from '../../../shared/api/plans.contract.js';
+import type { z } from 'zod';
 import { millimetresPerUnit } from '../../../shared/api/model-scale.js';
 import type { Transact } from '../../platform/db/transaction.js';
 import type { CreateId } from '../../platform/ids/create-id.js';
@@ -14,7 +18,12 @@ import {
   createModelNotReady,
 } from '../models/models.errors.js';
 import type { ModelRow, ModelsRepository } from '../models/models.repository.js';
-import { createPlanNotFound, createPlanNotReady } from './plans.errors.js';
+import {
+  createOfferNotFound,
+  createOfferOutdated,
+  createPlanNotFound,
+  createPlanNotReady,
+} from './plans.errors.js';
 import type { PlanRow, PlansRepository } from './plans.repository.js';
 import { usableSpace } from './usable-space.js';
 
@@ -32,6 +41,20 @@ export interface PlanView {
 interface Key {
   readonly id: string;
   readonly workshopId: string;
+}
+
+interface Owner {
+  readonly workshopId: string;
+  readonly userId: string;
+}
+
+/** All that decides what a plan becomes, but for the model. */
+interface Asked {
+  readonly envelopes: readonly EnvelopeResponse[];
+  readonly wishes: PlanWishes;
+  readonly seed: number;
+  readonly tree: CutTree | null;
+  readonly fromPlan: number | null;
 }
 
 export function createPlansService(deps: {
@@ -71,6 +94,37 @@ export function createPlansService(deps: {
     return view;
   }
 
+  /** What a person asks for anew. */
+  async function freshly(order: z.output<typeof planRequest> & Owner): Promise<Asked> {
+    const { workshopId, seed, wishes = usualWishes } = order;
+    const ids = [...new Set([order.envelopeId!, ...order.otherEnvelopeIds])];
+    const envelopes: EnvelopeResponse[] = [];
+    for (const id of ids)
+      envelopes.push(toEnvelopeResponse(await deps.findEnvelope({ id, workshopId })));
+    return { envelopes, wishes, seed, tree: null, fromPlan: null };
+  }
+
+  /** What another plan of the same search was asked for, and its cuts. */
+  async function fromOffer(
+    { planId, offer }: { planId: string; offer: number },
+    now: { workshopId: string; revisionId: string; factor: number },
+  ): Promise<Asked> {
+    const found = await plans.find({ id: planId, workshopId: now.workshopId });
+    if (!found) throw createPlanNotFound();
+    if (!found.result) throw createPlanNotReady();
+    const tree = found.result.offers?.[offer]?.tree;
+    if (!tree) throw createOfferNotFound();
+    if (found.revisionId !== now.revisionId || found.millimetresPerUnit !== now.factor)
+      throw createOfferOutdated();
+    return {
+      envelopes: [found.envelope, ...(found.otherEnvelopes ?? [])],
+      wishes: found.wishes ?? usualWishes,
+      seed: found.seed,
+      tree,
+      fromPlan: found.number,
+    };
+  }
+
   return {
     list: async (filter: { workshopId: string; modelId?: string | undefined }) =>
       withContext(await plans.list(filter)),
@@ -86,21 +140,21 @@ export function createPlansService(deps: {
     },
 
     /**
-     * Queues a plan of a model for an envelope, both as they are now.
-     * @throws model.notFound, envelope.notFound, model.notReady, model.notPlannable
+     * Queues a plan of a model, all as it is now, or another of the plans that a search found.
+     * @throws model.notFound, envelope.notFound, model.notReady, model.notPlannable,
+     *   plan.notFound, plan.notReady, plan.offerNotFound, plan.offerOutdated
      */
-    async create(order: {
-      workshopId: string;
-      userId: string;
-      modelId: string;
-      envelopeId: string;
-      seed: number;
-    }): Promise<Key> {
-      const { workshopId, userId, modelId, seed } = order;
+    async create(order: z.output<typeof planRequest> & Owner): Promise<Key> {
+      const { workshopId, userId, modelId } = order;
       const model = await deps.findModel({ id: modelId, workshopId });
-      const envelope = await deps.findEnvelope({ id: order.envelopeId, workshopId });
       const [inspection] = await jobs.findMany([model.revision.jobId]);
       const { solidKey, factor } = plannable(model, inspection);
+      const asked = order.fromOffer
+        ? await fromOffer(order.fromOffer, { workshopId, revisionId: model.revision.id, factor })
+        : await freshly(order);
+      const { seed, wishes, envelopes } = asked;
+      const [envelope, ...otherEnvelopes] = envelopes;
+      const [space, ...otherSpaces] = envelopes.map(usableSpace);
       const [id, jobId] = [createId(), createId()];
       await transact(async (repos) => {
         const number = await repos.models.nextPlanNumber({ id: modelId, workshopId });
@@ -112,7 +166,10 @@ export function createPlansService(deps: {
           revisionId: model.revision.id,
           number,
           seed,
-          envelope: toEnvelopeResponse(envelope),
+          envelope: envelope!,
+          otherEnvelopes,
+          wishes,
+          fromPlan: asked.fromPlan,
           millimetresPerUnit: factor,
           jobId,
           createdAt: clock(),
@@ -127,10 +184,10 @@ export function createPlansService(deps: {
             solidKey,
             modelName: model.name,
             millimetresPerUnit: factor,
-            space: usableSpace(envelope),
-            otherSpaces: [],
-            wishes: usualWishes,
-            tree: null,
+            space: space!,
+            otherSpaces,
+            wishes,
+            tree: asked.tree,
             seed,
             outputPrefix: planFolder({ workshopId, planId: id }),
           },

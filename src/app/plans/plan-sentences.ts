@@ -4,7 +4,7 @@ import { type CutTree } from '../../../shared/jobs/recipe.js';
 import { writeLengthMm, writeSizeMm } from '../ui/format/quantities';
 
 /** How the number of pieces stands against what is possible at all and against a plain grid. */
-export function boundsSentence(pieces: number, bounds: PlanOutput['bounds']): string {
+export function boundsSentence(pieces: number, bounds: Omit<PlanOutput['bounds'], 'gap'>): string {
   if (pieces === 1) return 'The model fits as it is; there is nothing to cut.';
   const reason = asClause(bounds.reason);
   let least = `no plan can have fewer than ${bounds.pieces}${reason}`;
