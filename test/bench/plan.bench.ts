@@ -1,34 +1,13 @@
-import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
-import { gridCell } from '../../shared/geometry/fitting/space-measures.js';
-import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
-import { usualWishes } from '../../shared/jobs/plan-wishes.js';
-import { bestExactGrid, gridTree } from '../../workers/planning/exact-grids.js';
-import { cutExactly } from '../../workers/planning/exact-plan.js';
-import { choosePlan, type PlanChoice } from '../../workers/planning/choose-plan.js';
-import { leastSupport, supportOn } from '../../workers/planning/judging/body-support.js';
-import { silentContext } from '../../workers/runtime/job-context.js';
-import { loadSolids, type Solids } from '../../workers/solids/solid-kernel.js';
+import { execFileSync } from 'node:child_process';
+import { fileURLToPath } from 'node:url';
+import { loadSolids } from '../../workers/solids/solid-kernel.js';
 import { atMost, type BenchTable } from './support/bench-table.js';
-import { type PlanModel, planModels } from './support/plan-models.js';
+import { type PlanCase, type PlanChildAnswer } from './support/plan-child.js';
+import { planModels } from './support/plan-models.js';
 
-const TOLERANCE_MM = 0.02;
-const COLUMNS = 90;
-const TRIES = 5;
+const child = fileURLToPath(new URL('support/plan-child.ts', import.meta.url));
 /** Support that counts as none when ratios are made, mm³: 1 cm³ a plan. */
 const NO_SUPPORT_MM3 = 1000;
-
-const box = (widthMm: number, depthMm: number, heightMm: number): BuildSpace => ({
-  shape: 'rectangular',
-  widthMm,
-  depthMm,
-  heightMm,
-});
-const SPACES = [box(220, 220, 250), box(180, 180, 180), box(300, 300, 300)];
-
-interface GridSupport {
-  readonly uprightMm3: number;
-  readonly bestMm3: number;
-}
 
 /**
  * Every model in every envelope with the usual wishes, against the best axis grid of the same
@@ -37,53 +16,19 @@ interface GridSupport {
  */
 export async function bench(): Promise<BenchTable> {
   const solids = await loadSolids();
-  const rows: (string | number)[][] = [];
-  const seen: { model: PlanModel; choice: PlanChoice; grid: GridSupport; setMs: number }[] = [];
-  for (const model of planModels(solids)) {
-    const mesh = model.make();
-    for (const space of SPACES) {
-      const startMs = performance.now();
-      const choice = choosePlan({
-        mesh,
-        spaces: [space],
-        wishes: usualWishes,
-        seed: 1,
-        triangulate: solids.triangulate,
-        toleranceMm: TOLERANCE_MM,
-        context: silentContext,
-      });
-      const setMs = performance.now() - startMs;
-      const grid = gridSupport(mesh, space, solids);
-      seen.push({ model, choice, grid, setMs });
-      const { objectives } = choice.figures;
-      rows.push([
-        model.name,
-        space.shape === 'rectangular' ? `${space.widthMm}×${space.depthMm}×${space.heightMm}` : '',
-        objectives.pieces,
-        Math.min(...choice.offers.map((offer) => offer.objectives.pieces)),
-        choice.bounds.gridPieces,
-        choice.bounds.pieces,
-        Math.round(objectives.supportMm3 / 1000),
-        Math.round(Math.min(...choice.offers.map((o) => o.objectives.supportMm3)) / 1000),
-        Math.round(grid.bestMm3 / 1000),
-        Math.round(grid.uprightMm3 / 1000),
-        choice.offers.length,
-        Math.round(choice.firstPlanMs),
-        Math.round(setMs),
-      ]);
-    }
-  }
-  const curved = seen.filter(({ model }) => model.family === 'organic' || model.family === 'shell');
-  const smallSets = seen.filter(({ choice }) => choice.bodies.length <= 30);
-  const supportRatio = (of: (grid: GridSupport) => number) =>
+  const answers = planModels(solids).map((_, number) => runChild(number));
+  const all = answers.flatMap(({ cases }) => cases);
+  const curved = answers
+    .filter(({ family }) => family === 'organic' || family === 'shell')
+    .flatMap(({ cases }) => cases);
+  const supportRatio = (of: (one: PlanCase) => number) =>
     geometricMean(
-      seen
-        .filter(({ grid }) => of(grid) > NO_SUPPORT_MM3)
-        .map(
-          ({ choice, grid }) =>
-            Math.max(NO_SUPPORT_MM3, choice.figures.objectives.supportMm3) / of(grid),
-        ),
+      all
+        .filter((one) => of(one) > NO_SUPPORT_MM3)
+        .map((one) => Math.max(NO_SUPPORT_MM3, one.supportMm3) / of(one)),
     );
+  const slowest = (of: (one: PlanCase) => number) =>
+    Math.max(...all.filter((one) => one.pieces <= 30).map(of));
   return {
     title: 'Plans of 15 models in 3 envelopes, the usual wishes, against the best axis grid',
     columns: [
@@ -101,68 +46,72 @@ export async function bench(): Promise<BenchTable> {
       'first ms',
       'set ms',
     ],
-    rows,
+    rows: answers.flatMap(({ name, cases }) => cases.map((one) => [name, ...rowOf(one)])),
     targets: [
       atMost(
-        'models with more pieces than the grid',
-        seen.filter(({ choice }) => choice.bodies.length > choice.bounds.gridPieces).length,
+        'plans with more pieces than the grid',
+        all.filter((one) => one.offers.some(({ pieces }) => pieces > one.gridPieces)).length,
         0,
       ),
       atMost(
         'pieces against the grid, organic and shells, geometric mean',
-        geometricMean(curved.map(({ choice: c }) => c.bodies.length / c.bounds.gridPieces)),
+        geometricMean(curved.map((one) => one.pieces / one.gridPieces)),
         0.75,
       ),
       atMost(
         'support against the grid upright, geometric mean',
-        supportRatio((grid) => grid.uprightMm3),
+        supportRatio((one) => one.gridUprightMm3),
         0.2,
       ),
       atMost(
         'support against the grid best laid, geometric mean',
-        supportRatio((grid) => grid.bestMm3),
+        supportRatio((one) => one.gridBestMm3),
         0.5,
       ),
       atMost(
         'plans below their bound',
-        seen.filter(({ choice: c }) =>
-          c.offers.some((offer) => offer.objectives.pieces < c.bounds.pieces),
-        ).length,
+        all.filter((one) => one.offers.some(({ pieces }) => pieces < one.bound)).length,
         0,
       ),
       atMost(
         'first plan, the slowest, ms',
-        Math.max(...seen.map((s) => s.choice.firstPlanMs)),
+        slowest((one) => one.firstMs),
         2000,
       ),
       atMost(
         'whole set up to 30 pieces, the slowest, ms',
-        Math.max(...smallSets.map(({ setMs }) => setMs)),
+        slowest((one) => one.setMs),
         20_000,
       ),
-      atMost('peak of the process, MB', process.resourceUsage().maxRSS / 1024, 500),
+      atMost('peak of a process, MB', Math.max(...answers.map(({ peakMb }) => peakMb)), 500),
     ],
   };
 }
 
-function gridSupport(mesh: TriangleMesh, space: BuildSpace, solids: Solids): GridSupport {
-  const { grid } = bestExactGrid(mesh, gridCell(space), TOLERANCE_MM, () => {});
-  const { bodies } = cutExactly(gridTree(grid), {
-    mesh,
-    spaces: [space],
-    triangulate: solids.triangulate,
-    toleranceMm: TOLERANCE_MM,
-    onStep: () => {},
+function rowOf(one: PlanCase): (string | number)[] {
+  const cm3 = (mm3: number) => Math.round(mm3 / 1000);
+  return [
+    one.space,
+    one.pieces,
+    Math.min(...one.offers.map(({ pieces }) => pieces)),
+    one.gridPieces,
+    one.bound,
+    cm3(one.supportMm3),
+    cm3(Math.min(...one.offers.map(({ supportMm3 }) => supportMm3))),
+    cm3(one.gridBestMm3),
+    cm3(one.gridUprightMm3),
+    one.offers.length,
+    Math.round(one.firstMs),
+    Math.round(one.setMs),
+  ];
+}
+
+function runChild(number: number): PlanChildAnswer {
+  const answer = execFileSync(process.execPath, ['--import', 'tsx', child, String(number)], {
+    encoding: 'utf8',
+    maxBuffer: 1 << 24,
   });
-  const task = { spaces: [space], overhangDegrees: 45, columns: COLUMNS, tries: TRIES };
-  let uprightMm3 = 0;
-  let bestMm3 = 0;
-  for (const body of bodies) {
-    const upright = supportOn(body.mesh, [0, 0, -1], task);
-    uprightMm3 += upright;
-    bestMm3 += Math.min(upright, leastSupport(body.mesh, task)?.supportMm3 ?? upright);
-  }
-  return { uprightMm3, bestMm3 };
+  return JSON.parse(answer) as PlanChildAnswer;
 }
 
 function geometricMean(ratios: readonly number[]): number {

@@ -1,3 +1,4 @@
+import { usualWishes } from '../../../shared/jobs/plan-wishes.js';
 import { TestBed } from '@angular/core/testing';
 import { Subject } from 'rxjs';
 import { type JobResponse } from '../../../shared/api/jobs.contract.js';
@@ -93,7 +94,7 @@ describe('PlanStore', () => {
     expect(store.job()?.state).toBe('cancelled');
   });
 
-  it('asks for the same model, envelope and seed when a plan is made again', async () => {
+  it('asks for the same model, envelopes, wishes and seed when a plan is made again', async () => {
     const { store, api } = setUp();
     await store.open(planId);
     api.make.mockResolvedValueOnce({ id: 'q' });
@@ -101,6 +102,8 @@ describe('PlanStore', () => {
     expect(api.make).toHaveBeenCalledWith({
       modelId: 'm'.repeat(20),
       envelopeId: 'e'.repeat(20),
+      otherEnvelopeIds: [],
+      wishes: usualWishes,
       seed: 1,
     });
   });

@@ -30,6 +30,7 @@ export class PlanStore implements OnDestroy {
   private readonly _picture = signal<PlanPicture | null>(null);
   private readonly _pictureFailure = signal('');
   private readonly _isCancelling = signal(false);
+  private readonly _isFinishing = signal(false);
   private readonly _isOnBed = signal(false);
   private readonly _spread = signal(0);
   private openId = '';
@@ -41,6 +42,7 @@ export class PlanStore implements OnDestroy {
   readonly picture = this._picture.asReadonly();
   readonly pictureFailure = this._pictureFailure.asReadonly();
   readonly isCancelling = this._isCancelling.asReadonly();
+  readonly isFinishing = this._isFinishing.asReadonly();
   readonly spread = this._spread.asReadonly();
   readonly result = computed(() => this.plan()?.result ?? null);
   readonly pieces = computed(() => this.result()?.pieces ?? []);
@@ -91,12 +93,36 @@ export class PlanStore implements OnDestroy {
     }
   }
 
-  /** Makes the same plan anew, from the same model, envelope and seed. Returns its identifier. */
+  /** Asks for the search to end with the best it has found. */
+  async takeBest(): Promise<void> {
+    const job = this.job();
+    if (!job || isFinal(job.state)) return;
+    this._isFinishing.set(true);
+    try {
+      await this.jobs.enough(job.id);
+    } catch (error) {
+      this._isFinishing.set(false);
+      throw error;
+    }
+  }
+
+  /** Makes the same plan anew, from the same model, envelopes, wishes and seed. Returns its identifier. */
   async makeAgain(): Promise<string> {
     const plan = this._plan();
     if (!plan) throw new Error('There is no plan to make again.');
-    const { modelId, seed, envelope } = plan;
-    return (await this.api.make({ modelId, seed, envelopeId: envelope.id })).id;
+    const { modelId, seed, envelope, otherEnvelopes, wishes } = plan;
+    const otherEnvelopeIds = otherEnvelopes.map((one) => one.id);
+    return (
+      await this.api.make({ modelId, seed, envelopeId: envelope.id, otherEnvelopeIds, wishes })
+    ).id;
+  }
+
+  /** Makes another of the plans that the search found. Returns the new plan's identifier. */
+  async makeOffer(offer: number): Promise<string> {
+    const plan = this._plan();
+    if (!plan) throw new Error('There is no plan whose offers could be made.');
+    return (await this.api.make({ modelId: plan.modelId, fromOffer: { planId: plan.id, offer } }))
+      .id;
   }
 
   async remove(): Promise<void> {
@@ -139,6 +165,7 @@ export class PlanStore implements OnDestroy {
   private take(plan: PlanResponse): void {
     this._plan.set(plan);
     this._isCancelling.set(false);
+    this._isFinishing.set(false);
     if (!isFinal(plan.job.state)) this.follow(plan);
     else if (plan.result) void this.loadPicture(plan);
   }

@@ -13,6 +13,11 @@ export class JobsApi {
     return this.http.get(`/api/jobs/${id}`).pipe(parseAnswer(jobResponse));
   }
 
+  /** Asks the job to end with the best it has. */
+  async enough(id: string): Promise<void> {
+    await firstValueFrom(this.http.post(`/api/jobs/${id}/enough`, {}));
+  }
+
   async cancel(id: string): Promise<void> {
     await firstValueFrom(this.http.post(`/api/jobs/${id}/cancel`, {}));
   }

@@ -1,3 +1,4 @@
+import { usualWishes } from '../../../../shared/jobs/plan-wishes.js';
 import { TestbedHarnessEnvironment } from '@angular/cdk/testing/testbed';
 import { DeferBlockBehavior, TestBed } from '@angular/core/testing';
 import { MatButtonHarness } from '@angular/material/button/testing';
@@ -79,6 +80,8 @@ describe('ModelPage', () => {
     expect(order).toHaveBeenCalledWith({
       modelId: idOf('model'),
       envelopeId: makeRectangular().id,
+      otherEnvelopeIds: [],
+      wishes: usualWishes,
       seed: 1,
     });
     await vi.waitFor(() => expect(router.url).toBe(`/plans/${planId}`));

@@ -9,22 +9,28 @@ import {
 } from '@angular/core';
 import { NonNullableFormBuilder, ReactiveFormsModule } from '@angular/forms';
 import { MatButton } from '@angular/material/button';
-import { MatError, MatFormField, MatHint, MatLabel } from '@angular/material/form-field';
+import { MatError, MatFormField, MatHint, MatLabel, MatSuffix } from '@angular/material/form-field';
 import { MatInput } from '@angular/material/input';
 import { MatOption, MatSelect, MatSelectTrigger } from '@angular/material/select';
 import { RouterLink } from '@angular/router';
 import { type EnvelopeResponse } from '../../../../shared/api/envelopes.contract.js';
 import { writeGivenMm } from '../../ui/format/quantities';
 import { Notice } from '../../ui/notice/notice';
+import { type PlanWishes } from '../../../../shared/jobs/plan-wishes.js';
+import { PlanWishesForm } from '../plan-wishes/plan-wishes-form';
+import { makeWishesGroup, wishesOf } from '../plan-wishes/wishes-values';
 import { isSeed, largestSeed } from '../seed-validator';
 
 /** What the person chose. */
 export interface PlanOrder {
   readonly envelopeId: string;
+  /** For pieces that the first does not hold. */
+  readonly otherEnvelopeIds: string[];
   readonly seed: number;
+  readonly wishes: PlanWishes;
 }
 
-/** Orders a plan: for which envelope and, for those who want it, from which seed. */
+/** Orders a plan: for which envelope, by what matters, and for those who want it in more detail. */
 @Component({
   selector: 'sw-plan-starter',
   imports: [
@@ -37,7 +43,9 @@ export interface PlanOrder {
     MatOption,
     MatSelect,
     MatSelectTrigger,
+    MatSuffix,
     Notice,
+    PlanWishesForm,
     ReactiveFormsModule,
     RouterLink,
   ],
@@ -70,8 +78,15 @@ export class PlanStarter {
   protected readonly chosen = computed(() =>
     this.options().find((option) => option.id === this.envelopeId()),
   );
+  /** Further envelopes, in the order of the list. */
+  protected readonly others = computed(() =>
+    this.options().filter((option) => option.id !== this.envelopeId()),
+  );
+  protected readonly wishes = makeWishesGroup();
   protected readonly form = inject(NonNullableFormBuilder).group({
     seed: [1 as number | null, isSeed],
+    others: [[] as string[]],
+    wishes: this.wishes,
   });
 
   protected order(): void {
@@ -80,7 +95,10 @@ export class PlanStarter {
       this.form.markAllAsTouched();
       return;
     }
-    this.ordered.emit({ envelopeId, seed: this.form.getRawValue().seed ?? 1 });
+    const { seed, others } = this.form.getRawValue();
+    const otherEnvelopeIds = others.filter((id) => id !== envelopeId);
+    const wishes = wishesOf(this.wishes);
+    this.ordered.emit({ envelopeId, otherEnvelopeIds, seed: seed ?? 1, wishes });
   }
 }
 

@@ -29,6 +29,8 @@ export class PartsList {
   private readonly host = inject<ElementRef<HTMLElement>>(ElementRef).nativeElement;
 
   readonly pieces = input.required<readonly Piece[]>();
+  /** Names of the envelopes when there are several; empty otherwise. */
+  readonly envelopes = input<readonly string[]>([]);
   readonly selected = input<string | null>(null);
   readonly pieceSelected = output<string | null>();
 
@@ -38,6 +40,8 @@ export class PartsList {
       name: piece.name,
       size: writeSizeMm(piece.sizeMm),
       volume: writeVolume(piece.volumeMm3),
+      support: writeVolume(piece.supportMm3),
+      envelope: this.envelopes()[piece.space] ?? '',
       triangles: writeCount(piece.triangles),
       fits: piece.fits,
     })),

@@ -3,7 +3,7 @@ import { ChangeDetectionStrategy, Component, input, output } from '@angular/core
 import { TestBed } from '@angular/core/testing';
 import { MatButtonToggleHarness } from '@angular/material/button-toggle/testing';
 import { MatSliderHarness } from '@angular/material/slider/testing';
-import { provideRouter } from '@angular/router';
+import { provideRouter, Router } from '@angular/router';
 import { NEVER } from 'rxjs';
 import { type PlanResponse } from '../../../../shared/api/plans.contract.js';
 import { SessionStore } from '../../core/auth/session-store';
@@ -132,8 +132,38 @@ describe('PlanPage', () => {
     const { page } = await setUp(unfinishedPlan(job));
     expect(page.textContent).toContain('Looking for cuts');
     expect(page.textContent).toContain('42 %');
-    expect(page.querySelector('sw-job-progress button')?.textContent).toContain('Cancel');
+    const buttons = [...page.querySelectorAll('sw-job-progress button')];
+    expect(buttons.map((button) => button.textContent.trim())).toEqual([
+      'Take the best so far',
+      'Cancel',
+    ]);
     expect(page.textContent).toContain('Known so far');
+  });
+
+  it('lists the other plans that were found and makes one of them', async () => {
+    const plan = samplePlan();
+    const objectives = { pieces: 3, supportMm3: 9e4, visibleSeamMm: 700, weakestSeamKpa: 12 };
+    const { tree } = plan.result!.recipe;
+    plan.result = {
+      ...plan.result!,
+      chosenOffer: 0,
+      offers: [
+        { bestAt: ['nearest to what was asked'], objectives, tree },
+        { bestAt: ['least support'], objectives: { ...objectives, supportMm3: 0 }, tree },
+      ],
+    };
+    const { page, api } = await setUp(plan);
+    api.make.mockResolvedValue({ ...plan, id: 'q'.repeat(20) });
+    const navigate = vi.spyOn(TestBed.inject(Router), 'navigate').mockResolvedValue(true);
+    const buttons = page.querySelectorAll<HTMLButtonElement>('sw-offers-table button');
+    expect(buttons).toHaveLength(1);
+    buttons[0]!.click();
+    expect(api.make).toHaveBeenCalledWith({
+      modelId: plan.modelId,
+      fromOffer: { planId: plan.id, offer: 1 },
+    });
+    await vi.waitFor(() => expect(navigate).toHaveBeenCalledWith(['/plans', 'q'.repeat(20)]));
+    expect(page.textContent).toContain('A bit of everything');
   });
 
   it('offers no cancel and no removal to those who may not', async () => {

@@ -6,6 +6,7 @@ import {
   effect,
   inject,
   input,
+  signal,
   untracked,
   viewChild,
 } from '@angular/core';
@@ -24,12 +25,14 @@ import { Notice } from '../../ui/notice/notice';
 import { TitleBlock, type TitleBlockField } from '../../ui/title-block/title-block';
 import { Viewer } from '../../viewer/viewer';
 import { CutsList } from '../cuts-list/cuts-list';
+import { OffersTable } from '../offers-table/offers-table';
 import { PartsList } from '../parts-list/parts-list';
 import { boundsSentence, envelopeInWords, listCuts, scaleInWords } from '../plan-sentences';
 import { PlanStore } from '../plan-store';
 import { PlansApi } from '../plans-api';
 import { ProofTable } from '../proof-table/proof-table';
 import { SeamsList } from '../seams-list/seams-list';
+import { wishesInWords } from '../../ui/wishes/wishes-words';
 import { ViewControls } from '../view-controls/view-controls';
 
 /** A plan as a sheet: picture, parts list, seams, cuts, proof, title block, and the way to its files. */
@@ -46,6 +49,7 @@ import { ViewControls } from '../view-controls/view-controls';
     MatMenuTrigger,
     MatProgressBar,
     Notice,
+    OffersTable,
     PartsList,
     ProofTable,
     RouterLink,
@@ -116,8 +120,23 @@ export class PlanPage {
       { name: 'Approved by', value: '—' },
       { name: 'Seed', value: String(plan.seed) },
       ...this.scaleField(),
-      { name: 'Envelope', value: envelopeInWords(plan.envelope), wide: true },
+      {
+        name: plan.otherEnvelopes.length > 0 ? 'Envelopes' : 'Envelope',
+        value: [plan.envelope, ...plan.otherEnvelopes].map(envelopeInWords).join('; '),
+        wide: true,
+      },
+      { name: 'Asked for', value: wishesInWords(plan.wishes), wide: true },
+      ...(plan.fromPlan === null
+        ? []
+        : [{ name: 'Found by', value: `the search of plan ${plan.fromPlan}`, wide: true }]),
     ];
+  });
+  protected readonly isMaking = signal(false);
+  /** Names to say where a piece goes; empty with one envelope. */
+  protected readonly envelopeNames = computed(() => {
+    const plan = this.plan();
+    if (!plan || plan.otherEnvelopes.length === 0) return [];
+    return [plan.envelope, ...plan.otherEnvelopes].map((envelope) => envelope.name);
   });
   protected readonly description = computed(() => {
     const count = this.store.pieces().length;
@@ -147,6 +166,19 @@ export class PlanPage {
 
   protected async cancel(): Promise<void> {
     await this.tell(() => this.store.cancel());
+  }
+
+  protected async takeBest(): Promise<void> {
+    await this.tell(() => this.store.takeBest());
+  }
+
+  protected async makeOffer(offer: number): Promise<void> {
+    this.isMaking.set(true);
+    await this.tell(async () => {
+      const id = await this.store.makeOffer(offer);
+      await this.router.navigate(['/plans', id]);
+    });
+    this.isMaking.set(false);
   }
 
   protected async makeAgain(): Promise<void> {

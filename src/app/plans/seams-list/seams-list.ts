@@ -1,6 +1,7 @@
 import { ChangeDetectionStrategy, Component, computed, input } from '@angular/core';
 import { type Seam } from '../../../../shared/jobs/plan-make.js';
 import { writeArea } from '../../ui/format/quantities';
+import { writeSightMm, writeStress } from '../plan-quantities';
 
 /** Below this, mm², square centimetres would say nothing. */
 const LEAST_CM2 = 100;
@@ -11,12 +12,15 @@ const LEAST_CM2 = 100;
   template: `
     <table class="sw-table" role="table">
       <caption>
-        Where two pieces meet, and how much there is to glue.
+        Where two pieces meet, how much there is to glue, how much of the line is in sight, and how
+        the weight beyond it bends it: a planning figure, no promise of strength.
       </caption>
       <thead role="rowgroup">
         <tr role="row">
           <th role="columnheader" scope="col">Between</th>
           <th role="columnheader" scope="col" class="sw-number">Area</th>
+          <th role="columnheader" scope="col" class="sw-number">In sight</th>
+          <th role="columnheader" scope="col" class="sw-number">Bending</th>
           <th role="columnheader" scope="col" class="sw-number">Cut</th>
         </tr>
       </thead>
@@ -25,6 +29,8 @@ const LEAST_CM2 = 100;
           <tr role="row" [class.selected]="row.isOfSelected">
             <td role="cell">{{ row.between }}</td>
             <td role="cell" class="sw-number">{{ row.area }}</td>
+            <td role="cell" class="sw-number">{{ row.sight }}</td>
+            <td role="cell" class="sw-number">{{ row.stress }}</td>
             <td role="cell" class="sw-number">{{ row.cut }}</td>
           </tr>
         }
@@ -51,6 +57,8 @@ export class SeamsList {
     this.seams().map((seam) => ({
       between: seam.between.join(' and '),
       area: seam.areaMm2 < LEAST_CM2 ? writeSmallArea(seam.areaMm2) : writeArea(seam.areaMm2),
+      sight: writeSightMm(seam.visibleMm),
+      stress: writeStress(seam.bendingKpa),
       cut: seam.cut,
       isOfSelected: seam.between.some((name) => name === this.selected()),
     })),

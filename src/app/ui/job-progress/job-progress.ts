@@ -20,6 +20,11 @@ export class JobProgress {
   /** Set between asking for the cancel and its coming true. */
   readonly isCancelling = input(false);
   readonly cancelAsked = output<void>();
+  /** For work that has something to show before its end. */
+  readonly canTakeBest = input(false);
+  /** Set once the best so far was asked for. */
+  readonly isFinishing = input(false);
+  readonly bestAsked = output<void>();
 
   protected readonly isOpen = computed(() => ['queued', 'running'].includes(this.job().state));
   protected readonly percent = computed(() => Math.floor(this.job().fraction * 100));
