@@ -9,6 +9,7 @@ import {
   type CutFigures,
   expectedPieces,
   commonCost,
+  isPoor,
   type PlanWeights,
   sightCost,
   wasteCost,
@@ -35,6 +36,8 @@ export interface CutCandidate {
   readonly sightMm: number;
   /** Whether one side is so little of the body that the cut is no progress. */
   readonly isCrumb: boolean;
+  /** Whether it leaves a sliver, a seam too small for a joint, or runs along a wall. */
+  readonly isPoor: boolean;
   /** Room given away by a fitting side, in pieces. */
   readonly waste: number;
   /** How far the offset may be drawn back towards the fitting side's end, mm. */
@@ -118,7 +121,10 @@ export function cutCandidates(
     const judged = { part, body, space, weights, nodes, surfaceMm2: faces.surfaceMm2 };
     found.push(...judgeSweep(tables, judged).filter((cut) => !cut.isCrumb));
   }
-  return { cuts: found.sort((a, b) => a.score - b.score), work };
+  // A poor cut is made only where there is no other.
+  const sound = found.filter((cut) => !cut.isPoor);
+  const cuts = sound.length > 0 ? sound : found;
+  return { cuts: cuts.sort((a, b) => a.score - b.score), work };
 }
 
 interface Judging {
@@ -158,6 +164,7 @@ function judgeSweep(tables: SweepTables, judging: Judging): CutCandidate[] {
       commonCost: common,
       sightMm: figures[j].sightMm,
       isCrumb: isCrumb(figures[j]),
+      isPoor: isPoor(figures[j], judging.weights),
       waste,
       score: expectedPieces(figures[j]) + waste + quality + support,
       stepMm: (tables.high - tables.low) / rows,

@@ -74,6 +74,11 @@ export function wallCost(cut: CutFigures): number {
   return cut.seamMm2 > 0 ? Math.min(1, cut.wallMm2 / cut.seamMm2) : 0;
 }
 
+/** Whether a cut is one that nobody would make who had another. */
+export function isPoor(cut: CutFigures, { leastPieceMm }: PlanWeights): boolean {
+  return sliverCost(cut, leastPieceMm) > 0 || smallSeamCost(cut) > 0 || wallCost(cut) > 0.5;
+}
+
 export function balanceCost(cut: CutFigures): number {
   const total = cut.volumeAboveMm3 + cut.volumeBelowMm3;
   return total > 0 ? Math.abs(cut.volumeAboveMm3 - cut.volumeBelowMm3) / total : 0;

@@ -17,7 +17,7 @@ import { TreeSearch } from './tree-search.js';
 /** Cuts tried at every node of the plan that is being improved, pass after pass. */
 const IMPROVE_WIDTHS = [5, 10, 20];
 /** Inner-loop steps of the search by the person's own weights: about three seconds on one core of 2024. */
-const WORK_BUDGET = 0.5e9;
+const WORK_BUDGET = 0.45e9;
 /** Searches that lean to one side get this share of it; the one for few pieces is the hardest. */
 const LEANING_SHARE = 0.3;
 const FEW_PIECES_SHARE = 0.8;
