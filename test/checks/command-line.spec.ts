@@ -103,6 +103,65 @@ describe('the command line', () => {
     ]);
   });
 
+  it('carries every plan that was found with objectives, bounds and reasons, and takes wishes', async () => {
+    const wishes = {
+      preferences: { fewPieces: 0.4, littleSupport: 1, hiddenSeams: 0.2, sturdySeams: 0.2 },
+      lockedCuts: [{ normal: [1, 0, 0], offset: 140.25 }],
+      keepWhole: [{ shape: 'sphere', name: 'boss', centre: [60, 20, 15], radiusMm: 12 }],
+    };
+    await writeFile(join(folder, 'wishes.json'), JSON.stringify(wishes));
+    const words = ['plan', 'bar.stl', '--envelope', '90x90x90+100x100x100', '--json'];
+    const { code, out, err } = await run(...words, '--wishes', 'wishes.json');
+    expect({ code, err }).toEqual({ code: 0, err: '' });
+    const { plans, pieces, bounds, proof } = JSON.parse(out);
+    expect(plans.length).toBeGreaterThan(0);
+    expect(plans.filter((plan: { isMade: boolean }) => plan.isMade)).toHaveLength(1);
+    for (const plan of plans) {
+      expect(Object.keys(plan).slice(0, 5)).toEqual([
+        'bestAt',
+        'isMade',
+        'objectives',
+        'bounds',
+        'cuts',
+      ]);
+      expect(plan.objectives.pieces).toBeGreaterThanOrEqual(plan.bounds.pieces);
+      expect(plan.bounds.gap).toMatch(/fewer/);
+      expect(plan.cuts[0]).toMatchObject({ normal: [1, 0, 0], offset: 140.25, locked: true });
+      for (const cut of plan.cuts) expect(cut.reason).toMatch(/^[A-Z].*\d.*\.$/);
+    }
+    const made = plans.find((plan: { isMade: boolean }) => plan.isMade);
+    expect(made.bounds.gridPieces).toBeGreaterThanOrEqual(3);
+    expect(made.bounds.pieces).toBe(bounds.pieces);
+    expect(made.pieces.map((piece: { name: string }) => piece.name)).toEqual(
+      pieces.map((piece: { name: string }) => piece.name),
+    );
+    expect(made.pieces.every((piece: { envelope: number }) => piece.envelope <= 1)).toBe(true);
+    const zones = proof.find((row: { check: string }) => row.check.startsWith('Keep-whole'));
+    expect(zones).toMatchObject({ passed: true });
+  });
+
+  it.each([
+    ['nowhere.json', null, /“nowhere.json” cannot be read \(ENOENT\)/],
+    ['broken.json', '{', /“broken.json” are not JSON/],
+    [
+      'odd.json',
+      '{"preferences":{"fewPieces":7}}',
+      /“odd.json” cannot be used: preferences\.fewPieces/,
+    ],
+    [
+      'cross.json',
+      '{"lockedCuts":[{"normal":[1,0,0],"offset":150}],"keepWhole":[{"shape":"sphere","name":"boss","centre":[150,20,15],"radiusMm":9}]}',
+      /cut 1 crosses the keep-whole zone “boss”/,
+    ],
+  ])('refuses the wishes %s in one sentence', async (name, text, sentence) => {
+    if (text !== null) await writeFile(join(folder, name), text);
+    const words = ['plan', 'bar.stl', '--envelope', '90x90x90', '--wishes', name];
+    const { code, out, err } = await run(...words);
+    expect({ code, out }).toEqual({ code: 2, out: '' });
+    expect(err).toMatch(sentence);
+    expect(err.trim().split('\n')).toHaveLength(1);
+  });
+
   it('takes a broken file once it is told how, and lists what was done', async () => {
     const { code, out } = await run(
       ...['plan', 'open.stl', '--envelope', '220x220x250', '--fill-holes=all', '--json'],

@@ -72,25 +72,16 @@ export async function planModel(
         sizeMm: scaled(report.size, millimetresPerUnit),
         closed: report.closed,
       },
-      pieces: made.plan.pieces.map(
-        ({ name, triangles, volumeMm3, sizeMm, fits, file, ...more }) => ({
-          name,
-          triangles,
-          volumeMm3,
-          sizeMm,
-          fits,
-          supportMm3: more.supportMm3,
-          envelope: more.space,
-          file: outFolder === null ? basename(file) : join(outFolder, file),
-        }),
-      ),
-      seams: made.plan.seams.map(({ between, areaMm2, visibleMm, bendingKpa }) => ({
-        between,
-        areaMm2,
-        visibleMm,
-        bendingKpa,
+      pieces: made.plan.pieces.map(({ name, triangles, volumeMm3, sizeMm, fits, file }) => ({
+        name,
+        triangles,
+        volumeMm3,
+        sizeMm,
+        fits,
+        file: outFolder === null ? basename(file) : join(outFolder, file),
       })),
-      bounds: made.plan.bounds,
+      seams: made.plan.seams.map(({ between, areaMm2 }) => ({ between, areaMm2 })),
+      bounds: { pieces: made.plan.bounds.pieces },
       proof: made.plan.proof,
       timingsMs: { ...timingsMs, ...made.timingsMs },
       // Linux counts the peak in kilobytes; Node passes it on as it is.
@@ -136,16 +127,24 @@ async function readModel(modelPath: string): Promise<Uint8Array> {
 function offerReport(
   { bestAt, objectives, tree }: Offer,
   place: number,
-  { chosenOffer, bounds, recipe }: MadePieces['plan'],
+  { chosenOffer, bounds, recipe, pieces, seams }: MadePieces['plan'],
 ): PlanReport['plans'][number] {
   const isMade = place === chosenOffer;
   return {
     bestAt,
     isMade,
     objectives,
-    bounds: { pieces: bounds.pieces, gap: gapInWords(objectives.pieces, bounds.pieces) },
+    bounds: { ...bounds, gap: gapInWords(objectives.pieces, bounds.pieces) },
     // Finishing may have moved the cuts of the plan that was made by a hair.
     cuts: listOf(isMade ? recipe.tree : tree),
+    ...(isMade && {
+      pieces: pieces.map(({ name, supportMm3, space }) => ({ name, supportMm3, envelope: space })),
+      seams: seams.map(({ between, visibleMm, bendingKpa }) => ({
+        between,
+        visibleMm,
+        bendingKpa,
+      })),
+    }),
   };
 }
 

@@ -1,5 +1,10 @@
 import { type MendingStep } from '../../shared/jobs/model-inspect.js';
-import { type Objectives, type ProofRow, type Seam } from '../../shared/jobs/plan-make.js';
+import {
+  type Objectives,
+  type PlanOutput,
+  type ProofRow,
+  type Seam,
+} from '../../shared/jobs/plan-make.js';
 
 /** What `--json` prints. The field names are a contract with scripts: they stay. */
 export interface PlanReport {
@@ -16,14 +21,10 @@ export interface PlanReport {
     /** As laid on the bed. */
     sizeMm: readonly [number, number, number];
     fits: boolean;
-    /** In this orientation; a planning figure. */
-    supportMm3: number;
-    /** Which of the envelopes it goes to, from 0. */
-    envelope: number;
     file: string;
   }[];
-  seams: Pick<Seam, 'between' | 'areaMm2' | 'visibleMm' | 'bendingKpa'>[];
-  bounds: { pieces: number; reason: string; gap: string; gridPieces: number };
+  seams: Pick<Seam, 'between' | 'areaMm2'>[];
+  bounds: { pieces: number };
   proof: ProofRow[];
   timingsMs: {
     parse: number;
@@ -39,13 +40,16 @@ export interface PlanReport {
     bestAt: string[];
     isMade: boolean;
     objectives: Objectives;
-    bounds: { pieces: number; gap: string };
+    bounds: PlanOutput['bounds'];
     cuts: {
       normal: readonly [number, number, number];
       offset: number;
       locked: boolean;
       reason: string;
     }[];
+    /** Of the plan that was made: support as laid, and which of the envelopes, from 0. */
+    pieces?: { name: string; supportMm3: number; envelope: number }[];
+    seams?: Pick<Seam, 'between' | 'visibleMm' | 'bendingKpa'>[];
   }[];
   /** What was done to the file before it was planned, step by step. */
   mending: Pick<MendingStep, 'kind' | 'count' | 'sentence'>[];

@@ -12,7 +12,7 @@ export function showTables(
   const sections = [
     `${modelName}: ${size} mm, ${model.triangles} triangles, ${cm3(model.volumeMm3)} cm³`,
     ...(mending.length > 0 ? [mending.map((step) => `- ${step.sentence}`).join('\n')] : []),
-    `${counted(pieces.length, 'piece')}; ${bounds.gap || `no plan can have fewer than ${bounds.pieces}`}`,
+    `${counted(pieces.length, 'piece')} (no plan can have fewer than ${bounds.pieces})`,
     ...(plans.length > 1 ? [offersTable(plans)] : []),
     table(
       ['piece', 'size on the bed, mm', 'volume, cm³', 'triangles', 'fits'],

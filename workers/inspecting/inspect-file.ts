@@ -9,6 +9,7 @@ import { countOf, refuseFile } from '../intake/refusal-words.js';
 import { measureSolid } from '../measuring/measure-solid.js';
 import { surveySurface } from '../measuring/surface-state.js';
 import type { Hole } from '../mending/mending.js';
+import { beginSimplifying } from '../picturing/simplify-beside.js';
 import { type JobContext, portionOf, silentContext } from '../runtime/job-context.js';
 import type { Solids } from '../solids/solid-kernel.js';
 import { asksOf } from './asks.js';
@@ -59,6 +60,8 @@ export function inspectFile(
   refuseNothing(reading, fileName);
   context.progress('Checking', 0.25);
   const asRead = surveySurface(reading.mesh);
+  // A closed surface mostly stays as it is: what is drawn of it is made beside the rest.
+  if (asRead.closed) beginSimplifying(reading.mesh);
   const mended = mendToSolid(reading.mesh, asRead.closed, choices, {
     solids,
     context: portionOf(context, 0.3, 0.75),

@@ -2,8 +2,9 @@ import type { MeshBVH } from 'three-mesh-bvh';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type JobContext, silentContext } from '../runtime/job-context.js';
-import { boxesTouch, TreePairs } from './tree-pairs.js';
+import { boxesTouch, bytesOfTree, TreePairs } from './tree-pairs.js';
 import { trianglesCross, writePlane } from './triangle-crossing.js';
+import { Workspace } from './workspace.js';
 
 export interface FoundCrossings {
   /** Pairs of triangles that cross. */
@@ -36,7 +37,8 @@ export function findCrossings(
   const { positions } = mesh;
   const count = mesh.indices.length / 3;
   const tolerance = touchShare * Math.hypot(...boundingBox(positions).size);
-  const { order, corners, boxes, planes } = inTreeOrder(mesh, bvh);
+  const workspace = new Workspace(bytesATriangle * count + bytesOfTree(count));
+  const { order, corners, boxes, planes } = inTreeOrder(mesh, bvh, workspace);
   const found: number[] = [];
   let pairs = 0;
   let tests = 0;
@@ -57,7 +59,7 @@ export function findCrossings(
     pairs++;
     if (pairs <= mostPairs) found.push(order[i], order[j]);
   };
-  const tree = new TreePairs(bvh, count);
+  const tree = new TreePairs(bvh, count, workspace);
   const nodes = tree.boxes;
   let nearby = new Uint32Array(64);
   tree.visit((from1, count1, box1, from2, count2, box2) => {
@@ -74,15 +76,27 @@ export function findCrossings(
     }
     // Of two leaves side by side only the triangles at their border can meet.
     if (count2 > nearby.length) nearby = new Uint32Array(2 * count2);
-    let near = 0;
-    for (let j = from2; j < from2 + count2; j++)
-      if (boxesTouch(boxes, 6 * j, nodes, box1)) nearby[near++] = j;
+    const near = collectTouching(boxes, from2, count2, nodes, box1, nearby);
     if (near === 0) return false;
+    const lowX = nodes[box2];
+    const lowY = nodes[box2 + 1];
+    const lowZ = nodes[box2 + 2];
+    const highX = nodes[box2 + 3];
+    const highY = nodes[box2 + 4];
+    const highZ = nodes[box2 + 5];
     for (let i = from1; i < from1 + count1; i++) {
-      if (!boxesTouch(boxes, 6 * i, nodes, box2)) continue;
+      const x0 = boxes[6 * i];
+      const y0 = boxes[6 * i + 1];
+      const z0 = boxes[6 * i + 2];
+      const x1 = boxes[6 * i + 3];
+      const y1 = boxes[6 * i + 4];
+      const z1 = boxes[6 * i + 5];
+      if (x0 > highX || x1 < lowX || y0 > highY || y1 < lowY || z0 > highZ || z1 < lowZ) continue;
       for (let k = 0; k < near; k++) {
         const j = nearby[k];
-        if (!boxesTouch(boxes, 6 * i, boxes, 6 * j)) continue;
+        const box = 6 * j;
+        if (x0 > boxes[box + 3] || x1 < boxes[box] || y0 > boxes[box + 4]) continue;
+        if (y1 < boxes[box + 1] || z0 > boxes[box + 5] || z1 < boxes[box + 2]) continue;
         tests++;
         compare(i, j);
       }
@@ -92,16 +106,19 @@ export function findCrossings(
   return { pairs, complete: tests <= mostTests, triangles: Uint32Array.from(found) };
 }
 
+/** What `inTreeOrder` takes of a workspace: number, corners, plane and box. */
+const bytesATriangle = 4 + 12 + 32 + 24;
+
 /**
  * Everything that is asked of a triangle, in the order of the tree's leaves: neighbours lie close.
  * Rounding keeps the order of numbers, so boxes that touch still do in single precision.
  */
-function inTreeOrder({ positions: p, indices }: TriangleMesh, bvh: MeshBVH) {
+function inTreeOrder({ positions: p, indices }: TriangleMesh, bvh: MeshBVH, workspace: Workspace) {
   const count = indices.length / 3;
-  const order = new Uint32Array(count);
-  const corners = new Uint32Array(3 * count);
-  const planes = new Float64Array(4 * count);
-  const boxes = new Float32Array(6 * count);
+  const order = workspace.naturals(count);
+  const corners = workspace.naturals(3 * count);
+  const planes = workspace.doubles(4 * count);
+  const boxes = workspace.floats(6 * count);
   for (let i = 0; i < count; i++) {
     const triangle = bvh.resolveTriangleIndex(i);
     order[i] = triangle;
@@ -112,15 +129,42 @@ function inTreeOrder({ positions: p, indices }: TriangleMesh, bvh: MeshBVH) {
     corners[3 * i + 1] = b;
     corners[3 * i + 2] = c;
     writePlane(p, corners, 3 * i, planes, 4 * i);
-    for (let axis = 0; axis < 3; axis++) {
-      const x = p[3 * a + axis];
-      const y = p[3 * b + axis];
-      const z = p[3 * c + axis];
-      boxes[6 * i + axis] = x < y ? (x < z ? x : z) : y < z ? y : z;
-      boxes[6 * i + 3 + axis] = x > y ? (x > z ? x : z) : y > z ? y : z;
-    }
+    writeBox(p, 3 * a, 3 * b, 3 * c, boxes, 6 * i);
   }
   return { order, corners, planes, boxes };
+}
+
+/** Writes least and greatest xyz of three corners, given by where they stand in `p`. */
+function writeBox(
+  p: Float64Array,
+  a: number,
+  b: number,
+  c: number,
+  boxes: Float32Array,
+  to: number,
+): void {
+  for (let axis = 0; axis < 3; axis++) {
+    const x = p[a + axis];
+    const y = p[b + axis];
+    const z = p[c + axis];
+    boxes[to + axis] = x < y ? (x < z ? x : z) : y < z ? y : z;
+    boxes[to + 3 + axis] = x > y ? (x > z ? x : z) : y > z ? y : z;
+  }
+}
+
+/** Lists the triangles of a leaf whose boxes touch a node's; returns how many. */
+function collectTouching(
+  boxes: Float32Array,
+  from: number,
+  count: number,
+  nodes: Float32Array,
+  node: number,
+  found: Uint32Array,
+): number {
+  let touching = 0;
+  for (let j = from; j < from + count; j++)
+    if (boxesTouch(boxes, 6 * j, nodes, node)) found[touching++] = j;
+  return touching;
 }
 
 /** Triangles with a common side can only cross by lying on each other: their normals are opposed. */

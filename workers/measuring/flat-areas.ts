@@ -3,6 +3,7 @@ import { matesOf } from '../../shared/geometry/mesh/edge-mates.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { FlatArea } from '../../shared/jobs/model-inspect.js';
 import { sampleSurface } from './surface-samples.js';
+import { Workspace } from './workspace.js';
 
 const mostFlats = 12;
 /** A flat area has at least this share of the surface. */
@@ -20,9 +21,12 @@ const binSine = 0.02;
  */
 export function findFlats(mesh: TriangleMesh, diagonal: number): FlatArea[] {
   if (!mayHaveFlats(mesh)) return [];
-  const { normals, areas, total } = facetPlanes(mesh);
-  const candidates = candidateFacets(normals, areas, total);
+  const facets = mesh.indices.length / 3;
+  const workspace = new Workspace(bytesAFacet * facets + 8 * binsASide ** 3 + 64);
+  const { bins, areas, total } = sortByDirection(mesh, workspace);
+  const candidates = candidateFacets(bins, areas, total, workspace);
   if (candidates.length === 0) return [];
+  const normals = facetNormals(mesh, workspace);
   const { mates } = matesOf(mesh);
   const seen = new Uint8Array(areas.length);
   const queue: number[] = [];
@@ -77,34 +81,49 @@ function mayHaveFlats(mesh: TriangleMesh): boolean {
   return false;
 }
 
-function facetPlanes({ positions, indices }: TriangleMesh) {
+const binsASide = Math.ceil(2 / binSine) + 1;
+/** What `findFlats` takes of a workspace: bin, area and normal. */
+const bytesAFacet = 4 + 8 + 24;
+
+/** The bin of every facet's direction, its area, and the sum of the areas. */
+function sortByDirection({ positions, indices }: TriangleMesh, workspace: Workspace) {
   const triangles = indices.length / 3;
-  const normals = new Float64Array(3 * triangles);
-  const areas = new Float64Array(triangles);
+  const bins = workspace.naturals(triangles);
+  const areas = workspace.doubles(triangles);
+  const normal = new Float64Array(3);
   let total = 0;
   for (let triangle = 0; triangle < triangles; triangle++) {
-    areas[triangle] = facetNormal(positions, indices, 3 * triangle, normals, 3 * triangle);
-    total += areas[triangle];
+    const area = facetNormal(positions, indices, 3 * triangle, normal, 0);
+    const x = Math.floor((normal[0] + 1) / binSine);
+    const y = Math.floor((normal[1] + 1) / binSine);
+    const z = Math.floor((normal[2] + 1) / binSine);
+    bins[triangle] = (x * binsASide + y) * binsASide + z;
+    areas[triangle] = area;
+    total += area;
   }
-  return { normals, areas, total };
+  return { bins, areas, total };
+}
+
+function facetNormals({ positions, indices }: TriangleMesh, workspace: Workspace): Float64Array {
+  const normals = workspace.doubles(indices.length);
+  for (let at = 0; at < indices.length; at += 3) facetNormal(positions, indices, at, normals, at);
+  return normals;
 }
 
 /** Facets in directions that have enough area for a flat; a plane may straddle up to eight bins. */
-function candidateFacets(normals: Float64Array, areas: Float64Array, total: number): number[] {
-  const side = Math.ceil(2 / binSine) + 1;
-  const bins = new Float64Array(side ** 3);
-  const binOf = (triangle: number) => {
-    const x = Math.floor((normals[3 * triangle] + 1) / binSine);
-    const y = Math.floor((normals[3 * triangle + 1] + 1) / binSine);
-    const z = Math.floor((normals[3 * triangle + 2] + 1) / binSine);
-    return (x * side + y) * side + z;
-  };
+function candidateFacets(
+  bins: Uint32Array,
+  areas: Float64Array,
+  total: number,
+  workspace: Workspace,
+): number[] {
+  const sums = workspace.doubles(binsASide ** 3).fill(0);
   for (let triangle = 0; triangle < areas.length; triangle++)
-    bins[binOf(triangle)] += areas[triangle];
+    sums[bins[triangle]] += areas[triangle];
+  const least = (leastShare * total) / 8;
   const found: number[] = [];
   for (let triangle = 0; triangle < areas.length; triangle++)
-    if (areas[triangle] > 0 && bins[binOf(triangle)] >= (leastShare * total) / 8)
-      found.push(triangle);
+    if (areas[triangle] > 0 && sums[bins[triangle]] >= least) found.push(triangle);
   return found;
 }
 

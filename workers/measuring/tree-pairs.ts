@@ -1,14 +1,15 @@
 import type { MeshBVH } from 'three-mesh-bvh';
+import type { Workspace } from './workspace.js';
 
 /** A tree's nodes in flat arrays, the first child right behind its parent. */
 interface FlatTree {
   /** Least and greatest xyz a node. */
   readonly boxes: Float32Array;
   /** The second child; 0 in a leaf. */
-  readonly second: Int32Array;
+  readonly second: Uint32Array;
   /** First triangle of a leaf, in the tree's order. */
-  readonly from: Int32Array;
-  readonly count: Int32Array;
+  readonly from: Uint32Array;
+  readonly count: Uint32Array;
   /** Sum of a box's sides. */
   readonly girth: Float32Array;
 }
@@ -31,8 +32,8 @@ export type VisitLeaves = (
 export class TreePairs {
   private readonly tree: FlatTree;
 
-  constructor(bvh: MeshBVH, triangles: number) {
-    this.tree = flatten(bvh, triangles);
+  constructor(bvh: MeshBVH, triangles: number, workspace: Workspace) {
+    this.tree = flatten(bvh, triangles, workspace);
   }
 
   get boxes(): Float32Array {
@@ -80,13 +81,24 @@ export class TreePairs {
   }
 }
 
-function flatten(bvh: MeshBVH, triangles: number): FlatTree {
-  const most = 2 * triangles + 1;
-  const boxes = new Float32Array(6 * most);
-  const second = new Int32Array(most);
-  const from = new Int32Array(most);
-  const count = new Int32Array(most);
-  const girth = new Float32Array(most);
+/** The most that the flat tree of so many triangles takes of a workspace, bytes. */
+export function bytesOfTree(triangles: number): number {
+  return bytesANode * mostNodes(triangles) + 64;
+}
+
+const bytesANode = 24 + 4 + 4 + 4 + 4;
+
+function mostNodes(triangles: number): number {
+  return 2 * triangles + 1;
+}
+
+function flatten(bvh: MeshBVH, triangles: number, workspace: Workspace): FlatTree {
+  const most = mostNodes(triangles);
+  const boxes = workspace.floats(6 * most);
+  const second = workspace.naturals(most);
+  const from = workspace.naturals(most);
+  const count = workspace.naturals(most);
+  const girth = workspace.floats(most);
   /** The last node seen at each depth, and how many children it has had. */
   const last: number[] = [];
   const children: number[] = [];
@@ -100,6 +112,7 @@ function flatten(bvh: MeshBVH, triangles: number): FlatTree {
   ) => {
     const node = nodes++;
     for (let k = 0; k < 6; k++) boxes[6 * node + k] = box[k];
+    second[node] = 0;
     girth[node] = box[3] - box[0] + box[4] - box[1] + box[5] - box[2];
     if (isLeaf) {
       from[node] = offset;

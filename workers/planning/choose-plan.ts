@@ -123,7 +123,8 @@ export function choosePlan(input: PlanInput): PlanChoice {
   const exactly = new ExactCandidates(input, found, keepWhole, cutting, report);
   const isFree = wishes.lockedCuts.length === 0 && keepWhole.length === 0;
   const most = isFree ? grid.pieces : Infinity;
-  for (const plan of pickCandidates(found.plans, most)) exactly.consider(planeTreeOf(plan));
+  for (const plan of pickCandidates(found.plans, most, mesh.indices.length / 3))
+    exactly.consider(planeTreeOf(plan));
   // Cells of exactly the space's size leave no room to place a cut: without it they still fit.
   for (const tolerance of [toleranceMm, 0])
     if (wishes.lockedCuts.length === 0 && exactly.fewest() > grid.pieces)

@@ -6,6 +6,7 @@ import { inspectOutput } from '../../shared/jobs/model-inspect.js';
 import { sphere, toSoup } from '../../test/support/shapes.js';
 import { binaryStl } from '../../test/support/stl-files.js';
 import { decodeMesh } from '../intake/mesh-file.js';
+import { isEnoughWhenSet, setCancelFlag, setEnoughFlag, throwWhenSet } from './cancellation.js';
 import { createDiskStorage } from './storage.js';
 import { createJobThread } from './worker-pool.js';
 
@@ -51,6 +52,21 @@ describe('a job in its thread', () => {
     });
     const unknown = await thread.run({ kind: 'tea.make', input: {} }, () => {}).outcome;
     expect(unknown).toMatchObject({ kind: 'failed' });
+    await thread.discard();
+  });
+
+  it('is told that it is enough without being ended, and a cancellation stands above that', async () => {
+    const thread = createJobThread(folder, badEntry);
+    const run = thread.run({ kind: 'waits', input: {} }, () => {});
+    run.enough();
+    const ended = await run.outcome;
+    const flag = Int32Array.of(ended.kind === 'done' ? Number(ended.output) : 0);
+    expect(isEnoughWhenSet(flag)()).toBe(true);
+    expect(throwWhenSet(flag)).not.toThrow();
+    setCancelFlag(flag);
+    setEnoughFlag(flag);
+    expect(isEnoughWhenSet(flag)()).toBe(false);
+    expect(throwWhenSet(flag)).toThrow('cancelled');
     await thread.discard();
   });
 

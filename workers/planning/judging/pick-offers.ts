@@ -5,8 +5,11 @@ import { isBetter, type PlanFigures, type PlanNode, supportCost } from '../plan-
 
 /** Differences below this share are none: planning figures are no more exact. */
 const SAME_SHARE = 0.01;
-/** Plans that are cut exactly, and plans that are offered. */
+/** Plans that are cut exactly, fewer of a model so heavy that each takes a second. */
 const MOST_CANDIDATES = 9;
+const MOST_HEAVY = 5;
+const HEAVY_TRIANGLES = 500_000;
+/** Plans that are offered. */
 const MOST_OFFERS = 7;
 
 type Measure = readonly [pieces: number, support: number, sight: number, bending: number];
@@ -54,8 +57,14 @@ function undominated<T>(items: readonly T[], measure: (item: T) => Measure): T[]
  * The plans of a search worth cutting exactly: the first (the best by the person's weights), the
  * best in each thing, then those in between, farthest from what is taken already.
  * @param plans the best first; @param most plans of more pieces are left out, but for the first
+ * @param triangles of the exact model
  */
-export function pickCandidates(plans: readonly PlanNode[], most: number): PlanNode[] {
+export function pickCandidates(
+  plans: readonly PlanNode[],
+  most: number,
+  triangles: number,
+): PlanNode[] {
+  const count = triangles > HEAVY_TRIANGLES ? MOST_HEAVY : MOST_CANDIDATES;
   const allowed = plans.filter((plan) => plan.pieces <= most);
   const pool = undominated(allowed.length > 0 ? allowed : plans.slice(0, 1), trialMeasure);
   const best = (allowed[0] ?? plans[0])!;
@@ -65,12 +74,12 @@ export function pickCandidates(plans: readonly PlanNode[], most: number): PlanNo
   // Pieces may break apart or come over when cut exactly: the runner-up in pieces goes along.
   const few = [...pool].sort((a, b) => a.pieces - b.pieces || a.cost - b.cost);
   for (const plan of few.slice(0, 2)) taken.add(plan);
-  while (taken.size < Math.min(MOST_CANDIDATES, pool.length)) {
+  while (taken.size < Math.min(count, pool.length)) {
     const left = pool.filter((plan) => !taken.has(plan));
     if (left.length === 0) break;
     taken.add(farthest(left, [...taken]));
   }
-  return [...taken];
+  return [...taken].slice(0, count);
 }
 
 /** The plan that differs most from all those taken, each measure by its ratio. */
