@@ -138,6 +138,22 @@ describe('what is mended without asking', () => {
     expect(report.mending[0].sentence).toMatch(/^1 facet had two corners in one place and was/);
   });
 
+  it('a surface that folds through itself in one place', () => {
+    const ball = sphere(50, 48, 48).mesh;
+    const positions = ball.positions.slice();
+    for (let k = 0; k < positions.length; k += 3) {
+      const far = Math.hypot(positions[k] - 50, positions[k + 1], positions[k + 2]);
+      positions[k] -= 120 * Math.exp(-((far / 18) ** 2));
+    }
+    const { report, solid } = inspectSoup(toSoup({ ...ball, positions }));
+    expect(report.mending.map((step) => step.kind)).toEqual(['unite']);
+    expect(report.mending[0].sentence).toBe('A shell that crossed itself was made one solid.');
+    expect(report.measures!.crossings).toEqual({ pairs: 0, complete: true });
+    // What stuck out on the far side is gone: the box has changed, which a person has to see.
+    expect(report.asks.map((ask) => ask.kind)).toEqual(['accept']);
+    expect(solid).not.toBeNull();
+  });
+
   it('a single facet that is missing', () => {
     const soup = toSoup(ball.mesh);
     const inspection = inspectSoup(soup.slice(9));

@@ -13,7 +13,7 @@ import { groupShells, type ShellGroups } from './group-shells.js';
 import { listShells, placeOf, type Shell } from './list-shells.js';
 import { joinMeshes } from './mesh-parts.js';
 import { partContacts } from './part-contacts.js';
-import { partSelfCrossing } from './part-self-crossing.js';
+import { arrangeSurface } from '../arranging/arrange-surface.js';
 import { isSameInside } from './same-inside.js';
 import { uniteMeshes, type UnionPart } from './unite-meshes.js';
 
@@ -26,8 +26,8 @@ const cannotUnite =
 /**
  * Makes one solid of shells that overlap: inside is where they wind more than zero times around a
  * point. Shells that share no space with others come through untouched, vertex for vertex. Hollows go
- * with the smallest shell around them. A shell that crosses itself is first cut into parts that do not,
- * and those are united again. The result is closed, also in single precision, and is checked against
+ * with the smallest shell around them. A shell that crosses itself is divided along its crossings, and
+ * what bounds the solid is kept. The result is closed, also in single precision, and is checked against
  * the winding of the input; when that fails it is refused in a sentence that names the way out.
  * @param mesh closed, each shell facing outward or, as a hollow, inward; it is not changed
  * @param tools.crossingTriangles pairs of triangles that cross; found here when they are not given
@@ -118,26 +118,26 @@ function uniteGroup(
   found: ShellGroups,
   { solids, context }: { solids: Solids; context: JobContext },
 ): TriangleMesh | null {
+  const together = joinMeshes(group.map((shell) => shell.mesh));
+  if (group.some((shell) => found.selfCrossing.has(shell.number))) {
+    const { triangles, complete } = findCrossings(together, buildBvh(together), { context });
+    const arranged = complete ? arrangeSurface(together, triangles) : null;
+    return arranged && isSameInside(together, arranged) ? arranged : null;
+  }
   const parts: UnionPart[] = [];
   for (const [outer, hollows] of hollowsByOuter(group)) {
     const crossing = hollows.filter((hollow) => doCross(outer, hollow, found));
     const nested = hollows.filter((hollow) => !crossing.includes(hollow));
     const mesh = joinMeshes([outer, ...nested].map((shell) => shell.mesh));
     const without = crossing.map((hollow) => turned(hollow.mesh));
-    if (![outer, ...hollows].some((shell) => found.selfCrossing.has(shell.number))) {
-      parts.push({ mesh, without });
-      continue;
-    }
-    const separated = crossing.length === 0 ? partSelfCrossing(mesh, solids, context) : null;
-    if (!separated) return null;
-    for (const part of separated) parts.push({ mesh: part, without: [] });
+    parts.push({ mesh, without });
   }
   if (parts.length === 0) return null;
   context.progress('Uniting', 0.8);
   const united = uniteMeshes(parts, solids);
   if (!united) return null;
   context.progress('Uniting', 0.9);
-  return isSameInside(joinMeshes(group.map((shell) => shell.mesh)), united) ? united : null;
+  return isSameInside(together, united) ? united : null;
 }
 
 /** Hollows of the group by the smallest shell around them; those around which no shell lies are left out. */
