@@ -48,7 +48,7 @@ export async function planModel(
   const loading = loadSolids();
   const { report, solid, timingsMs } = inspectFile(
     { bytes, fileName, choices: choicesOf(command) },
-    { solids: await loading, context: portionOf(context, 0, 0.15) },
+    { solids: await loading, context: portionOf(context, 0, 0.15), willBeDrawn: false },
   );
   if (!solid || !mayBePlanned(report, command.accept))
     throw new JobRefusal(namedRefusal(fileName, whyNot(report, command.millimetresPerUnit ?? 1)));

@@ -50,7 +50,16 @@ const mostPlacesListed = 200;
  */
 export function inspectFile(
   { bytes, fileName, choices = noChoices }: InspectedFile,
-  { solids, context = silentContext }: { readonly solids: Solids; readonly context?: JobContext },
+  {
+    solids,
+    context = silentContext,
+    willBeDrawn = true,
+  }: {
+    readonly solids: Solids;
+    readonly context?: JobContext;
+    /** Whether `pictureInspection` comes after it: then its work is begun beside. */
+    readonly willBeDrawn?: boolean;
+  },
 ): Inspection {
   const reading = readModel(bytes, fileName, {
     parts: choices.parts,
@@ -61,7 +70,7 @@ export function inspectFile(
   context.progress('Checking', 0.25);
   const asRead = surveySurface(reading.mesh);
   // A closed surface mostly stays as it is: what is drawn of it is made beside the rest.
-  if (asRead.closed) beginSimplifying(reading.mesh);
+  if (asRead.closed && willBeDrawn) beginSimplifying(reading.mesh);
   const mended = mendToSolid(reading.mesh, asRead.closed, choices, {
     solids,
     context: portionOf(context, 0.3, 0.75),
