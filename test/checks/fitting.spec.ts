@@ -6,7 +6,7 @@ import { FIT_TOLERANCE_MM, layOnBed } from '../../shared/geometry/fitting/lay-on
 import { cubeDirections } from '../../shared/geometry/fitting/candidate-downs.js';
 import { fitInRectangle } from '../../shared/geometry/fitting/rectangle-fit.js';
 import { spaceDiagonal } from '../../shared/geometry/fitting/space-measures.js';
-import { seededRandom } from '../support/random.js';
+import { randomDirection, seededRandom } from '../support/random.js';
 
 /**
  * Whether a p×q rectangle (p ≥ q) fits in an a×b one (a ≥ b). Source: W. B. Carver, Amer. Math.
@@ -192,6 +192,38 @@ describe('boxes and rods in the build space', () => {
       expect(layOnBed(rod(399.12), space, []).fits).toBe(true);
       expect(layOnBed(rod(399.13), space, []).fits).toBe(false);
     }
+  });
+
+  const rodSeed = 5;
+  it(`takes 1,000 thin rods up to the diagonal, however they lie, and none that is longer (seed ${rodSeed})`, () => {
+    const random = seededRandom(rodSeed);
+    let fitted = 0;
+    for (let n = 0; n < 1000; n++) {
+      const side = () => 60 + 300 * random();
+      const space: BuildSpace =
+        n % 3 === 0
+          ? { shape: 'round', diameterMm: side(), heightMm: side() }
+          : { shape: 'rectangular', widthMm: side(), depthMm: side(), heightMm: side() };
+      const bed =
+        space.shape === 'round' ? space.diameterMm : Math.hypot(space.widthMm, space.depthMm);
+      const longest = Math.hypot(bed, space.heightMm);
+      // Half of them within 0.01 mm of the limit, on either side.
+      const length =
+        n % 2 === 0 ? longest + 0.02 * (random() - 0.5) : longest * (0.5 + 0.7 * random());
+      const [x, y, z] = randomDirection(random).map((part) => part * length) as [
+        number,
+        number,
+        number,
+      ];
+      const from = [50 * random(), 50 * random(), 50 * random()];
+      const rod = Float64Array.from([...from, from[0]! + x, from[1]! + y, from[2]! + z]);
+      if (Math.abs(length - longest) < 1e-4) continue;
+      const pose = layOnBed(rod, space, cubeDirections);
+      expect(pose.fits, `${length} in ${JSON.stringify(space)}`).toBe(length < longest);
+      if (pose.fits) fitted++;
+    }
+    expect(fitted).toBeGreaterThan(350);
+    expect(fitted).toBeLessThan(850);
   });
 
   it('moves every point of what fits into the space', () => {
