@@ -9,7 +9,7 @@ const memoryChild = fileURLToPath(new URL('support/weld-memory-child.ts', import
 const LIMIT = 2;
 const MOST_BYTES = 60;
 const FRESH = 3;
-const TURNS = 5;
+const TURNS = 9;
 
 interface Times {
   readonly inspectMs: number[];

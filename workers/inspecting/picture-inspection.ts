@@ -4,7 +4,6 @@ import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { MeshReport } from '../../shared/jobs/model-inspect.js';
 import { wallsAt } from '../measuring/wall-thickness.js';
 import { makeProxy } from '../picturing/proxy.js';
-import { drawThumbnail } from '../picturing/thumbnail.js';
 import { makeViewGlb } from '../picturing/view-glb.js';
 import type { JobContext } from '../runtime/job-context.js';
 import type { Inspection } from './inspect-file.js';
@@ -43,12 +42,11 @@ export async function pictureInspection(
     triangleBudget: Infinity,
   });
   context.progress('Drawing', 0.85);
-  const thumbnail = drawThumbnail(mesh);
   context.progress('Drawing', 1);
   const triangles = mesh.indices.length / 3;
   return {
     view,
-    thumbnail,
+    thumbnail: proxy.thumbnail,
     proxy: solid && proxy.isClosed ? mesh : null,
     report: { ...report, proxy: { triangles, deviation: proxy.deviation } },
     viewTriangles: triangles,

@@ -5,6 +5,7 @@ import type { Deviation } from '../../shared/jobs/model-inspect.js';
 import { surfaceDeviation } from '../measuring/surface-deviation.js';
 import { deviationSamples, mostTriangles } from './simple-model.js';
 import { simpleModelOf } from './simplify-beside.js';
+import { drawThumbnail } from './thumbnail.js';
 
 export interface Proxy {
   readonly mesh: TriangleMesh;
@@ -12,6 +13,8 @@ export interface Proxy {
   readonly isClosed: boolean;
   /** The larger of the distances both ways; zeros when nothing was simplified, null when not measured. */
   readonly deviation: Deviation | null;
+  /** PNG. */
+  readonly thumbnail: Uint8Array;
 }
 
 /**
@@ -21,12 +24,14 @@ export interface Proxy {
 export async function makeProxy(mesh: TriangleMesh, bvh: MeshBVH | null): Promise<Proxy> {
   if (mesh.indices.length / 3 <= mostTriangles) {
     const isClosed = matesOf(mesh).closed;
-    return { mesh, isClosed, deviation: { mean: 0, p95: 0, max: 0, samples: deviationSamples } };
+    const deviation = { mean: 0, p95: 0, max: 0, samples: deviationSamples };
+    return { mesh, isClosed, deviation, thumbnail: drawThumbnail(mesh) };
   }
   const simple = await simpleModelOf(mesh);
   return {
     mesh: simple.mesh,
     isClosed: simple.isClosed,
+    thumbnail: simple.thumbnail,
     deviation:
       bvh && larger(surfaceDeviation(simple.mesh, bvh, deviationSamples), simple.deviation),
   };

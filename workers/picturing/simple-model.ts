@@ -6,6 +6,7 @@ import { surfaceDeviation } from '../measuring/surface-deviation.js';
 import { buildBvh } from '../measuring/triangle-bvh.js';
 import { mendTopology } from '../mending/mend-topology.js';
 import { simplifyForView } from './simplify-for-view.js';
+import { drawThumbnail } from './thumbnail.js';
 
 /** Triangles of the mesh that is planned and looked at. */
 export const mostTriangles = 60_000;
@@ -19,6 +20,8 @@ export interface SimpleModel {
   readonly isClosed: boolean;
   /** How far the larger mesh lies from this one; null when it has no area. */
   readonly deviation: Deviation | null;
+  /** PNG. */
+  readonly thumbnail: Uint8Array;
 }
 
 /** Simplifies a mesh of more than 60 000 triangles. The same mesh gives the same one; it is not changed. */
@@ -34,5 +37,6 @@ export async function makeSimpleModel(mesh: TriangleMesh): Promise<SimpleModel> 
     mesh: made,
     isClosed: matesOf(made).closed,
     deviation: surfaceDeviation(mesh, buildBvh(made), deviationSamples),
+    thumbnail: drawThumbnail(made),
   };
 }

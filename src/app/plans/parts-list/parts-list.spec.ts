@@ -28,11 +28,11 @@ async function setUp() {
 }
 
 describe('PartsList', () => {
-  it('says item, name, size, volume, triangles and fit of every piece', async () => {
+  it('says item, name, size, volume, support and fit of every piece', async () => {
     const { list } = await setUp();
     const texts = await list.texts();
     expect(texts).toHaveLength(3);
-    expect(texts[0]).toMatch(/1\s*P01.*101\.0 × 200\.0 × 50\.0\smm.*1\s000\scm³.*1\s200.*yes/s);
+    expect(texts[0]).toMatch(/1\s*P01.*101\.0 × 200\.0 × 50\.0\smm.*1\s000\scm³.*2.0\scm³.*yes/s);
     expect(texts[2]).toMatch(/P03.*no/s);
   });
 

@@ -10,7 +10,7 @@ import {
 } from '@angular/core';
 import { MatIcon } from '@angular/material/icon';
 import { type Piece } from '../../../../shared/jobs/plan-make.js';
-import { writeCount, writeSizeMm, writeVolume } from '../../ui/format/quantities';
+import { writeSizeMm, writeVolume } from '../../ui/format/quantities';
 
 const steps: Readonly<Record<string, number>> = { ArrowDown: 1, ArrowUp: -1 };
 
@@ -42,7 +42,6 @@ export class PartsList {
       volume: writeVolume(piece.volumeMm3),
       support: writeVolume(piece.supportMm3),
       envelope: this.envelopes()[piece.space] ?? '',
-      triangles: writeCount(piece.triangles),
       fits: piece.fits,
     })),
   );
