@@ -1,4 +1,4 @@
-import { seededRandom } from './seeded-random.js';
+import { seededRandom } from '../runtime/seeded-random.js';
 import { type CutCandidate, cutCandidates } from './cut-candidates.js';
 import { partZones } from './judging/plan-zone.js';
 import { sectionSight } from './judging/section-sight.js';

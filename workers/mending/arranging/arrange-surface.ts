@@ -5,7 +5,7 @@ import { groupByMates, mateEdges } from '../../../shared/geometry/mesh/edge-mate
 import { facetNormal } from '../../../shared/geometry/mesh/facet-normal.js';
 import { boundingBox } from '../../../shared/geometry/mesh/measure.js';
 import type { TriangleMesh } from '../../../shared/geometry/mesh/triangle-mesh.js';
-import { seededShares } from './seeded-shares.js';
+import { seededRandom } from '../../runtime/seeded-random.js';
 import { findCrossings } from '../../measuring/find-crossings.js';
 import { buildBvh } from '../../measuring/triangle-bvh.js';
 import { type CrossedTriangles, listCrossed } from './crossed-triangles.js';
@@ -193,7 +193,7 @@ function moveVertices(
   seed: number,
 ): TriangleMesh {
   const moved = positions.slice();
-  const random = seededShares(seed);
+  const random = seededRandom(seed);
   const seen = new Set<number>();
   for (const triangle of crossing)
     for (let corner = 0; corner < 3; corner++) {
