@@ -3,7 +3,7 @@ import { type Plane } from '../../shared/geometry/vectors/plane.js';
 import { type BodyNodes, bodyNodes } from './body-nodes.js';
 import { bodyFaces } from './body-faces.js';
 import { cellsInFrames, roomInFrames } from './fit-frames.js';
-import { type Crease, creasePlanes } from './judging/creases.js';
+import { type Crease, CREASE_SHARE, creasePlanes } from './judging/creases.js';
 import { ZONE_CLEARANCE_MM } from './judging/plan-zone.js';
 import {
   type CutFigures,
@@ -50,8 +50,6 @@ const NODE_SPACING = 0.14;
 const DIVIDING_CUTS = 3;
 /** Planes along creases looked at per direction. */
 const CREASE_PLANES = 4;
-/** Share of a seam's cost that stays where it follows a crease. */
-const CREASE_SHARE = 0.5;
 /** Columns below a leaning face are rarely all needed: share of the bound that counts. Measured, rough. */
 const BOUND_SHARE = 0.5;
 

@@ -8,6 +8,7 @@ import {
 import { poseOn } from '../../../shared/geometry/fitting/lay-on-bed.js';
 import { outerVertices } from '../../../shared/geometry/fitting/outer-vertices.js';
 import { columnSupport } from '../../../shared/geometry/support/column-support.js';
+import { boundingBox } from '../../../shared/geometry/mesh/measure.js';
 import { capSides } from '../body-faces.js';
 import { type TriangleMesh } from '../../../shared/geometry/mesh/triangle-mesh.js';
 import { type Vector3 } from '../../../shared/geometry/vectors/plane.js';
@@ -61,7 +62,7 @@ export function leastSupport(
     if (space < 0) continue;
     tried++;
     const supportMm3 =
-      bounds[k] <= NEXT_TO_NOTHING_MM3 ? Math.max(0, bounds[k]) : measured(mesh, downs[k], task);
+      bounds[k] <= NEXT_TO_NOTHING_MM3 ? Math.max(0, bounds[k]) : supportOn(mesh, downs[k], task);
     if (!best || supportMm3 < best.supportMm3) best = { supportMm3, down: downs[k], space };
     if (best.supportMm3 <= NEXT_TO_NOTHING_MM3) break;
   }
@@ -72,31 +73,11 @@ export function leastSupport(
 export function supportOn(
   mesh: TriangleMesh,
   down: Vector3,
-  task: Pick<SupportTask, 'columns' | 'overhangDegrees'>,
-): number {
-  return measured(mesh, down, task);
-}
-
-function measured(
-  mesh: TriangleMesh,
-  down: Vector3,
   { columns, overhangDegrees }: Pick<SupportTask, 'columns' | 'overhangDegrees'>,
 ): number {
-  const pitchMm = Math.max(FINEST_MM, longestSide(mesh.positions) / columns);
+  const pitchMm = Math.max(FINEST_MM, Math.max(...boundingBox(mesh.positions).size) / columns);
   const up: Vector3 = [0 - down[0], 0 - down[1], 0 - down[2]];
   return columnSupport({ mesh, up, pitchMm, overhangDegrees }).volumeMm3;
-}
-
-function longestSide(p: Float64Array): number {
-  const low = [Infinity, Infinity, Infinity];
-  const high = [-Infinity, -Infinity, -Infinity];
-  for (let k = 0; k < p.length; k += 3)
-    for (let axis = 0; axis < 3; axis++) {
-      const at = p[k + axis];
-      if (at < low[axis]) low[axis] = at;
-      if (at > high[axis]) high[axis] = at;
-    }
-  return Math.max(high[0] - low[0], high[1] - low[1], high[2] - low[2]);
 }
 
 /**

@@ -10,6 +10,9 @@ export interface Crease {
   readonly lengthMm: number;
 }
 
+/** Share of a seam's cost that stays where it follows a crease. Common practice, no source. */
+export const CREASE_SHARE = 0.5;
+
 /** Faces that meet at more than this make a crease, degrees. Common practice, no source. */
 const CREASE_DEGREES = 30;
 /** The longest are kept: these are what a plane can follow. */

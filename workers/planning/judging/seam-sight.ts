@@ -1,6 +1,6 @@
 import { matesOf } from '../../../shared/geometry/mesh/edge-mates.js';
 import { type TriangleMesh } from '../../../shared/geometry/mesh/triangle-mesh.js';
-import { type Crease } from './creases.js';
+import { type Crease, CREASE_SHARE } from './creases.js';
 import { type SurfaceWorth } from './surface-worth.js';
 
 /** Where the seams of one cut come to the surface. */
@@ -11,8 +11,6 @@ export interface SeamSegments {
   readonly creaseMm: number;
 }
 
-/** Share of a seam's cost that stays where it follows a crease. Common practice, no source. */
-const CREASE_SHARE = 0.5;
 /** A seam this near to a crease follows it, mm. */
 const CREASE_REACH_MM = 0.6;
 /** … when it runs along it (cosine). */
