@@ -1,8 +1,8 @@
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type Plane } from '../../shared/geometry/vectors/plane.js';
 import { type CrossSection, type Solids, type SolidScope } from '../solids/solid-kernel.js';
-import { type Cap, capsOf } from './cap-loops.js';
-import { seamPlane, type SeamPlane, toPlane } from './seam-plane.js';
+import { type Cap, capsOf } from '../../shared/geometry/sections/cap-loops.js';
+import { seamPlane, type SeamPlane, toPlane } from '../../shared/geometry/sections/seam-plane.js';
 import { outlinePairs } from './seam-outlines.js';
 
 /** Where two pieces only graze each other there is nothing to glue; smaller overlaps are no seam. */

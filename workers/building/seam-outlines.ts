@@ -1,4 +1,4 @@
-import { fromPlane, type SeamPlane } from './seam-plane.js';
+import { fromPlane, type SeamPlane } from '../../shared/geometry/sections/seam-plane.js';
 
 /**
  * Line pairs (flat xyz of both ends, mm) along closed contours given in plane coordinates. Contours

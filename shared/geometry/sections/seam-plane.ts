@@ -1,5 +1,5 @@
-import { planeFrame, type PlaneFrame } from '../../shared/geometry/vectors/plane-frame.js';
-import { type Plane, type Vector3 } from '../../shared/geometry/vectors/plane.js';
+import { planeFrame, type PlaneFrame } from '../vectors/plane-frame.js';
+import { type Plane, type Vector3 } from '../vectors/plane.js';
 
 /** Plane coordinates whose origin is near the region of interest, which keeps their digits. */
 export interface SeamPlane extends PlaneFrame {

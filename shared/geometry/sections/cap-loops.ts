@@ -1,4 +1,4 @@
-import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
+import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 
 /** The part of a body's surface that one cut left. */
 export interface Cap {

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
-import { cutMesh } from '../../shared/geometry/cutting/cut-mesh.js';
-import { boxWithCavity } from '../../test/support/shapes.js';
-import { loadSolids } from '../solids/solid-kernel.js';
+import { cutMesh } from '../cutting/cut-mesh.js';
+import { boxWithCavity } from '../../../test/support/shapes.js';
+import { loadManifold, manifoldTriangulator } from '../../../test/support/triangulator.js';
 import { capsOf } from './cap-loops.js';
 
 describe('capsOf', () => {
@@ -10,7 +10,7 @@ describe('capsOf', () => {
   });
 
   it('bounds each cap by closed loops with the cap on their left, holes included', async () => {
-    const { triangulate } = await loadSolids();
+    const triangulate = manifoldTriangulator(await loadManifold());
     const { mesh } = boxWithCavity(10, 4);
     const plane = { normal: [0, 0, 1], offset: 5.5 } as const;
     const halves = cutMesh(mesh, plane, { triangulate, capTag: 3 });
