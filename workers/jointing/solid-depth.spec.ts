@@ -1,0 +1,49 @@
+import { beforeAll, describe, expect, it } from 'vitest';
+import { capFrame } from '../../shared/geometry/features/cap-frame.js';
+import { cutMesh } from '../../shared/geometry/cutting/cut-mesh.js';
+import { seamPlane } from '../../shared/geometry/sections/seam-plane.js';
+import { box, boxWithCavity, sphere } from '../../test/support/shapes.js';
+import { loadSolids, type Solids } from '../solids/solid-kernel.js';
+import { solidDepths } from './solid-depth.js';
+
+let solids: Solids;
+beforeAll(async () => {
+  solids = await loadSolids();
+});
+
+const level = (offset: number) => ({ normal: [0, 0, 1] as const, offset });
+const below = (mesh: Parameters<typeof cutMesh>[0], offset: number) =>
+  cutMesh(mesh, level(offset), { triangulate: solids.triangulate, capTag: 1 }).below;
+const frameAt = (offset: number) =>
+  capFrame(seamPlane(level(offset), [0, 0, offset]), [0, 0, 1], true);
+
+describe('solidDepths', () => {
+  it('reaches the floor of a box, and nothing where the disc is over the side', () => {
+    const half = below(box([-20, -20, 0], [20, 20, 60]).mesh, 25);
+    const discs = [
+      { x: 0, y: 0, radiusMm: 3 },
+      { x: 16.9, y: 0, radiusMm: 3 },
+      { x: 17.5, y: 0, radiusMm: 3 },
+    ];
+    expect([...solidDepths(half, 1, frameAt(25), discs, 100)]).toEqual([25, 25, 0]);
+    expect([...solidDepths(half, 1, frameAt(25), discs.slice(0, 1), 10)]).toEqual([10]);
+  });
+
+  it('stops at the roof of a hollow', () => {
+    const half = below(boxWithCavity(30, 20).mesh, 29);
+    const [depth] = solidDepths(half, 1, frameAt(29), [{ x: 15, y: 15, radiusMm: 2 }], 100);
+    expect(depth).toBeCloseTo(4, 9);
+  });
+
+  it('follows the closed form on a ball cut in the middle: the rim of the disc sinks first', () => {
+    const half = below(sphere(40, 720, 720).mesh, 0);
+    for (const [x, radiusMm] of [
+      [0, 5],
+      [20, 4],
+      [33, 6],
+    ] as const) {
+      const [depth] = solidDepths(half, 1, frameAt(0), [{ x, y: 0, radiusMm }], 100);
+      expect(depth).toBeCloseTo(Math.sqrt(40 ** 2 - (x + radiusMm) ** 2), 1);
+    }
+  });
+});
