@@ -1,6 +1,7 @@
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
-import { type Plane } from '../../shared/geometry/vectors/plane.js';
+import { type Plane, type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { type CrossSection, type Solids, type SolidScope } from '../solids/solid-kernel.js';
+import { loopsOf } from '../solids/regions.js';
 import { type Cap, capsOf } from '../../shared/geometry/sections/cap-loops.js';
 import { seamPlane, type SeamPlane, toPlane } from '../../shared/geometry/sections/seam-plane.js';
 import { outlinePairs } from './seam-outlines.js';
@@ -16,6 +17,15 @@ export interface SeamRegion {
   cut: number;
   /** Its outline as line pairs, flat xyz of both ends, mm. */
   outline: Float32Array;
+  /** The pieces on the side that the cut's normal points to, and on the other. */
+  above: string;
+  below: string;
+  /** Coordinates in the seam's plane; all seams of a cut share them. */
+  plane: SeamPlane;
+  /** The cut's normal. */
+  normal: Vector3;
+  /** In these coordinates, flat xy, mm: outers counter-clockwise, holes clockwise. */
+  region: Float64Array[];
 }
 
 interface NamedBody {
@@ -87,7 +97,16 @@ function seamsOfCut(
       const areaMm2 = shared.area();
       if (!(areaMm2 > LEAST_SEAM_MM2)) continue;
       const outline = outlinePairs(shared.toPolygons(), frame, LEAST_SEAM_MM2);
-      seams.push({ between: [upper.name, lower.name], areaMm2, outline });
+      seams.push({
+        between: [upper.name, lower.name],
+        areaMm2,
+        outline,
+        above: upper.name,
+        below: lower.name,
+        plane: frame,
+        normal: plane.normal,
+        region: loopsOf(scope, shared),
+      });
     }
   return seams;
 }
