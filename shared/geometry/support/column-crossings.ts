@@ -2,10 +2,15 @@
 export interface Crossings {
   readonly count: number;
   readonly heights: Float64Array;
-  /** −1 leaves the solid, 1 enters it, 2 enters it through a face that needs support. */
+  /**
+   * −1 leaves the solid, 1 enters it, 2 enters it through a face that needs support, 3 through one
+   * that is level as well.
+   */
   readonly steps: Int8Array;
 }
 
+/** Faces nearer to level than this (cosine) are level: half a degree. */
+const LEVEL_COS = 0.99996;
 /** More columns than this are not made: the pitch is made coarser by the caller. */
 const MOST_COLUMNS = 1 << 26;
 
@@ -22,11 +27,13 @@ export class ColumnCrossings {
   private filled = 0;
 
   private constructor(
-    private readonly x0: number,
-    private readonly y0: number,
-    private readonly pitch: number,
-    private readonly across: number,
-    private readonly along: number,
+    /** Middle of the first column, mm. */
+    readonly x0: number,
+    readonly y0: number,
+    readonly pitch: number,
+    /** Columns along x, and along y. */
+    readonly across: number,
+    readonly along: number,
   ) {
     this.heads = new Int32Array(across * along).fill(-1);
   }
@@ -68,7 +75,8 @@ export class ColumnCrossings {
       if (nz < 0) {
         const nx = uy * vz - uz * vy;
         const ny = uz * vx - ux * vz;
-        step = -nz > leanSin * Math.sqrt(nx * nx + ny * ny + nz * nz) ? 2 : 1;
+        const size = Math.sqrt(nx * nx + ny * ny + nz * nz);
+        step = -nz <= leanSin * size ? 1 : -nz > LEVEL_COS * size ? 3 : 2;
       }
       const slopeX = (uz * vy - vz * uy) / nz;
       const slopeY = (vz * ux - uz * vx) / nz;
@@ -136,8 +144,11 @@ export class ColumnCrossings {
     this.next = double(this.next, new Int32Array(size));
   }
 
-  /** Every column that the surface crosses; entering comes before leaving at one height. */
-  visit(see: (crossings: Crossings) => void): void {
+  /**
+   * Every column that the surface crosses, numbered along x, then y; entering comes before leaving
+   * at one height.
+   */
+  visit(see: (crossings: Crossings, column: number) => void): void {
     let heights = new Float64Array(32);
     let steps = new Int8Array(32);
     for (let column = 0; column < this.heads.length; column++) {
@@ -164,7 +175,7 @@ export class ColumnCrossings {
         heights[to] = height;
         steps[to] = step;
       }
-      if (count > 0) see({ count, heights, steps });
+      if (count > 0) see({ count, heights, steps }, column);
     }
   }
 }

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { box, cone, join, prism, sphere } from '../../../test/support/shapes.js';
 import { type TriangleMesh } from '../mesh/triangle-mesh.js';
 import { type Vector3 } from '../vectors/plane.js';
-import { columnSupport } from './column-support.js';
+import { columnSupport, heldColumns } from './column-support.js';
 
 const up: Vector3 = [0, 0, 1];
 const support = (
@@ -92,5 +92,39 @@ describe('columnSupport', () => {
       areaMm2: 0,
     });
     expect(() => support(box([0, 0, 0], [1e4, 1e4, 1]).mesh, up, 0.1)).toThrow(RangeError);
+  });
+
+  it('lets level faces between near walls carry themselves, and no others', () => {
+    // A gate: two posts 12 mm apart with a lintel, and a ledge that sticks out on one side.
+    const mesh = join([
+      box([0, 0, 0], [10, 20, 30]).mesh,
+      box([22, 0, 0], [32, 20, 30]).mesh,
+      box([0, 0, 30], [40, 20, 40]).mesh,
+    ]);
+    const of = (bridgeMm: number) =>
+      columnSupport({ mesh, up, pitchMm: 0.5, overhangDegrees: 45, bridgeMm }).volumeMm3;
+    const [gate, ledge] = [12 * 20 * 30, 8 * 20 * 30];
+    expect(of(0) / (gate + ledge)).toBeCloseTo(1, 2);
+    expect(of(10) / (gate + ledge)).toBeCloseTo(1, 2);
+    expect(of(13) / ledge).toBeCloseTo(1, 2);
+  });
+
+  it('gives every column that is held, adding up to the volume', () => {
+    const { columns, pitchMm, volumeMm3, areaMm2, u, v } = heldColumns({
+      mesh: tee(),
+      up,
+      pitchMm: 1,
+      overhangDegrees: 45,
+    });
+    let sum = 0;
+    for (let k = 0; k < columns.length; k += 4) {
+      sum += columns[k + 3]! - columns[k + 2]!;
+      // Under the arms of the T, never under its stem.
+      const [x, y] = [0, 1].map((axis) => columns[k]! * u[axis]! + columns[k + 1]! * v[axis]!);
+      expect(Math.abs(x!)).toBeGreaterThan(10);
+      expect(Math.abs(y!)).toBeLessThan(10);
+    }
+    expect(sum * pitchMm ** 2).toBeCloseTo(volumeMm3, 6);
+    expect((columns.length / 4) * pitchMm ** 2).toBeCloseTo(areaMm2, 6);
   });
 });
