@@ -20,8 +20,7 @@ export const errorCodes = [
   'plan.notReady',
   'plan.offerNotFound',
   'plan.offerOutdated',
-  'plan.offerNotFound',
-  'plan.offerOutdated',
+  'plan.proofFailed',
   'job.notFound',
   'server.failed',
 ] as const;

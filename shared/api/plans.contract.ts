@@ -1,6 +1,8 @@
 import * as z from 'zod';
 import { objectivesSchema, planOutput } from '../jobs/plan-make.js';
+import { jointWishes } from '../jobs/joint-plan.js';
 import { planWishes } from '../jobs/plan-wishes.js';
+import { orientationWish } from '../jobs/recipe.js';
 import { envelopeResponse } from './envelopes.contract.js';
 import { recordId } from './ids.js';
 import { jobResponse } from './jobs.contract.js';
@@ -17,6 +19,19 @@ const planOrder = z.object({
    * wishes and seed of that plan.
    */
   fromOffer: z.object({ planId: recordId, offer: z.number().int().min(0).max(99) }).optional(),
+  /** Joints as the walls allow unless asked for otherwise. */
+  joints: jointWishes.optional(),
+  /**
+   * A plan that was made: its cuts are made again as they are, with its envelopes, wishes, material
+   * and seed, and what is given here instead of its own.
+   */
+  fromPlan: z
+    .object({
+      planId: recordId,
+      joints: jointWishes.optional(),
+      orientations: z.array(orientationWish).max(400).optional(),
+    })
+    .optional(),
   seed: z
     .number()
     .int()
@@ -25,10 +40,22 @@ const planOrder = z.object({
     .default(1),
 });
 export const planRequest = planOrder.refine(
-  (order) => order.envelopeId !== undefined || order.fromOffer !== undefined,
+  (order) =>
+    order.envelopeId !== undefined || order.fromOffer !== undefined || order.fromPlan !== undefined,
   { path: ['envelopeId'], message: 'Choose an envelope' },
 );
 export type PlanRequest = z.input<typeof planRequest>;
+
+/** A person's word that a plan with a failed check may be downloaded all the same. */
+export const planReleaseRequest = z.object({
+  reason: z.string().trim().min(3, 'Say why, in a few words').max(300),
+});
+export const planRelease = z.object({
+  reason: z.string(),
+  by: z.string(),
+  at: z.iso.datetime(),
+});
+export type PlanRelease = z.infer<typeof planRelease>;
 
 export const planSummary = z.object({
   id: recordId,
@@ -49,6 +76,8 @@ export const planSummary = z.object({
   job: jobResponse,
   pieceCount: z.number().int().nullable(),
   allPassed: z.boolean().nullable(),
+  /** Null unless the proof failed and someone wanted the files all the same. */
+  release: planRelease.nullable(),
   /** What the plans of a model are compared by; null until made, and for plans of before. */
   objectives: objectivesSchema.nullable(),
 });

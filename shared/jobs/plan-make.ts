@@ -1,7 +1,9 @@
 import * as z from 'zod';
 import { vector3 } from './geometry-values.js';
 import { planWishes, usualWishes } from './plan-wishes.js';
-import { buildSpaceSchema, cutTreeSchema, recipeSchema } from './recipe.js';
+import { jointSchema, jointWishes, partSchema, usualJoints } from './joint-plan.js';
+import { materialProfile, usualMaterial } from './material-profile.js';
+import { buildSpaceSchema, cutTreeSchema, orientationWish, recipeSchema } from './recipe.js';
 
 export const planInput = z.object({
   solidKey: z.string(),
@@ -12,6 +14,10 @@ export const planInput = z.object({
   wishes: planWishes.default(usualWishes),
   /** A tree that was found before: its pieces are made, nothing is searched. */
   tree: cutTreeSchema.nullable().default(null),
+  joints: jointWishes.default(usualJoints),
+  material: materialProfile.default(usualMaterial),
+  /** By the names that the pieces of this very tree have. */
+  orientations: z.array(orientationWish).max(400).default([]),
   seed: z.number().int().min(0),
   outputPrefix: z.string(),
 });
@@ -40,6 +46,41 @@ export const offerSchema = z.object({
 });
 export type Offer = z.infer<typeof offerSchema>;
 
+/** A low and a high end: estimates without a tool path are rarely better than ten per cent. */
+export const rangeSchema = z.tuple([z.number(), z.number()]);
+export type Range = z.infer<typeof rangeSchema>;
+
+/** How a piece lies, or could lie, to be printed. */
+export const orientationSchema = z.object({
+  /** Points at the bed, in the assembled model. */
+  down: vector3,
+  space: z.number().int().min(0),
+  supportMm3: z.number(),
+  /** What the support holds up, seen from above, mm². */
+  supportMm2: z.number(),
+  heightMm: z.number(),
+  /** Flat on the bed, mm². */
+  contactMm2: z.number(),
+  /**
+   * Height of the centre of mass over its least distance from the edge of the foot; null when it
+   * would fall over.
+   */
+  tipping: z.number().nullable(),
+  /** Faces that support leans on, those in show counted more, mm². */
+  scarMm2: z.number(),
+});
+export type PieceOrientation = z.infer<typeof orientationSchema>;
+
+export const estimateSchema = z.object({
+  /** Piece and support together. */
+  massG: rangeSchema,
+  filamentM: rangeSchema,
+  hours: rangeSchema,
+  /** Of the material, in the workshop's currency. */
+  cost: rangeSchema,
+});
+export type Estimate = z.infer<typeof estimateSchema>;
+
 export const pieceSchema = z.object({
   /** Item number of the parts list, from 1. */
   item: z.number().int(),
@@ -60,6 +101,11 @@ export const pieceSchema = z.object({
   placement: z.array(z.number()).length(12),
   /** Centre of the piece's box in the assembled model, mm. */
   centreMm: vector3,
+  /** The one that is used, then others nearly as good; empty for plans of before. */
+  orientations: z.array(orientationSchema).default([]),
+  estimate: estimateSchema.nullable().default(null),
+  /** What could not be done and why. */
+  notes: z.array(z.string()).default([]),
 });
 
 export const seamSchema = z.object({
@@ -72,7 +118,35 @@ export const seamSchema = z.object({
   visibleMm: z.number().default(0),
   /** See the objectives, kPa. */
   bendingKpa: z.number().default(0),
+  joint: jointSchema.nullable().default(null),
+  /** To be mixed, squeeze-out included. */
+  glueMl: rangeSchema.default([0, 0]),
 });
+
+/** One move of the glue-up. */
+export const assemblyStepSchema = z.object({
+  /** Pieces that move, and those that they are joined to. */
+  moved: z.array(z.string()),
+  onto: z.array(z.string()),
+  /** Direction of the move, unit, assembled model. */
+  direction: vector3,
+  /** Seams (numbers in the plan's list, from 0) that are closed by it. */
+  seams: z.array(z.number().int()),
+  glueMl: rangeSchema,
+  /** Mixes of glue, each used up within its pot life. */
+  mixes: z.number().int(),
+  movedMassG: rangeSchema,
+});
+export type AssemblyStep = z.infer<typeof assemblyStepSchema>;
+
+export const totalsSchema = z.object({
+  estimate: estimateSchema,
+  glueMl: rangeSchema,
+  mixes: z.number().int(),
+  /** Of the finished object: pieces, pins, lips and glue, no support. */
+  assembledG: rangeSchema,
+});
+export type PlanTotals = z.infer<typeof totalsSchema>;
 
 export const proofSchema = z.object({
   /** What is checked, in words a maker understands. */
@@ -111,6 +185,10 @@ export const planOutput = z.object({
   /** Which of the offers this is; null when the tree was given. */
   chosenOffer: z.number().int().nullable().default(null),
   proof: z.array(proofSchema),
+  /** Pins, rods and lips; empty for plans of before. */
+  parts: z.array(partSchema).default([]),
+  assembly: z.array(assemblyStepSchema).default([]),
+  totals: totalsSchema.nullable().default(null),
   timingsMs: timingsSchema,
   files: z.object({
     /** GLB: one mesh `P01` … a piece, one line set `seam-1` … a seam, all in the assembled frame, mm. */

@@ -1,5 +1,7 @@
 import * as z from 'zod';
-import { planeSchema } from './geometry-values.js';
+import { planeSchema, vector3 } from './geometry-values.js';
+import { jointWishes, noJoints } from './joint-plan.js';
+import { materialProfile, usualMaterial } from './material-profile.js';
 import { planWishes, usualWishes } from './plan-wishes.js';
 
 /** A tree of planar cuts. A leaf is a part; a part that falls into loose bodies becomes several pieces. */
@@ -44,6 +46,17 @@ export const buildSpaceSchema = z.discriminatedUnion('shape', [
   }),
 ]);
 
+/** How a person wants a piece to lie. */
+export const orientationWish = z.object({
+  piece: z.string().max(12),
+  /** Unit resting direction: it points at the bed, in the frame of the scaled model. */
+  down: vector3.refine(
+    ([x, y, z]) => Math.abs(Math.hypot(x, y, z) - 1) < 1e-6,
+    'A direction has length 1',
+  ),
+});
+export type OrientationWish = z.infer<typeof orientationWish>;
+
 /** A plan as pure data: building it twice gives the same bytes. */
 export const recipeSchema = z.object({
   version: z.literal(1),
@@ -54,6 +67,10 @@ export const recipeSchema = z.object({
   /** Further envelopes, for pieces that the ones before do not hold. */
   otherSpaces: z.array(buildSpaceSchema).max(7).default([]),
   wishes: planWishes.default(usualWishes),
+  /** Plans of before had no joints. */
+  joints: jointWishes.default(noJoints),
+  material: materialProfile.default(usualMaterial),
+  orientations: z.array(orientationWish).max(400).default([]),
   tree: cutTreeSchema,
 });
 export type Recipe = z.infer<typeof recipeSchema>;

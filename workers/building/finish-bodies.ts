@@ -1,27 +1,57 @@
-import { candidateDowns } from '../../shared/geometry/fitting/candidate-downs.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
-import { type BedPose, layOnBed, poseOn } from '../../shared/geometry/fitting/lay-on-bed.js';
+import { type BedPose } from '../../shared/geometry/fitting/lay-on-bed.js';
 import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { type Body } from '../../shared/geometry/cutting/apply-tree.js';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
+import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type JobContext } from '../runtime/job-context.js';
 import { PLACES_TRIED, roundOnBed, type RoundedPiece } from './round-on-bed.js';
 
-/** A body with its name, its place on the bed and its rounded mesh there. */
-export interface FinishedPiece extends RoundedPiece {
-  /** From 1, bottom to top of the assembled model. */
-  item: number;
+/** A body with its name; numbered bottom to top of the assembled model. */
+export interface NamedBody {
+  /** From 1. */
+  readonly item: number;
   /** `P01` … or `P001` … when there are a hundred or more. */
-  name: string;
-  body: Body;
-  /** Whether the pose lies inside its build space. */
-  fits: boolean;
-  /** Number of that space. */
-  space: number;
-  /** The resting direction, in the assembled model. */
-  down: Vector3;
+  readonly name: string;
+  readonly body: Body;
   /** Middle of its box in the assembled model, mm. */
-  centreMm: [number, number, number];
+  readonly centreMm: [number, number, number];
+}
+
+/** A piece ready to be written: what the body became, and where it lies. */
+export interface Version {
+  readonly mesh: TriangleMesh;
+  /** How this mesh lies: a bevel may take away the corner that it stood on. */
+  readonly pose: BedPose;
+  /** What sockets, pins and marks add, and what bevels take away, mm³ of this mesh. */
+  readonly featuresMm3: number;
+  readonly bevelMm3: number;
+  readonly notes: readonly string[];
+}
+
+/** How a body is to be made. */
+export interface Outfit {
+  /** Number of the space that the poses are for. */
+  readonly space: number;
+  /** The fullest first; another is made only when the ones before cannot be written soundly. */
+  readonly versions: readonly (() => Version)[];
+}
+
+/** Decides how all bodies of a plan are made; `common` is what it found out on the way. */
+export type Outfitter<Common> = (
+  bodies: readonly NamedBody[],
+  offsets: readonly number[],
+) => Promise<{ outfits: readonly Outfit[]; common: Common }>;
+
+/** A body with its place on the bed and its rounded mesh there. */
+export interface FinishedPiece extends RoundedPiece, NamedBody {
+  /** Whether the pose lies inside its build space. */
+  readonly fits: boolean;
+  readonly space: number;
+  /** The resting direction, in the assembled model. */
+  readonly down: Vector3;
+  /** What it was made into. */
+  readonly version: Version;
 }
 
 /** Bodies and the offsets (mm) their cuts were made at, numbered as in the tree. */
@@ -30,99 +60,77 @@ export interface CutBodies {
   offsets: readonly number[];
 }
 
-export interface FinishedPieces {
+export interface FinishedPieces<Common> {
   pieces: FinishedPiece[];
   /** Offsets of the cuts as in the pieces: the given ones unless cuts had to be moved. */
   offsets: readonly number[];
   /** One sentence for each piece that could not be made sound. Empty when all is well. */
   failures: string[];
+  common: Common;
 }
-
-/** How a body, by its path, is to lie: what the planner found best. */
-export type WantedPoses = ReadonlyMap<string, { readonly down: Vector3; readonly space: number }>;
 
 /** How far a cut may be moved from where it was when rounding cannot close a piece, mm. */
 export const FARTHEST_RECUT_MM = 0.02;
 const RECUTS_TRIED = 3;
 
 /**
- * Turns cut bodies into pieces: laid on the bed, rounded to what a file can hold, checked to be
- * closed and whole after rounding, named bottom to top. A body that no place on the bed closes makes
- * its own cuts move by up to {@link FARTHEST_RECUT_MM} and everything be cut again; what fails after
- * that is kept and said in `failures`.
- * @param spaces a body goes to the first that holds it
+ * Turns cut bodies into pieces: named bottom to top, outfitted, laid on the bed, rounded to what a
+ * file can hold, checked to be closed and whole after rounding. A body that no place on the bed and
+ * no simpler version closes makes its own cuts move by up to {@link FARTHEST_RECUT_MM} and
+ * everything be cut again; what fails after that is kept and said in `failures`.
  * @param recut cuts the model again at these offsets (mm)
- * @param wanted tried before anything else
  * @param locked numbers (from 0) of cuts that must not move
  */
-export function finishBodies(
+export async function finishBodies<Common>(
   cut: CutBodies,
   spaces: readonly BuildSpace[],
-  recut: (offsets: readonly number[]) => CutBodies,
-  context: JobContext,
   {
-    wanted = new Map(),
-    locked = new Set(),
-  }: { wanted?: WantedPoses; locked?: ReadonlySet<number> } = {},
-): FinishedPieces {
-  let bodies = cut.bodies;
-  let offsets = cut.offsets;
-  let placed = placeAll(bodies, spaces, wanted, context);
-  for (let attempt = 1; attempt <= RECUTS_TRIED && placed.some(isUnsound); attempt++) {
-    const moved = nudged(
-      cut.offsets,
-      cutsAround(
-        bodies.filter((_, i) => isUnsound(placed[i])),
-        locked,
-      ),
-      attempt,
-    );
-    if (!moved) break;
-    const again = recut(moved);
-    const placedAgain = placeAll(again.bodies, spaces, wanted, context);
-    if (isWorse(placedAgain, placed)) continue;
-    bodies = again.bodies;
-    offsets = again.offsets;
-    placed = placedAgain;
-  }
-  const pieces = named(bodies, placed);
-  const failures = pieces.filter((piece) => !piece.sound).map(failureSentence);
-  return { pieces, offsets, failures };
-}
-
-type PlacedBody = RoundedPiece & Pick<FinishedPiece, 'fits' | 'space' | 'down'>;
-
-function placeAll(
-  bodies: readonly Body[],
-  spaces: readonly BuildSpace[],
-  wanted: WantedPoses,
+    outfit,
+    recut,
+  }: {
+    outfit: Outfitter<Common>;
+    recut: (offsets: readonly number[]) => CutBodies;
+  },
   context: JobContext,
-): PlacedBody[] {
-  return bodies.map(({ mesh, path }, index) => {
-    context.throwIfCancelled();
-    context.progress('Laying the pieces on the bed', index / bodies.length);
-    const wish = wanted.get(path);
-    if (wish) {
-      const pose = poseOn(mesh.positions, spaces[wish.space], wish.down);
-      if (pose?.fits) return placedIn(mesh, pose, spaces, wish.space);
-    }
-    const downs = candidateDowns(mesh);
-    const poses = spaces.map((space) => layOnBed(mesh.positions, space, downs));
-    const first = poses.findIndex((pose) => pose.fits);
-    const least = poses.reduce((a, b, k) => (b.slackMm > poses[a].slackMm ? k : a), 0);
-    const space = first >= 0 ? first : least;
-    return placedIn(mesh, poses[space], spaces, space);
-  });
+  locked: ReadonlySet<number> = new Set(),
+): Promise<FinishedPieces<Common>> {
+  const attempt = async ({ bodies, offsets }: CutBodies) => {
+    const named = nameBodies(bodies);
+    const { outfits, common } = await outfit(named, offsets);
+    const pieces = named.map((body, index) => {
+      context.throwIfCancelled();
+      context.progress('Finishing the pieces', index / named.length);
+      return finishOne(body, outfits[index], spaces);
+    });
+    return { pieces, offsets, common };
+  };
+  let best = await attempt(cut);
+  for (let tries = 1; tries <= RECUTS_TRIED && best.pieces.some(isUnsound); tries++) {
+    const unsound = best.pieces.filter(isUnsound).map(({ body }) => body);
+    const moved = nudged(cut.offsets, cutsAround(unsound, locked), tries);
+    if (!moved) break;
+    const again = await attempt(recut(moved));
+    if (!isWorse(again.pieces, best.pieces)) best = again;
+  }
+  const failures = best.pieces.filter(isUnsound).map(failureSentence);
+  return { ...best, failures };
 }
 
-function placedIn(
-  mesh: Body['mesh'],
-  pose: BedPose,
+function finishOne(
+  body: NamedBody,
+  { space, versions }: Outfit,
   spaces: readonly BuildSpace[],
-  space: number,
-): PlacedBody {
-  const rounded = roundOnBed(mesh, pose, spaces[space]);
-  return { ...rounded, fits: pose.fits, space, down: pose.down };
+): FinishedPiece {
+  let first: FinishedPiece | undefined;
+  for (const make of versions) {
+    const version = make();
+    const { pose } = version;
+    const rounded = roundOnBed(version.mesh, pose, spaces[space]);
+    const piece = { ...body, ...rounded, version, fits: pose.fits, space, down: pose.down };
+    if (piece.sound) return piece;
+    first ??= piece;
+  }
+  return first!;
 }
 
 function isUnsound(piece: RoundedPiece): boolean {
@@ -130,8 +138,8 @@ function isUnsound(piece: RoundedPiece): boolean {
 }
 
 /** More unsound pieces, or more that do not fit: the recut is not taken. */
-function isWorse(next: readonly PlacedBody[], now: readonly PlacedBody[]): boolean {
-  const over = (pieces: readonly PlacedBody[]) => pieces.filter((piece) => !piece.fits).length;
+function isWorse(next: readonly FinishedPiece[], now: readonly FinishedPiece[]): boolean {
+  const over = (pieces: readonly FinishedPiece[]) => pieces.filter((piece) => !piece.fits).length;
   return next.filter(isUnsound).length >= now.filter(isUnsound).length || over(next) > over(now);
 }
 
@@ -155,13 +163,13 @@ function nudged(
   return offsets.map((offset, index) => (cuts.has(index) ? offset + shift : offset));
 }
 
-function named(bodies: readonly Body[], placed: readonly PlacedBody[]): FinishedPiece[] {
+/** Names and numbers bodies bottom to top of the assembled model. */
+export function nameBodies(bodies: readonly Body[]): NamedBody[] {
   const digits = bodies.length < 100 ? 2 : 3;
   return bodies
-    .map((body, index) => ({ body, place: placed[index], centreMm: centreOf(body) }))
+    .map((body) => ({ body, centreMm: centreOf(body) }))
     .sort((a, b) => compareCentres(a.centreMm, b.centreMm) || comparePaths(a.body, b.body))
-    .map(({ body, place, centreMm }, index) => ({
-      ...place,
+    .map(({ body, centreMm }, index) => ({
       item: index + 1,
       name: `P${String(index + 1).padStart(digits, '0')}`,
       body,

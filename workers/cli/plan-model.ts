@@ -6,6 +6,8 @@ import { type Offer } from '../../shared/jobs/plan-make.js';
 import { type CutTree } from '../../shared/jobs/recipe.js';
 import { type MadePieces, makePieces } from '../building/make-pieces.js';
 import { gapInWords } from '../planning/lower-bound.js';
+import { usualJoints } from '../../shared/jobs/joint-plan.js';
+import { usualMaterial } from '../../shared/jobs/material-profile.js';
 import { type MendingChoices } from '../../shared/jobs/mending-choices.js';
 import { mayBePlanned, type MeshReport } from '../../shared/jobs/model-inspect.js';
 import { inspectFile } from '../inspecting/inspect-file.js';
@@ -61,7 +63,18 @@ export async function planModel(
   );
   try {
     const made = await makePieces(
-      { mesh, modelName: fileName, millimetresPerUnit, spaces, wishes, seed, tree: null },
+      {
+        mesh,
+        modelName: fileName,
+        millimetresPerUnit,
+        spaces,
+        wishes,
+        joints: usualJoints,
+        material: usualMaterial,
+        orientations: [],
+        seed,
+        tree: null,
+      },
       { solids: await loading, files: folder.files, context: portionOf(context, 0.15, 1) },
     );
     await folder.keep();

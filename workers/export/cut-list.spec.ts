@@ -14,6 +14,9 @@ const piece = (item: number): Piece => ({
   file: `pieces/P0${item}.stl`,
   placement: [1, 0, 0, 0, 0, 1, 0, 0, 0, 0, 1, 0],
   centreMm: [0, 0, 0],
+  orientations: [],
+  estimate: null,
+  notes: [],
 });
 
 describe('cutListCsv', () => {
@@ -21,7 +24,17 @@ describe('cutListCsv', () => {
     const csv = cutListCsv(
       'bell',
       [piece(1), piece(2)],
-      [{ between: ['P01', 'P02'], areaMm2: 3, cut: 1, visibleMm: 0, bendingKpa: 0 }],
+      [
+        {
+          between: ['P01', 'P02'],
+          areaMm2: 3,
+          cut: 1,
+          visibleMm: 0,
+          bendingKpa: 0,
+          joint: null,
+          glueMl: [0, 0],
+        },
+      ],
     );
     expect(csv.split('\r\n')).toEqual([
       'item,piece,model,width_mm,depth_mm,height_mm,volume_mm3,triangles,fits,meets,file',

@@ -8,6 +8,8 @@ export interface ManifestModel {
   triangles: number;
   volumeMm3: number;
   sizeMm: readonly [number, number, number];
+  /** Factor by which the written pieces are larger than the model, for shrinkage; 1: none. */
+  enlargement: number;
 }
 
 /**
@@ -31,15 +33,19 @@ export function manifestJson(
       sizeMm: model.sizeMm,
       millimetresPerFileUnit: recipe.millimetresPerUnit,
     },
+    piecesEnlargedBy: model.enlargement,
     buildVolume: recipe.space,
     recipe,
     pieces: plan.pieces,
     seams: plan.seams,
+    parts: plan.parts,
+    assembly: plan.assembly,
+    totals: plan.totals,
     bounds: plan.bounds,
     proof: plan.proof,
     notes: {
       placement:
-        'Rows of a 3x4 matrix from the assembled model to the bed: bedPoint = R * modelPoint + t.',
+        'Rows of a 3x4 matrix from the assembled model to the bed: bedPoint = R * modelPoint + t. Where pieces are enlarged for shrinkage, modelPoint is enlarged first.',
       recipe:
         'A tree of planar cuts in the scaled model: points with normal . p >= offset are above.',
       seams: 'Cuts are counted from the root of the tree, above before below, from 1.',

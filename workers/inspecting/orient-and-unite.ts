@@ -6,6 +6,7 @@ import { buildBvh } from '../measuring/triangle-bvh.js';
 import type { Mended } from '../mending/mending.js';
 import { orientShells } from '../mending/orient-shells.js';
 import { uniteShells } from '../mending/uniting/unite-shells.js';
+import { beginMeasuring } from '../picturing/simplify-beside.js';
 import { type JobContext, portionOf } from '../runtime/job-context.js';
 import type { Solids } from '../solids/solid-kernel.js';
 
@@ -37,7 +38,8 @@ export function orientAndUnite(
     return { mesh, steps: oriented.steps, places: oriented.places, solid: null };
   const { shells, cavities, turnedOutward } = oriented;
   context.progress('Looking for crossings', 0.2);
-  const bvh = buildBvh(oriented.mesh);
+  const bvh = buildBvh(oriented.mesh, { inSharedMemory: true });
+  beginMeasuring(oriented.mesh, bvh);
   const crossings = findCrossings(oriented.mesh, bvh, { context: portionOf(context, 0.3, 0.6) });
   const before = { shells, cavities, turnedOutward, bvh, crossings, crossingRefusal: null };
   if (crossings.pairs === 0 && oriented.crossing === 0) return { ...oriented, solid: before };

@@ -5,6 +5,8 @@ import { NodeIO } from '@gltf-transform/core';
 import { EXTMeshoptCompression } from '@gltf-transform/extensions';
 import { MeshoptDecoder } from 'meshoptimizer';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { usualJoints } from '../../shared/jobs/joint-plan.js';
+import { usualMaterial } from '../../shared/jobs/material-profile.js';
 import { usualWishes } from '../../shared/jobs/plan-wishes.js';
 import { type JobMap, jobSchemas } from '../../shared/jobs/job-map.js';
 import { box, torusKnot } from '../../test/support/shapes.js';
@@ -34,6 +36,9 @@ const order = (prefix: string): JobMap['plan.make']['input'] => ({
   otherSpaces: [],
   wishes: usualWishes,
   tree: null,
+  joints: usualJoints,
+  material: usualMaterial,
+  orientations: [],
   seed: 3,
   outputPrefix: prefix,
 });

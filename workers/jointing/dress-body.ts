@@ -55,18 +55,21 @@ export function dressBody(task: DressTask): DressedBody {
   };
   const bevelMm = finish.isBevelled ? wishes.edgeBevelMm : 0;
   const notes: string[] = [];
+  const unmarked: string[] = [];
   let mesh = task.mesh;
   let featuresMm3 = 0;
   let bevelMm3 = 0;
   for (const cut of cutsOf(task)) {
-    const { frame, features } = facesOf(task, cut, notes);
+    const { frame, features } = facesOf(task, cut, unmarked);
     const made = reworkCap(mesh, { tag: cut, frame, features, bevelMm }, tools);
     if (bevelMm > 0 && !made.isBevelled)
-      notes.push(`The seam edge of ${task.name} at cut ${cut} stays sharp: it is too thin there.`);
+      notes.push(`The seam edge at cut ${cut} stays sharp: it is too thin there.`);
     mesh = made.mesh;
     featuresMm3 += made.featuresMm3;
     bevelMm3 += made.bevelMm3;
   }
+  if (unmarked.length > 0)
+    notes.push(`No room for marks where it meets ${[...new Set(unmarked)].join(', ')}.`);
   return { mesh, featuresMm3, bevelMm3, notes };
 }
 
@@ -77,7 +80,7 @@ function cutsOf({ name, seams }: DressTask): number[] {
 }
 
 /** Everything on the cap of one cut, in its frame. */
-function facesOf(task: DressTask, cut: number, notes: string[]) {
+function facesOf(task: DressTask, cut: number, unmarked: string[]) {
   const { name, seams, joints, wishes } = task;
   const own = seams
     .map((seam, k) => ({ seam, joint: joints[k] }))
@@ -101,7 +104,7 @@ function facesOf(task: DressTask, cut: number, notes: string[]) {
       neighbour,
     });
     if (mark) features.push(mark);
-    else notes.push(`No room for marks on ${name} where it meets ${neighbour}.`);
+    else unmarked.push(neighbour);
   }
   return { frame, features };
 }

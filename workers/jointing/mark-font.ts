@@ -20,7 +20,9 @@ function markFont(): Font {
     const bytes = readFileSync(
       require.resolve('@fontsource/roboto/files/roboto-latin-700-normal.woff'),
     );
-    font = opentype.parse(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength));
+    font = opentype.parse(
+      bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength),
+    );
   }
   return font;
 }

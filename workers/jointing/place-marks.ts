@@ -120,6 +120,7 @@ class FreeRoom {
   private readonly cellMm: number = CELL_MM;
   private readonly across: number = 0;
   private readonly along: number = 0;
+  private readonly areaMm2: number = 0;
   private readonly x0: number = 0;
   private readonly y0: number = 0;
 
@@ -138,7 +139,10 @@ class FreeRoom {
     }
     this.free = free;
     this.sums = new Float64Array(0);
-    if (free.isEmpty()) return;
+    // Narrower than the smallest letters: nothing need be looked for.
+    if (scope.keep(free.offset(-0.45 * HEIGHTS_MM[HEIGHTS_MM.length - 1], 'Miter', 2)).isEmpty())
+      return;
+    this.areaMm2 = free.area();
     const { min, max } = free.bounds();
     const [width, height] = [max[0] - min[0], max[1] - min[1]];
     this.cellMm = Math.max(CELL_MM, Math.max(width, height) / MOST_CELLS);
@@ -151,6 +155,7 @@ class FreeRoom {
   /** Lower left corner, in text coordinates, of the free rectangle nearest the middle. */
   placeFor(widthMm: number, heightMm: number): PlanePoint | null {
     const { cellMm, across, along } = this;
+    if (widthMm * heightMm > this.areaMm2) return null;
     const wide = Math.ceil(widthMm / cellMm) + 1;
     const high = Math.ceil(heightMm / cellMm) + 1;
     let best: PlanePoint | null = null;
@@ -177,14 +182,10 @@ class FreeRoom {
   }
 
   private isFree(column: number, row: number, wide: number, high: number): boolean {
-    const { sums, across } = this;
-    const at = (x: number, y: number) => sums[y * (across + 1) + x];
-    const filled =
-      at(column + wide, row + high) -
-      at(column, row + high) -
-      at(column + wide, row) +
-      at(column, row);
-    return filled === wide * high;
+    const { sums } = this;
+    const low = row * (this.across + 1) + column;
+    const top = low + high * (this.across + 1);
+    return sums[top + wide] - sums[top] - sums[low + wide] + sums[low] === wide * high;
   }
 
   /** Running sums of the cells whose middle is free: one row and column more than cells. */

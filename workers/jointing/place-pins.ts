@@ -168,7 +168,11 @@ function thirdPlace(
 function pinsAt(chosen: readonly Place[], task: PinTask): SeamPin[] | null {
   const { diameterMm, measures } = task;
   const [first] = chosen;
-  const depthMm = Math.min(...chosen.map((place) => place.depthMm));
+  // Whole half millimetres: pins of one length serve many seams.
+  const depthMm = Math.max(
+    task.leastDepthMm,
+    Math.floor(2 * Math.min(...chosen.map((place) => place.depthMm))) / 2,
+  );
   const pins = chosen.map((place, k): SeamPin => {
     const [dx, dy] = [place.x - first.x, place.y - first.y];
     const distance = Math.hypot(dx, dy);

@@ -1,4 +1,5 @@
 import { capFrame } from '../../shared/geometry/features/cap-frame.js';
+import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import {
   type JointChoice,
@@ -39,6 +40,10 @@ export interface JointTask {
 
 /** Faces narrower than this get a lip behind the wall where one can be made, mm. */
 const LIP_BELOW_MM = 4.5;
+/** A lip reaches so far behind either wall, mm; the lower one where walls lean. */
+const LIP_HEIGHTS_MM = [8, 5];
+/** How far beyond its height and wall a lip looks for other pieces, mm. */
+const LIP_ROOM_MM = 5;
 /** Printed pins are no thinner, mm; what is thinner is cut from rod (common practice, from memory). */
 const LEAST_PRINTED_MM = 3;
 /** A pin's diameter to the square root of the joined area (common practice, no source). */
@@ -59,6 +64,8 @@ export function planJoints(task: JointTask): SeamJoint[] {
     taken.set(name, rooms);
     return rooms;
   };
+  const lipRooms: TakenRoom[] = [];
+  const middle = middleOf([...task.bodies.values()]);
   const joints: SeamJoint[] = new Array<SeamJoint>(task.seams.length);
   const order = task.seams.map((_, k) => k);
   order.sort((a, b) => task.seams[b].areaMm2 - task.seams[a].areaMm2 || a - b);
@@ -67,7 +74,7 @@ export function planJoints(task: JointTask): SeamJoint[] {
     const seam = task.seams[k];
     joints[k] = task.solids.withSolids((scope) => {
       const region = regionOf(scope, seam.region);
-      return new SeamPlanner(scope, region, seam, task, roomsFor).plan();
+      return new SeamPlanner(scope, region, seam, task, roomsFor, lipRooms, middle).plan();
     });
   }
   return joints;
@@ -93,6 +100,8 @@ class SeamPlanner {
     private readonly seam: SeamRegion,
     private readonly task: JointTask,
     private readonly roomsFor: (name: string) => TakenRoom[],
+    private readonly lipRooms: TakenRoom[],
+    private readonly middle: readonly [number, number, number],
   ) {
     this.wallMm = 2 * halfWidth(scope, region);
     this.choice = choiceFor(task.wishes, seam);
@@ -241,7 +250,22 @@ class SeamPlanner {
 
   private lip(): SeamJoint | null {
     const { seam, task, scope, region } = this;
-    const lips = makeLips(scope, region, seam, task);
+    const heights = this.choice.depthMm === null ? LIP_HEIGHTS_MM : [this.choice.depthMm];
+    const near = this.nearBodies(Math.max(...heights) + LIP_ROOM_MM);
+    let lips: Lip[] = [];
+    for (const heightMm of heights) {
+      if (lips.length > 0) break;
+      lips = makeLips(scope, region, {
+        seam,
+        near,
+        middle: this.middle,
+        heightMm,
+        thicknessMm: Math.max(2, 5 * task.material.lineWidthMm),
+        gapMm: task.material.clearances.slidingMm / 2,
+        taken: this.lipRooms,
+        most: this.choice.most ?? 4,
+      });
+    }
     if (lips.length === 0) return null;
     const chosen = this.choice.kind === null ? '' : ' as asked';
     const lengths = lips.reduce((sum, lip) => sum + lip.lengthMm, 0);
@@ -252,6 +276,17 @@ class SeamPlanner {
       [],
       lips,
     );
+  }
+
+  /** Bodies whose box comes within a distance of the seam's outline. */
+  private nearBodies(byMm: number): TriangleMesh[] {
+    const { min, max } = boundingBox(this.seam.outline);
+    return [...this.task.bodies.values()].filter(({ positions }) => {
+      const box = boundingBox(positions);
+      return [0, 1, 2].every(
+        (axis) => box.min[axis] <= max[axis] + byMm && box.max[axis] >= min[axis] - byMm,
+      );
+    });
   }
 
   private none(why: string): SeamJoint {
@@ -278,6 +313,16 @@ class SeamPlanner {
     return this.scope.keep(simple.intersect(turned)).area() / simple.area();
   };
   private simple: CrossSection | undefined;
+}
+
+/** Middle of the box of several bodies, mm. */
+function middleOf(meshes: readonly TriangleMesh[]): [number, number, number] {
+  const boxes = meshes.map(({ positions }) => boundingBox(positions));
+  const middle = (axis: number) =>
+    (Math.min(...boxes.map(({ min }) => min[axis])) +
+      Math.max(...boxes.map(({ max }) => max[axis]))) /
+    2;
+  return [middle(0), middle(1), middle(2)];
 }
 
 function counted(count: number, one: string): string {

@@ -37,8 +37,7 @@ export function pinMeasures(
   const mouth = diameterMm / 2 + leadInMm;
   return {
     wallMm: Math.max(
-      isThin ? 0.8 : 1.1,
-      2 * lineWidthMm,
+      Math.max(isThin ? 0.8 : 1.1, 2 * lineWidthMm) + ROOF_OVER * (diameterMm / 2),
       leadInMm + edgeBevelMm + 0.15 + ROOF_OVER * mouth,
     ),
     leadInMm,

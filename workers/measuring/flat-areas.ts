@@ -1,5 +1,6 @@
 import { facetNormal } from '../../shared/geometry/mesh/facet-normal.js';
 import { matesOf } from '../../shared/geometry/mesh/edge-mates.js';
+import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { FlatArea } from '../../shared/jobs/model-inspect.js';
 import { sampleSurface } from './surface-samples.js';
@@ -20,7 +21,7 @@ const binSine = 0.02;
  * surface or more, the largest first. Lengths in the mesh's unit. O(triangles).
  */
 export function findFlats(mesh: TriangleMesh, diagonal: number): FlatArea[] {
-  if (!mayHaveFlats(mesh)) return [];
+  if (!mayHaveFlats(mesh, diagonal)) return [];
   const facets = mesh.indices.length / 3;
   const workspace = new Workspace(bytesAFacet * facets + 8 * binsASide ** 3 + 64);
   const { bins, areas, total } = sortByDirection(mesh, workspace);
@@ -63,19 +64,30 @@ export function findFlats(mesh: TriangleMesh, diagonal: number): FlatArea[] {
 /** Samples of the surface: on a flat area of the least size there are this many. */
 const samplesAFlat = 80;
 
+/** Bins of the distance of a facet's plane from the middle of the box, over the box's diagonal. Own
+ *  choice; much wider than a flat's planes differ in it by the tolerances above. */
+const offsetBins = 64;
+/** A plane may straddle two bins in each of three directions and in its distance. */
+const mostStraddled = 16;
+
 /**
- * A quick look before all facets are gone through: on every flat area some samples have one direction.
- * A plane may straddle eight bins, which leaves the fullest of them more than this.
+ * A quick look before all facets are gone through: on every flat area some samples have one direction
+ * and lie in one plane. What the plane straddles leaves the fullest of its bins at least this many.
  */
-function mayHaveFlats(mesh: TriangleMesh): boolean {
-  const { count, triangles } = sampleSurface(mesh, samplesAFlat / leastShare);
-  const bins = new Map<string, number>();
+function mayHaveFlats(mesh: TriangleMesh, diagonal: number): boolean {
+  const { count, points, triangles } = sampleSurface(mesh, samplesAFlat / leastShare);
+  const { min, max } = boundingBox(mesh.positions);
+  const bins = new Map<number, number>();
   const normal = new Float64Array(3);
   for (let i = 0; i < count; i++) {
     facetNormal(mesh.positions, mesh.indices, 3 * triangles[i], normal, 0);
-    const key = normal.map((value) => Math.floor((value + 1) / binSine)).join();
+    let offset = 0;
+    for (let axis = 0; axis < 3; axis++)
+      offset += normal[axis] * (points[3 * i + axis] - (min[axis] + max[axis]) / 2);
+    const key =
+      offsetBins * directionBin(normal) + Math.floor((offset / diagonal + 0.5) * offsetBins);
     const found = (bins.get(key) ?? 0) + 1;
-    if (found >= samplesAFlat / 10) return true;
+    if (found >= samplesAFlat / mostStraddled) return true;
     bins.set(key, found);
   }
   return false;
@@ -94,14 +106,18 @@ function sortByDirection({ positions, indices }: TriangleMesh, workspace: Worksp
   let total = 0;
   for (let triangle = 0; triangle < triangles; triangle++) {
     const area = facetNormal(positions, indices, 3 * triangle, normal, 0);
-    const x = Math.floor((normal[0] + 1) / binSine);
-    const y = Math.floor((normal[1] + 1) / binSine);
-    const z = Math.floor((normal[2] + 1) / binSine);
-    bins[triangle] = (x * binsASide + y) * binsASide + z;
+    bins[triangle] = directionBin(normal);
     areas[triangle] = area;
     total += area;
   }
   return { bins, areas, total };
+}
+
+function directionBin(normal: Float64Array): number {
+  const x = Math.floor((normal[0] + 1) / binSine);
+  const y = Math.floor((normal[1] + 1) / binSine);
+  const z = Math.floor((normal[2] + 1) / binSine);
+  return (x * binsASide + y) * binsASide + z;
 }
 
 function facetNormals({ positions, indices }: TriangleMesh, workspace: Workspace): Float64Array {

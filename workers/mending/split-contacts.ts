@@ -150,8 +150,10 @@ export function separateFans(
   mates: Int32Array,
   ends: ReadonlySet<number> = new Set(),
 ): { mesh: TriangleMesh; split: number[] } {
-  const fanOf = findFans(indices, mates);
   const vertices = positions.length / 3;
+  if (hasOneClosedFanEach(indices, mates, vertices))
+    return { mesh: { positions, indices }, split: [] };
+  const fanOf = findFans(indices, mates);
   // As many fans as vertices in use: none has two.
   if (countFans(fanOf) === countUsed(indices, vertices))
     return { mesh: { positions, indices }, split: [] };
@@ -190,6 +192,28 @@ export function separateFans(
     moved.set(positions.subarray(3 * vertex, 3 * vertex + 3), positions.length + 3 * i),
   );
   return { mesh: { positions: moved, indices: separated }, split: [...split] };
+}
+
+/**
+ * Whether every vertex in use has one fan that closes round it, as on a sound closed surface; then no
+ * fans need be told apart. False as well where a side is open or runs like its mate.
+ */
+function hasOneClosedFanEach(indices: Uint32Array, mates: Int32Array, vertices: number): boolean {
+  const isSeen = new Uint8Array(vertices);
+  let walked = 0;
+  for (let corner = 0; corner < indices.length; corner++) {
+    const vertex = indices[corner];
+    if (isSeen[vertex] === 1) continue;
+    isSeen[vertex] = 1;
+    let side = corner;
+    do {
+      const mate = mates[side];
+      if (mate < 0 || indices[mate] === vertex) return false;
+      side = nextSide(mate);
+      walked++;
+    } while (side !== corner);
+  }
+  return walked === indices.length;
 }
 
 function countFans(fanOf: Int32Array): number {

@@ -2,10 +2,10 @@ import type { MeshBVH } from 'three-mesh-bvh';
 import { matesOf } from '../../shared/geometry/mesh/edge-mates.js';
 import type { TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import type { Deviation } from '../../shared/jobs/model-inspect.js';
-import { surfaceDeviation } from '../measuring/surface-deviation.js';
 import { deviationSamples, mostTriangles } from './simple-model.js';
-import { simpleModelOf } from './simplify-beside.js';
+import { measuresOf, simpleModelOf } from './simplify-beside.js';
 import { drawThumbnail } from './thumbnail.js';
+import { wallsOfVertices } from './vertex-walls.js';
 
 export interface Proxy {
   readonly mesh: TriangleMesh;
@@ -13,27 +13,31 @@ export interface Proxy {
   readonly isClosed: boolean;
   /** The larger of the distances both ways; zeros when nothing was simplified, null when not measured. */
   readonly deviation: Deviation | null;
+  /** Thickness of the model at every vertex of `mesh`; 0 where no wall was met, null when not measured. */
+  readonly walls: Float32Array | null;
   /** PNG. */
   readonly thumbnail: Uint8Array;
 }
 
 /**
- * A simplified mesh of at most 60 000 triangles with its measured distance from the model. A mesh
- * within that stays as it is. @param bvh over `mesh`; without it nothing is measured
+ * A simplified mesh of at most 60 000 triangles with its measured distance from the model and the
+ * model's walls. A mesh within that stays as it is. @param bvh over `mesh`; without it nothing is measured
  */
 export async function makeProxy(mesh: TriangleMesh, bvh: MeshBVH | null): Promise<Proxy> {
   if (mesh.indices.length / 3 <= mostTriangles) {
     const isClosed = matesOf(mesh).closed;
     const deviation = { mean: 0, p95: 0, max: 0, samples: deviationSamples };
-    return { mesh, isClosed, deviation, thumbnail: drawThumbnail(mesh) };
+    const walls = bvh && wallsOfVertices(mesh, bvh);
+    return { mesh, isClosed, deviation, walls, thumbnail: drawThumbnail(mesh) };
   }
   const simple = await simpleModelOf(mesh);
+  const measures = bvh && (await measuresOf(simple, bvh));
   return {
     mesh: simple.mesh,
     isClosed: simple.isClosed,
     thumbnail: simple.thumbnail,
-    deviation:
-      bvh && larger(surfaceDeviation(simple.mesh, bvh, deviationSamples), simple.deviation),
+    deviation: measures && larger(measures.deviation, simple.deviation),
+    walls: measures?.walls ?? null,
   };
 }
 

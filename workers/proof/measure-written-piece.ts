@@ -18,6 +18,7 @@ export interface WrittenPiece {
   strayHollows: number;
   /** Hollows taken off. */
   volumeMm3: number;
+  surfaceMm2: number;
   min: [number, number, number];
   max: [number, number, number];
   /** Largest distance of a corner from the given vertical axis, mm. */
@@ -53,6 +54,7 @@ export function measureWrittenPiece(
     strayHollows: hollows.filter((hollow) => !bodies.some((body) => boxInside(hollow, body)))
       .length,
     volumeMm3: surfaces.reduce((sum, surface) => sum + surface.volumeMm3, 0),
+    surfaceMm2: facetAreas(file.corners),
     min: box.min,
     max: box.max,
     radiusMm: largestRadius(file.corners, axis),
@@ -101,6 +103,20 @@ function measureSurfaces(
     }
   }
   return boxes.map((box, surface) => ({ ...box, volumeMm3: volumes[surface] / 6 }));
+}
+
+function facetAreas(corners: Float32Array): number {
+  let twice = 0;
+  for (let at = 0; at < corners.length; at += 9) {
+    const ux = corners[at + 3] - corners[at];
+    const uy = corners[at + 4] - corners[at + 1];
+    const uz = corners[at + 5] - corners[at + 2];
+    const vx = corners[at + 6] - corners[at];
+    const vy = corners[at + 7] - corners[at + 1];
+    const vz = corners[at + 8] - corners[at + 2];
+    twice += Math.hypot(uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx);
+  }
+  return twice / 2;
 }
 
 function boxInside(inner: Surface, outer: Surface): boolean {

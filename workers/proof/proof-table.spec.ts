@@ -14,6 +14,7 @@ const sound: WrittenPiece = {
   hollows: 0,
   strayHollows: 0,
   volumeMm3: 1000,
+  surfaceMm2: 600,
   min: [0, 0, 0],
   max: [220, 100, 50],
   radiusMm: 100,
@@ -28,6 +29,7 @@ const failed = (
     pieces: [sound, { ...sound, name: 'P02', ...piece }],
     spaces: [bed, bed],
     modelVolumeMm3: 2000,
+    addedMm3: 0,
     failures: [],
     ...more,
   })
@@ -80,6 +82,7 @@ describe('proofTable', () => {
       pieces: [{ ...sound, hollows: 2 }],
       spaces: [bed],
       modelVolumeMm3: 1000,
+      addedMm3: 0,
       failures: [],
     });
     const row = rows.find((candidate) => candidate.check === 'One body a piece');

@@ -1,6 +1,7 @@
 import { type ProofRow } from '../../shared/jobs/plan-make.js';
 import { type BuildSpace } from '../../shared/geometry/fitting/build-space.js';
 import { counted, length, listed, shown, spaceInWords, sum } from './measured-words.js';
+import { type JointFindings, type MoveFindings } from './joint-proof.js';
 import { type ZoneClearance } from './zone-clearance.js';
 import { type WrittenPiece } from './measure-written-piece.js';
 
@@ -19,8 +20,18 @@ export interface ProofInput {
   spaces: readonly BuildSpace[];
   /** Volume of the solid that was cut, mm³. */
   modelVolumeMm3: number;
+  /** What sockets, pins, marks and bevels add to all pieces together (mostly negative), mm³. */
+  addedMm3: number;
   /** Seams measured against the keep-whole zones; absent when there are none. */
   keepWhole?: ZoneClearance;
+  /** Sockets measured by rays; absent when there are none. */
+  joints?: JointFindings;
+  /** Least material round a socket, mm. */
+  leastSocketWallMm?: number;
+  /** The moves of the glue-up drawn backwards; absent when there are none. */
+  moves?: MoveFindings;
+  /** What the planner itself found about each move. */
+  order?: readonly { readonly isFree: boolean }[];
   /** Sentences about pieces that could not be finished; each fails a row of its own. */
   failures: readonly string[];
 }
@@ -35,7 +46,9 @@ export function proofTable(input: ProofInput): ProofRow[] {
     oneBodyEach(pieces),
     restsOnBed(pieces),
     fitsTheSpaces(pieces, input.spaces),
-    volumesAddUp(pieces, input.modelVolumeMm3),
+    volumesAddUp(pieces, input),
+    ...(input.joints && input.joints.sockets > 0 ? jointRows(input.joints, input) : []),
+    ...(input.moves && input.moves.moves > 0 ? [waysAreFree(input.moves, input.order ?? [])] : []),
     ...(input.keepWhole ? [zonesStayWhole(input.keepWhole)] : []),
     ...input.failures.map((sentence) => ({
       check: 'Finishing of every piece',
@@ -143,6 +156,52 @@ function fitsTheSpaces(pieces: readonly WrittenPiece[], spaces: readonly BuildSp
   };
 }
 
+/** Files hold float32 and sockets are polygons: gaps may be less by this, mm. */
+const GAP_TOLERANCE_MM = 0.02;
+/** Corners of a polygon come nearer to what is behind than its circle, mm. */
+const WALL_TOLERANCE_MM = 0.06;
+
+function jointRows(joints: JointFindings, { leastSocketWallMm = 0 }: ProofInput): ProofRow[] {
+  const { sockets, leastSpareMm, tightest, leastWallMm, thinnest, blocked } = joints;
+  const limit = leastSocketWallMm - WALL_TOLERANCE_MM;
+  return [
+    {
+      check: 'Pins have room in their sockets',
+      measured:
+        blocked.length > 0
+          ? `no socket in ${blocked.slice(0, 5).join(', ')} where a pin should go`
+          : `${counted(sockets, 'socket')}, tightest ${length(leastSpareMm)} mm beyond its clearance (${tightest})`,
+      limit: `clearance all round, ± ${GAP_TOLERANCE_MM} mm`,
+      passed: blocked.length === 0 && leastSpareMm >= -GAP_TOLERANCE_MM,
+    },
+    {
+      check: 'Sockets have material round them',
+      measured: `thinnest ${length(leastWallMm)} mm (${thinnest})`,
+      limit: `at least ${length(limit)} mm`,
+      passed: leastWallMm >= limit,
+    },
+  ];
+}
+
+function waysAreFree(
+  { moves, rays, blocked }: MoveFindings,
+  order: readonly { readonly isFree: boolean }[],
+): ProofRow {
+  const planned = order.flatMap(({ isFree }, k) => (isFree ? [] : [k + 1]));
+  const [first] = blocked;
+  const measured = first
+    ? `step ${first.step}: ${first.by} is in the way of ${first.of}`
+    : planned.length > 0
+      ? `step ${planned[0]}: no straight way was found`
+      : `${counted(moves, 'straight move')} free, ${rays} rays`;
+  return {
+    check: 'Ways of assembly are free',
+    measured,
+    limit: 'nothing in the way of any move',
+    passed: !first && planned.length === 0,
+  };
+}
+
 function zonesStayWhole({ zones, leastMm, nearest, crossed }: ZoneClearance): ProofRow {
   return {
     check: 'Keep-whole zones are whole',
@@ -157,12 +216,17 @@ function zonesStayWhole({ zones, leastMm, nearest, crossed }: ZoneClearance): Pr
   };
 }
 
-function volumesAddUp(pieces: readonly WrittenPiece[], modelVolumeMm3: number): ProofRow {
+function volumesAddUp(
+  pieces: readonly WrittenPiece[],
+  { modelVolumeMm3, addedMm3 }: ProofInput,
+): ProofRow {
   const total = sum(pieces.map((piece) => piece.volumeMm3));
-  const difference = Math.abs(total - modelVolumeMm3) / modelVolumeMm3;
+  const wanted = modelVolumeMm3 + addedMm3;
+  const difference = Math.abs(total - wanted) / modelVolumeMm3;
+  const joints = addedMm3 === 0 ? '' : `, joints and marks ${shown(addedMm3)} mm³`;
   return {
     check: 'Volumes add up to the model',
-    measured: `${shown(total)} of ${shown(modelVolumeMm3)} mm³, difference ${difference.toExponential(1)}`,
+    measured: `${shown(total)} of ${shown(wanted)} mm³${joints}, difference ${difference.toExponential(1)}`,
     limit: `difference at most ${VOLUME_TOLERANCE.toExponential(0)} of the model`,
     passed: difference <= VOLUME_TOLERANCE,
   };

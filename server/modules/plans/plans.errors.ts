@@ -13,5 +13,12 @@ export const createOfferOutdated = () =>
     'The model has another revision or another scale than when these plans were found. Make a new plan.',
   );
 
+export const createProofFailed = () =>
+  new ApiError(
+    409,
+    'plan.proofFailed',
+    'A check of this plan failed. Say that you want its files all the same before you download them.',
+  );
+
 export const createPlanNotReady = () =>
   new ApiError(409, 'plan.notReady', 'The plan has no result yet.');

@@ -24,6 +24,7 @@ export function toPlanSummary(view: PlanView): PlanSummary {
     job: toJobResponse(job),
     pieceCount: plan.pieceCount,
     allPassed: plan.allPassed,
+    release: plan.release,
     objectives: plan.objectives,
   };
 }

@@ -1,5 +1,6 @@
 import { and, count, desc, eq, inArray } from 'drizzle-orm';
 import type { EnvelopeResponse } from '../../../shared/api/envelopes.contract.js';
+import type { PlanRelease } from '../../../shared/api/plans.contract.js';
 import type { Objectives, PlanOutput } from '../../../shared/jobs/plan-make.js';
 import type { PlanWishes } from '../../../shared/jobs/plan-wishes.js';
 import type { Db } from '../../platform/db/client.js';
@@ -30,6 +31,7 @@ const summary = {
   jobId: plans.jobId,
   pieceCount: plans.pieceCount,
   allPassed: plans.allPassed,
+  release: plans.release,
   archiveBytes: plans.archiveBytes,
   createdAt: plans.createdAt,
   createdBy: plans.createdBy,
@@ -97,6 +99,10 @@ export function createPlansRepository({ db }: { db: Db }) {
       createdBy: string;
     }): Promise<void> {
       await db.insert(plans).values(plan);
+    },
+
+    async storeRelease(key: Key, release: PlanRelease): Promise<void> {
+      await db.update(plans).set({ release }).where(isKey(key));
     },
 
     /** @returns whether there was one */

@@ -1,7 +1,7 @@
 import type { Request } from 'express';
 import { z } from 'zod';
 import { recordId } from '../../../shared/api/ids.js';
-import { planRequest } from '../../../shared/api/plans.contract.js';
+import { planReleaseRequest, planRequest } from '../../../shared/api/plans.contract.js';
 import { idOf, parse, parseBody } from '../../platform/http/parse.js';
 import type { Route } from '../../platform/http/routes.js';
 import { sendStored } from '../../platform/http/send-stored.js';
@@ -70,11 +70,22 @@ export function createPlansRoutes(deps: { plans: PlansService; storage: FileStor
       },
     },
     {
+      method: 'post',
+      path: '/api/plans/:id/release',
+      access: 'plan.write',
+      handle: async (req, res) => {
+        const { reason } = parseBody(planReleaseRequest, req);
+        const key = keyOf(req);
+        await plans.release(key, { userId: currentSession().userId, reason });
+        res.json(toPlanResponse(await plans.get(key)));
+      },
+    },
+    {
       method: 'get',
       path: '/api/plans/:id/download',
       access: 'plan.read',
       handle: async (req, res) => {
-        const { plan, modelName, result } = await plans.getFinished(keyOf(req));
+        const { plan, modelName, result } = await plans.getDownloadable(keyOf(req));
         await streamPlanArchive({
           res,
           storage,

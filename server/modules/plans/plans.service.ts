@@ -1,6 +1,9 @@
 import { mayBePlanned } from '../../../shared/jobs/model-inspect.js';
+import { type JointWishes, usualJoints } from '../../../shared/jobs/joint-plan.js';
+import { type MaterialProfile, usualMaterial } from '../../../shared/jobs/material-profile.js';
+import { planOutput } from '../../../shared/jobs/plan-make.js';
 import { type PlanWishes, usualWishes } from '../../../shared/jobs/plan-wishes.js';
-import type { CutTree } from '../../../shared/jobs/recipe.js';
+import type { CutTree, OrientationWish } from '../../../shared/jobs/recipe.js';
 import type { EnvelopeResponse } from '../../../shared/api/envelopes.contract.js';
 import type { planRequest } from '../../../shared/api/plans.contract.js';
 import type { z } from 'zod';
@@ -23,6 +26,7 @@ import {
   createOfferOutdated,
   createPlanNotFound,
   createPlanNotReady,
+  createProofFailed,
 } from './plans.errors.js';
 import type { PlanRow, PlansRepository } from './plans.repository.js';
 import { usableSpace } from './usable-space.js';
@@ -55,6 +59,9 @@ interface Asked {
   readonly seed: number;
   readonly tree: CutTree | null;
   readonly fromPlan: number | null;
+  readonly joints: JointWishes;
+  readonly material: MaterialProfile;
+  readonly orientations: OrientationWish[];
 }
 
 export function createPlansService(deps: {
@@ -101,7 +108,16 @@ export function createPlansService(deps: {
     const envelopes: EnvelopeResponse[] = [];
     for (const id of ids)
       envelopes.push(toEnvelopeResponse(await deps.findEnvelope({ id, workshopId })));
-    return { envelopes, wishes, seed, tree: null, fromPlan: null };
+    return {
+      envelopes,
+      wishes,
+      seed,
+      tree: null,
+      fromPlan: null,
+      joints: order.joints ?? usualJoints,
+      material: usualMaterial,
+      orientations: [],
+    };
   }
 
   /** What another plan of the same search was asked for, and its cuts. */
@@ -109,20 +125,52 @@ export function createPlansService(deps: {
     { planId, offer }: { planId: string; offer: number },
     now: { workshopId: string; revisionId: string; factor: number },
   ): Promise<Asked> {
+    const { recipe, offers, asked } = await madeBefore(planId, now);
+    const tree = offers[offer]?.tree;
+    if (!tree) throw createOfferNotFound();
+    // Other cuts make other pieces: choices for single seams and pieces mean nothing there.
+    return {
+      ...asked,
+      tree,
+      joints: { ...recipe.joints, seams: [], skins: [] },
+      orientations: [],
+    };
+  }
+
+  /** The same cuts as a plan that was made, with other joints or orientations. */
+  async function fromPlan(
+    { planId, joints, orientations }: NonNullable<z.output<typeof planRequest>['fromPlan']>,
+    now: { workshopId: string; revisionId: string; factor: number },
+  ): Promise<Asked> {
+    const { recipe, asked } = await madeBefore(planId, now);
+    return {
+      ...asked,
+      tree: recipe.tree,
+      joints: joints ?? recipe.joints,
+      orientations: orientations ?? recipe.orientations,
+    };
+  }
+
+  /** A plan that can be made again: of the model as it is now. */
+  async function madeBefore(
+    planId: string,
+    now: { workshopId: string; revisionId: string; factor: number },
+  ) {
     const found = await plans.find({ id: planId, workshopId: now.workshopId });
     if (!found) throw createPlanNotFound();
     if (!found.result) throw createPlanNotReady();
-    const tree = found.result.offers?.[offer]?.tree;
-    if (!tree) throw createOfferNotFound();
     if (found.revisionId !== now.revisionId || found.millimetresPerUnit !== now.factor)
       throw createOfferOutdated();
-    return {
+    // Plans of before get the defaults of what was added since.
+    const { recipe, offers } = planOutput.parse(found.result);
+    const asked = {
       envelopes: [found.envelope, ...(found.otherEnvelopes ?? [])],
       wishes: found.wishes ?? usualWishes,
       seed: found.seed,
-      tree,
       fromPlan: found.number,
+      material: recipe.material,
     };
+    return { recipe, offers, asked };
   }
 
   return {
@@ -149,9 +197,12 @@ export function createPlansService(deps: {
       const model = await deps.findModel({ id: modelId, workshopId });
       const [inspection] = await jobs.findMany([model.revision.jobId]);
       const { solidKey, factor } = plannable(model, inspection);
+      const now = { workshopId, revisionId: model.revision.id, factor };
       const asked = order.fromOffer
-        ? await fromOffer(order.fromOffer, { workshopId, revisionId: model.revision.id, factor })
-        : await freshly(order);
+        ? await fromOffer(order.fromOffer, now)
+        : order.fromPlan
+          ? await fromPlan(order.fromPlan, now)
+          : await freshly(order);
       const { seed, wishes, envelopes } = asked;
       const [envelope, ...otherEnvelopes] = envelopes;
       const [space, ...otherSpaces] = envelopes.map(usableSpace);
@@ -188,12 +239,34 @@ export function createPlansService(deps: {
             otherSpaces,
             wishes,
             tree: asked.tree,
+            joints: asked.joints,
+            material: asked.material,
+            orientations: asked.orientations,
             seed,
             outputPrefix: planFolder({ workshopId, planId: id }),
           },
         });
       });
       return { id, workshopId };
+    },
+
+    /** A finished plan whose files may be taken. @throws plan.proofFailed and as getFinished */
+    async getDownloadable(key: Key) {
+      const view = await this.getFinished(key);
+      if (!view.plan.allPassed && !view.plan.release) throw createProofFailed();
+      return view;
+    },
+
+    /**
+     * Records that a person wants the files of a plan although a check failed; the first word
+     * stands. A plan that passed needs none and gets none.
+     */
+    async release(key: Key, { userId, reason }: { userId: string; reason: string }) {
+      const view = await this.getFinished(key);
+      if (view.plan.allPassed || view.plan.release) return;
+      const names = await deps.namesOf([userId]);
+      const by = names.get(userId) ?? '';
+      await plans.storeRelease(key, { reason, by, at: clock().toISOString() });
     },
 
     /** Removes a plan with its files; a job that still runs is told to stop. */

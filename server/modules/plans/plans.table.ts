@@ -9,6 +9,7 @@ import {
   unique,
 } from 'drizzle-orm/mysql-core';
 import type { EnvelopeResponse } from '../../../shared/api/envelopes.contract.js';
+import type { PlanRelease } from '../../../shared/api/plans.contract.js';
 import type { Objectives, PlanOutput } from '../../../shared/jobs/plan-make.js';
 import type { PlanWishes } from '../../../shared/jobs/plan-wishes.js';
 import { momentColumn, recordIdColumn } from '../../platform/db/columns.js';
@@ -48,6 +49,8 @@ export const plans = mysqlTable(
     pieceCount: int('piece_count'),
     allPassed: boolean('all_passed'),
     objectives: json('objectives').$type<Objectives>(),
+    /** Who wanted the files of a plan whose proof failed, and why. */
+    release: json('release').$type<PlanRelease>(),
     archiveBytes: bigint('archive_bytes', { mode: 'number', unsigned: true }),
     createdAt: momentColumn('created_at').notNull(),
     createdBy: recordIdColumn('created_by')

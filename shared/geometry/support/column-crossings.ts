@@ -51,6 +51,11 @@ export class ColumnCrossings {
     return new ColumnCrossings(x0 + pitchMm / 2, y0 + pitchMm / 2, pitchMm, across, along);
   }
 
+  /** The same columns with nothing in them. */
+  emptied(): ColumnCrossings {
+    return new ColumnCrossings(this.x0, this.y0, this.pitch, this.across, this.along);
+  }
+
   /** @param leanSin sine of the lean from the vertical beyond which a face needs support */
   addSurface(
     indices: Uint32Array,

@@ -1,3 +1,5 @@
+import { usualJoints } from '../../../shared/jobs/joint-plan.js';
+import { usualMaterial } from '../../../shared/jobs/material-profile.js';
 import { usualWishes } from '../../../shared/jobs/plan-wishes.js';
 import { mkdir, writeFile } from 'node:fs/promises';
 import { dirname } from 'node:path';
@@ -146,6 +148,9 @@ export async function planResult(
     file: `P0${item}.stl`,
     placement: [1, 0, 0, 0, 0, 1, 0, 0, 0, 0, 1, 0],
     centreMm: [150, 200, item === 1 ? 375 : 125] as [number, number, number],
+    orientations: [],
+    estimate: null,
+    notes: [],
   });
   return {
     recipe: {
@@ -155,6 +160,9 @@ export async function planResult(
       space,
       otherSpaces: [],
       wishes: usualWishes,
+      joints: usualJoints,
+      material: usualMaterial,
+      orientations: [],
       tree: {
         kind: 'cut',
         plane: { normal: [0, 0, 1], offset: 250 },
@@ -164,7 +172,20 @@ export async function planResult(
       },
     },
     pieces: [piece(1), piece(2)],
-    seams: [{ between: ['P01', 'P02'], areaMm2: 120_000, cut: 1, visibleMm: 900, bendingKpa: 2 }],
+    seams: [
+      {
+        between: ['P01', 'P02'],
+        areaMm2: 120_000,
+        cut: 1,
+        visibleMm: 900,
+        bendingKpa: 2,
+        joint: null,
+        glueMl: [0, 0],
+      },
+    ],
+    parts: [],
+    assembly: [],
+    totals: null,
     bounds: {
       pieces: 2,
       reason: 'Taller than the envelope.',

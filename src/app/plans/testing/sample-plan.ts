@@ -1,6 +1,8 @@
 import { type EnvelopeResponse } from '../../../../shared/api/envelopes.contract.js';
 import { type PlanResponse } from '../../../../shared/api/plans.contract.js';
 import { type JobResponse } from '../../../../shared/api/jobs.contract.js';
+import { usualJoints } from '../../../../shared/jobs/joint-plan.js';
+import { usualMaterial } from '../../../../shared/jobs/material-profile.js';
 import { usualWishes } from '../../../../shared/jobs/plan-wishes.js';
 import { type Piece } from '../../../../shared/jobs/plan-make.js';
 
@@ -45,6 +47,9 @@ export function samplePiece(item: number, changes: Partial<Piece> = {}): Piece {
     file: `pieces/${name}.stl`,
     placement: [1, 0, 0, 0, 0, 1, 0, 0, 0, 0, 1, 0],
     centreMm: [0, 0, 100 * item],
+    orientations: [],
+    estimate: null,
+    notes: [],
     ...changes,
   };
 }
@@ -69,6 +74,7 @@ export function samplePlan(changes: Partial<PlanResponse> = {}): PlanResponse {
     job: sampleJob(),
     pieceCount: 3,
     allPassed: true,
+    release: null,
     result: {
       recipe: {
         version: 1,
@@ -77,6 +83,9 @@ export function samplePlan(changes: Partial<PlanResponse> = {}): PlanResponse {
         space: { shape: 'rectangular', widthMm: 220, depthMm: 220, heightMm: 250 },
         otherSpaces: [],
         wishes: usualWishes,
+        joints: usualJoints,
+        material: usualMaterial,
+        orientations: [],
         tree: {
           kind: 'cut',
           plane: { normal: [0, 0, 1], offset: 150 },
@@ -93,8 +102,24 @@ export function samplePlan(changes: Partial<PlanResponse> = {}): PlanResponse {
       },
       pieces: [samplePiece(1), samplePiece(2), samplePiece(3)],
       seams: [
-        { between: ['P01', 'P02'], areaMm2: 12_000, cut: 1, visibleMm: 340, bendingKpa: 12 },
-        { between: ['P02', 'P03'], areaMm2: 0.05, cut: 2, visibleMm: 0, bendingKpa: 0 },
+        {
+          between: ['P01', 'P02'],
+          areaMm2: 12_000,
+          cut: 1,
+          visibleMm: 340,
+          bendingKpa: 12,
+          joint: null,
+          glueMl: [0, 0],
+        },
+        {
+          between: ['P02', 'P03'],
+          areaMm2: 0.05,
+          cut: 2,
+          visibleMm: 0,
+          bendingKpa: 0,
+          joint: null,
+          glueMl: [0, 0],
+        },
       ],
       bounds: {
         pieces: 2,
@@ -104,6 +129,9 @@ export function samplePlan(changes: Partial<PlanResponse> = {}): PlanResponse {
       },
       objectives: null,
       offers: [],
+      parts: [],
+      assembly: [],
+      totals: null,
       chosenOffer: null,
       proof: [
         { check: 'Every file is closed', measured: '0 open edges', limit: '0', passed: true },
