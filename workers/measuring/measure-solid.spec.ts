@@ -14,6 +14,7 @@ import {
   turnInsideOut,
   voxels,
 } from '../../test/support/shapes.js';
+import { randomDirection, seededRandom } from '../../test/support/random.js';
 import { loadSolids, type Solids } from '../solids/solid-kernel.js';
 import { findCrossings } from './find-crossings.js';
 import { findFlats } from './flat-areas.js';
@@ -212,6 +213,30 @@ describe('flat areas', () => {
       flats.filter((flat) => flat.normal[2] < -0.5).map((flat) => Math.round(flat.area)),
     ).toEqual([200, 200, 100]);
     expect(findFlats(sphere(50, 96, 48).mesh, 173)).toEqual([]);
+  });
+
+  it('include a cap of 1.2 % of a ball that is pressed flat, wherever it lies (seed 7)', () => {
+    const random = seededRandom(7);
+    for (let turn = 0; turn < 24; turn++) {
+      const normal = randomDirection(random);
+      const { mesh } = sphere(50, 240, 120);
+      // A disc of 1.2 % of the surface: π (50² − height²) of about 4 π 50².
+      const height = 50 * Math.sqrt(1 - 4 * 0.012);
+      const p = mesh.positions;
+      for (let i = 0; i < p.length; i += 3) {
+        const above = normal[0] * p[i]! + normal[1] * p[i + 1]! + normal[2] * p[i + 2]! - height;
+        if (above > 0) for (let k = 0; k < 3; k++) p[i + k] -= above * normal[k]!;
+      }
+      const flats = findFlats(mesh, Math.hypot(...boundingBox(p).size));
+      expect(flats.length).toBe(1);
+      const [flat] = flats;
+      const [x, y, z] = flat!.normal;
+      expect(x * normal[0] + y * normal[1] + z * normal[2]).toBeCloseTo(1, 5);
+      // Facets on its rim lie partly on the ball, so that it lacks up to one facet all round.
+      const area = Math.PI * (50 ** 2 - height ** 2);
+      expect(flat!.area).toBeLessThanOrEqual(area);
+      expect(flat!.area).toBeGreaterThan(0.8 * area);
+    }
   });
 });
 
