@@ -91,6 +91,9 @@ async function planned({ title, mesh, space }: Case, run = 'first') {
     modelPath,
     spaces,
     wishesPath: null,
+    // Plain pieces: their volumes add up to the model as they are.
+    jointsPath: 'none',
+    material: null,
     seed: 1,
     millimetresPerUnit: 1,
     outFolder,

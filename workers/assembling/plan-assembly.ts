@@ -37,8 +37,6 @@ const COLUMNS = 260;
 const FINEST_MM = 0.75;
 /** Directions nearer than this are one. */
 const SAME_COS = 1 - 1e-9;
-/** Pieces that the building up piece by piece is begun with. */
-const STARTS = 6;
 
 /**
  * The order in which pieces are joined, each step one straight move along the seams' normal. Piece
@@ -54,63 +52,90 @@ export function planAssembly(
   if (pieces.length < 2 || seams.length === 0) return [];
   const meshes = new Map(pieces.map(({ name, mesh }) => [name, mesh]));
   const sweeps = new SweepMaps(meshes, pitchFor(pieces));
-  const single = pieceByPiece(pieces, seams, sweeps);
-  return single ?? reversedTree(pieces, seams, sweeps);
+  const volume = new Map(pieces.map(({ name, mesh }) => [name, signedVolume(mesh)]));
+  const weigh = (names: readonly string[]) =>
+    names.reduce((sum, name) => sum + volume.get(name)!, 0);
+  const single = pieceByPiece(pieces, seams, sweeps, weigh);
+  return single ?? reversedTree(pieces, seams, sweeps, weigh);
 }
 
-/** Onto one growing object, a piece at a time; null when no start gets all pieces on. */
+/** Onto one growing object, a piece at a time; null when a piece finds no free way. */
 function pieceByPiece(
   pieces: readonly AssemblyPiece[],
   seams: readonly AssemblySeam[],
   sweeps: SweepMaps,
+  weigh: Weigh,
 ): Move[] | null {
+  const units = pieces.map(({ name }) => [name]);
   // What does not hang together can never become one object.
-  const reach = new Groups(pieces.map(({ name }) => name));
-  for (const { above, below } of seams) reach.join([above], [below]);
-  if (reach.all().length > 1) return null;
-  const area = new Map<string, number>();
-  for (const { above, below } of seams)
-    for (const name of [above, below]) area.set(name, (area.get(name) ?? 0) + 1);
-  const starts = [...pieces].sort(
-    (a, b) => (area.get(b.name) ?? 0) - (area.get(a.name) ?? 0) || a.name.localeCompare(b.name),
-  );
-  for (const { name } of starts.slice(0, STARTS)) {
-    const moves = grownFrom(name, pieces, seams, sweeps);
-    if (moves) return moves;
-  }
-  return null;
+  if (!hangsTogether(units, seams)) return null;
+  const moves = putTogether(units, seams, sweeps, weigh);
+  return moves.every(({ isFree }) => isFree) ? moves : null;
 }
 
-function grownFrom(
-  start: string,
-  pieces: readonly AssemblyPiece[],
+type Weigh = (names: readonly string[]) => number;
+
+/**
+ * Units that hang together, joined one after another: found by taking them apart, the lightest that
+ * is free first. What is free among many stays free among fewer, so nothing has to be tried again;
+ * only what is left must always hang together. Where nothing is free the lightest is taken all the
+ * same and its move is told to be blocked.
+ */
+function putTogether(
+  units: readonly (readonly string[])[],
   seams: readonly AssemblySeam[],
   sweeps: SweepMaps,
-): Move[] | null {
-  const standing = new Set([start]);
+  weigh: Weigh,
+): Move[] {
+  const left = [...units].sort((a, b) => weigh(a) - weigh(b));
   const moves: Move[] = [];
-  while (standing.size < pieces.length) {
-    const move = nextPiece(pieces, seams, sweeps, standing);
-    if (!move) return null;
+  while (left.length > 1) {
+    let blocked: { unit: readonly string[]; move: Move } | null = null;
+    let free: { unit: readonly string[]; move: Move } | null = null;
+    for (const unit of left) {
+      const rest = left.filter((one) => one !== unit);
+      if (!hangsTogether(rest, seams)) continue;
+      const standing = rest.flat();
+      const away = commonWay(unit, new Set(standing), seams);
+      if (away && sweeps.isFree(unit, standing, away.direction)) {
+        free = { unit, move: asMove(unit, standing, away, true) };
+        break;
+      }
+      blocked ??= { unit, move: blockedMove(unit, standing, away, seams) };
+    }
+    const { unit, move } = (free ?? blocked)!;
     moves.push(move);
-    standing.add(move.moved[0]);
+    left.splice(left.indexOf(unit), 1);
   }
-  return moves;
+  return moves.reverse();
 }
 
-function nextPiece(
-  pieces: readonly AssemblyPiece[],
+/** A move that cannot be made as it is told, with the seams that it would close. */
+function blockedMove(
+  unit: readonly string[],
+  standing: readonly string[],
+  away: ReturnType<typeof commonWay>,
   seams: readonly AssemblySeam[],
-  sweeps: SweepMaps,
-  standing: ReadonlySet<string>,
-): Move | null {
-  for (const { name } of pieces) {
-    if (standing.has(name)) continue;
-    const away = commonWay([name], standing, seams);
-    if (!away || !sweeps.isFree([name], standing, away.direction)) continue;
-    return asMove([name], [...standing], away, true);
-  }
-  return null;
+): Move {
+  if (away) return asMove(unit, standing, away, false);
+  const closed = seams.flatMap(({ above, below }, k) =>
+    (unit.includes(above) && standing.includes(below)) ||
+    (unit.includes(below) && standing.includes(above))
+      ? [k]
+      : [],
+  );
+  return { moved: unit, onto: standing, direction: [0, 0, -1], seams: closed, isFree: false };
+}
+
+function hangsTogether(
+  units: readonly (readonly string[])[],
+  seams: readonly AssemblySeam[],
+): boolean {
+  const here = new Set(units.flat());
+  const groups = new Groups(units);
+  for (const { above, below } of seams)
+    if (here.has(above) && here.has(below)) groups.join([above], [below]);
+  return groups.all().length <= 1;
 }
 
 /** The one direction in which all seams between two groups open; null without seams or with several. */
@@ -133,16 +158,17 @@ function commonWay(
   return direction ? { direction, seams: closed } : null;
 }
 
-/** The cuts from the last to the first; at each, what is above comes to what is below. */
+/**
+ * The cuts from the last to the first. At each, everything that hangs together across it is joined
+ * group by group; a group lies wholly on one side of the cut and moves square to it.
+ */
 function reversedTree(
   pieces: readonly AssemblyPiece[],
   seams: readonly AssemblySeam[],
   sweeps: SweepMaps,
+  weigh: Weigh,
 ): Move[] {
-  const volume = new Map(pieces.map(({ name, mesh }) => [name, signedVolume(mesh)]));
-  const weigh = (names: readonly string[]) =>
-    names.reduce((sum, name) => sum + volume.get(name)!, 0);
-  const groups = new Groups(pieces.map(({ name }) => name));
+  const groups = new Groups(pieces.map(({ name }) => [name]));
   const moves: Move[] = [];
   const leafOf = ({ path }: AssemblyPiece) => path.split('.')[0];
   const nodes = new Set(
@@ -151,51 +177,19 @@ function reversedTree(
     ),
   );
   for (const node of [...nodes].sort((a, b) => b.length - a.length || a.localeCompare(b))) {
-    const side = (way: string) =>
-      new Set(pieces.filter((one) => leafOf(one).startsWith(node + way)).map(({ name }) => name));
-    const [above, below] = [side('a'), side('b')];
-    // Each move may open the way for the next: try until nothing more is free.
-    for (;;) {
-      const waiting = openJoins(groups, seams, above, below);
-      if (waiting.length === 0) break;
-      const moves_ = waiting.map(([a, b]) => joinOf(a, b, seams, weigh, sweeps));
-      const move = moves_.find(({ isFree }) => isFree) ?? moves_[0];
-      moves.push(move);
-      groups.join(move.moved, move.onto);
+    const inside = new Set(
+      pieces.filter((one) => leafOf(one).startsWith(node)).map(({ name }) => name),
+    );
+    const here = seams.filter(({ above, below }) => inside.has(above) && inside.has(below));
+    const joined = new Groups([...new Set([...inside].map((name) => groups.of(name)))]);
+    for (const { above, below } of here) joined.join([above], [below]);
+    for (const whole of joined.all()) {
+      const units = [...new Set(whole.map((name) => groups.of(name)))];
+      moves.push(...putTogether(units, seams, sweeps, weigh));
+      groups.join(whole, []);
     }
   }
   return moves;
-}
-
-/** Pairs of groups with a seam between the two sides of a cut. */
-function openJoins(
-  groups: Groups,
-  seams: readonly AssemblySeam[],
-  above: ReadonlySet<string>,
-  below: ReadonlySet<string>,
-): [readonly string[], readonly string[]][] {
-  const pairs = new Map<string, [readonly string[], readonly string[]]>();
-  for (const seam of seams) {
-    if (!above.has(seam.above) || !below.has(seam.below)) continue;
-    const [a, b] = [groups.of(seam.above), groups.of(seam.below)];
-    if (a !== b) pairs.set(`${a[0]} ${b[0]}`, [a, b]);
-  }
-  return [...pairs.values()];
-}
-
-/** The lighter of two groups comes to the heavier; the other way round when only that is free. */
-function joinOf(
-  a: readonly string[],
-  b: readonly string[],
-  seams: readonly AssemblySeam[],
-  weigh: (names: readonly string[]) => number,
-  sweeps: SweepMaps,
-): Move {
-  const [moved, onto] = weigh(a) <= weigh(b) ? [a, b] : [b, a];
-  const away = commonWay(moved, new Set(onto), seams);
-  if (!away) return { moved, onto, direction: [0, 0, -1], seams: [], isFree: false };
-  // Two groups alone: drawing one away is as free as drawing the other the other way.
-  return asMove(moved, onto, away, sweeps.isFree(moved, onto, away.direction));
 }
 
 function asMove(
@@ -217,8 +211,8 @@ function asMove(
 class Groups {
   private readonly groupOf: Map<string, readonly string[]>;
 
-  constructor(names: readonly string[]) {
-    this.groupOf = new Map(names.map((name) => [name, [name]]));
+  constructor(units: readonly (readonly string[])[]) {
+    this.groupOf = new Map(units.flatMap((unit) => unit.map((name) => [name, unit])));
   }
 
   of(name: string): readonly string[] {
@@ -226,9 +220,8 @@ class Groups {
   }
 
   join(a: readonly string[], b: readonly string[]): void {
-    const joined = [
-      ...new Set([...a.flatMap((name) => this.of(name)), ...b.flatMap((name) => this.of(name))]),
-    ].sort();
+    const parts = [...a, ...b].flatMap((name) => this.of(name));
+    const joined = [...new Set(parts)].sort();
     for (const name of joined) this.groupOf.set(name, joined);
   }
 

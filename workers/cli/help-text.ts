@@ -13,6 +13,10 @@ Needs no server and no database.
   --wishes FILE     what is asked of the plan, as JSON: preferences, show directions and zones,
                     keep-whole zones, locked cuts; the form is that of "wishes" in a manifest's
                     recipe, and what is left out is as usual
+  --joints FILE     joints, seam bevels and marks, as JSON in the form of "joints" in a manifest's
+                    recipe; none leaves the pieces plain (default: as the walls allow)
+  --material NAME   PLA, PETG, ABS, ASA, TPU 95A or PA12, or a JSON file in the form of "material"
+                    in a manifest's recipe: clearances, support threshold, estimates (default PLA)
   --unit UNIT       what one unit of the file is: mm, inch, or a number of millimetres (default: what
                     the file states, else mm)
   --parts LIST      of a file with several parts only these, for example 1,3 (default: all)
@@ -21,7 +25,8 @@ Needs no server and no database.
                     files that cannot be mended otherwise; finer details vanish
   --accept          takes a mended solid whose size, or whose volume by over 0.5 %, differs from the
                     file; without it such a file is refused with the numbers
-  --out DIR         keep the pieces: DIR/pieces/P01.stl ..., DIR/manifest.json, DIR/cut-list.csv.
+  --out DIR         keep the pieces: DIR/pieces/P01.stl ..., DIR/pins, DIR/lips, DIR/manifest.json,
+                    DIR/cut-list.csv.
                     DIR is made when missing. A folder that holds anything but an earlier result of
                     this command is left alone; an earlier result is replaced as a whole. Without
                     --out the pieces are written and proven in a temporary folder that is removed

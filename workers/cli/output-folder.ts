@@ -26,7 +26,13 @@ export interface PieceFolder {
 }
 
 /** What a result consists of; the manifest last, because its presence says the result is whole. */
-const RESULT = ['pieces', 'cut-list.csv', 'manifest.json'] as const;
+const RESULT = ['pieces', 'pins', 'lips', 'cut-list.csv', 'manifest.json'] as const;
+/** Files that each of the folders may hold. */
+const FOLDERS = {
+  pieces: /^P\d{2,3}\.stl$/,
+  pins: /^pin-[\d.]+x[\d.]+\.stl$/,
+  lips: /^lip-\d+\.stl$/,
+};
 const STAGING_PREFIX = '.seamwright-';
 
 /** Pieces that are only proven: a temporary folder that goes away. */
@@ -126,6 +132,8 @@ async function exchange(folder: string, fresh: string, old: string): Promise<voi
         movedAway.push(name);
       }
     for (const name of RESULT) {
+      // Not every plan has pins or lips.
+      if (!(await stat(join(fresh, name)).catch(absent))) continue;
       await rename(join(fresh, name), join(folder, name));
       movedIn.push(name);
     }
@@ -140,9 +148,10 @@ async function exchange(folder: string, fresh: string, old: string): Promise<voi
 async function isEarlierResult(folder: string, entries: readonly string[]): Promise<boolean> {
   if (!entries.every((name) => (RESULT as readonly string[]).includes(name))) return false;
   if (!entries.includes('manifest.json')) return false;
-  if (entries.includes('pieces')) {
-    const pieces = await readdir(join(folder, 'pieces')).catch(() => ['?']);
-    if (!pieces.every((name) => /^P\d{2,3}\.stl$/.test(name))) return false;
+  for (const [name, isOurs] of Object.entries(FOLDERS)) {
+    if (!entries.includes(name)) continue;
+    const files = await readdir(join(folder, name)).catch(() => ['?']);
+    if (!files.every((file) => isOurs.test(file))) return false;
   }
   try {
     const manifest: unknown = JSON.parse(await readFile(join(folder, 'manifest.json'), 'utf8'));

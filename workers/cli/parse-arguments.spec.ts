@@ -18,6 +18,8 @@ describe('parseArguments', () => {
       modelPath: 'cube.stl',
       spaces: [{ shape: 'rectangular', widthMm: 220, depthMm: 220, heightMm: 250 }],
       wishesPath: null,
+      jointsPath: null,
+      material: null,
       seed: 1,
       millimetresPerUnit: null,
       fillHolesUpToMm: null,

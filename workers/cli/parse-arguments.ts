@@ -11,6 +11,10 @@ export interface PlanCommand {
   spaces: BuildSpace[];
   /** A JSON file with what is asked of the plan; null for the usual. */
   wishesPath: string | null;
+  /** `none`, or a JSON file with the joints; null for the usual. */
+  jointsPath: string | null;
+  /** The name of a material to begin with, or a JSON file; null for the usual. */
+  material: string | null;
   seed: number;
   /** Null when the person named no unit: then it is the file's own, or mm. */
   millimetresPerUnit: number | null;
@@ -30,6 +34,8 @@ const TAKING_VALUES = [
   '--envelope',
   '--margin',
   '--wishes',
+  '--joints',
+  '--material',
   '--seed',
   '--unit',
   '--fill-holes',
@@ -64,6 +70,8 @@ export function parseArguments(words: readonly string[]): Command {
       modelPath,
       spaces: parseEnvelopes(envelope, values.get('--margin') ?? '0'),
       wishesPath: values.get('--wishes') ?? null,
+      jointsPath: values.get('--joints') ?? null,
+      material: values.get('--material') ?? null,
       seed: parseSeed(values.get('--seed') ?? '1'),
       millimetresPerUnit: given(values.get('--unit'), parseUnit),
       fillHolesUpToMm: given(values.get('--fill-holes'), parseRim),

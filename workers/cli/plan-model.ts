@@ -6,8 +6,6 @@ import { type Offer } from '../../shared/jobs/plan-make.js';
 import { type CutTree } from '../../shared/jobs/recipe.js';
 import { type MadePieces, makePieces } from '../building/make-pieces.js';
 import { gapInWords } from '../planning/lower-bound.js';
-import { usualJoints } from '../../shared/jobs/joint-plan.js';
-import { usualMaterial } from '../../shared/jobs/material-profile.js';
 import { type MendingChoices } from '../../shared/jobs/mending-choices.js';
 import { mayBePlanned, type MeshReport } from '../../shared/jobs/model-inspect.js';
 import { inspectFile } from '../inspecting/inspect-file.js';
@@ -23,7 +21,7 @@ import {
 } from './output-folder.js';
 import { nameFile, type PlanCommand } from './parse-arguments.js';
 import { type PlanReport } from './plan-report.js';
-import { readWishes } from './read-wishes.js';
+import { readJoints, readMaterial, readWishes } from './read-wishes.js';
 import { UsageError } from './usage-error.js';
 
 /** The same limit as for uploads. */
@@ -40,6 +38,8 @@ export async function planModel(
 ): Promise<PlanReport> {
   const { modelPath, outFolder } = command;
   const wishes = await readWishes(command.wishesPath);
+  const joints = await readJoints(command.jointsPath);
+  const material = await readMaterial(command.material);
   const bytes = await readModel(modelPath);
   if (outFolder !== null)
     await checkOutputFolder(outFolder).catch((error) => {
@@ -69,8 +69,8 @@ export async function planModel(
         millimetresPerUnit,
         spaces,
         wishes,
-        joints: usualJoints,
-        material: usualMaterial,
+        joints,
+        material,
         orientations: [],
         seed,
         tree: null,

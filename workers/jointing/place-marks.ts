@@ -36,8 +36,9 @@ export interface MarkTask {
 export function markFeature(solids: Solids, task: MarkTask): CapFeature | null {
   return solids.withSolids((scope) => {
     const room = new FreeRoom(scope, task);
-    for (const heightMm of HEIGHTS_MM)
-      for (const layout of layoutsFor(task, heightMm)) {
+    const layouts = HEIGHTS_MM.map((heightMm) => layoutsFor(task, heightMm));
+    for (const kind of layouts[0].keys())
+      for (const { [kind]: layout } of layouts) {
         const place = room.placeFor(layout.widthMm, layout.heightMm);
         if (!place) continue;
         const loops = room.engraved(layout.contours, place);

@@ -28,7 +28,7 @@ export class WrittenSolid {
   ) {
     const geometry = new BufferGeometry();
     geometry.setAttribute('position', new BufferAttribute(corners, 3));
-    this.bvh = new MeshBVH(geometry, { indirect: true, maxLeafSize: 12 } as never);
+    this.bvh = new MeshBVH(geometry, { indirect: true, targetLeafSize: 12 } as never);
   }
 
   /** Distance from a point to the surface, mm. */
