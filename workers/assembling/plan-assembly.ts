@@ -20,7 +20,7 @@ export interface AssemblySeam {
   readonly normal: Vector3;
 }
 
-/** One straight move. */
+/** One straight move; what moves may be several groups held side by side. */
 export interface Move {
   readonly moved: readonly string[];
   readonly onto: readonly string[];
@@ -69,7 +69,7 @@ function pieceByPiece(
   const units = pieces.map(({ name }) => [name]);
   // What does not hang together can never become one object.
   if (!hangsTogether(units, seams)) return null;
-  const moves = putTogether(units, seams, sweeps, weigh);
+  const moves = putTogether(units, seams, sweeps, weigh, true);
   return moves.every(({ isFree }) => isFree) ? moves : null;
 }
 
@@ -78,36 +78,70 @@ type Weigh = (names: readonly string[]) => number;
 /**
  * Units that hang together, joined one after another: found by taking them apart, the lightest that
  * is free first. What is free among many stays free among fewer, so nothing has to be tried again;
- * only what is left must always hang together. Where nothing is free the lightest is taken all the
+ * only what is left must always hang together. Where nothing is free, alone or together with others, the lightest is taken all the
  * same and its move is told to be blocked.
+ * @param isSingly one unit at a time only; ends at the first that is blocked
  */
 function putTogether(
   units: readonly (readonly string[])[],
   seams: readonly AssemblySeam[],
   sweeps: SweepMaps,
   weigh: Weigh,
+  isSingly = false,
 ): Move[] {
   const left = [...units].sort((a, b) => weigh(a) - weigh(b));
   const moves: Move[] = [];
   while (left.length > 1) {
-    let blocked: { unit: readonly string[]; move: Move } | null = null;
-    let free: { unit: readonly string[]; move: Move } | null = null;
-    for (const unit of left) {
-      const rest = left.filter((one) => one !== unit);
-      if (!hangsTogether(rest, seams)) continue;
+    let blocked: Move | null = null;
+    let free: Move | null = null;
+    for (const { taken, isWholeSide = false } of choices(left, seams)) {
+      if (isSingly && taken.length > 1) break;
+      const rest = left.filter((one) => !taken.includes(one));
+      // Where all of one side comes at once the other side may lie there in parts.
+      if (rest.length === 0 || (!isWholeSide && !hangsTogether(rest, seams))) continue;
+      const unit = taken.flat();
       const standing = rest.flat();
       const away = commonWay(unit, new Set(standing), seams);
       if (away && sweeps.isFree(unit, standing, away.direction)) {
-        free = { unit, move: asMove(unit, standing, away, true) };
+        free = asMove(unit, standing, away, true);
         break;
       }
-      blocked ??= { unit, move: blockedMove(unit, standing, away, seams) };
+      if (taken.length === 1) blocked ??= blockedMove(unit, standing, away, seams);
     }
-    const { unit, move } = (free ?? blocked)!;
+    const move = (free ?? blocked)!;
     moves.push(move);
-    left.splice(left.indexOf(unit), 1);
+    if (isSingly && !free) break;
+    const gone = left.filter(([first]) => move.moved.includes(first));
+    for (const unit of gone) left.splice(left.indexOf(unit), 1);
+    if (!hangsTogether(left, seams)) break;
   }
   return moves.reverse();
+}
+
+/**
+ * What may be taken off next: one unit, then two at once, then everything that opens in one
+ * direction: parts that hook into each other come off together.
+ */
+function* choices(
+  left: readonly (readonly string[])[],
+  seams: readonly AssemblySeam[],
+): Generator<{ taken: (readonly string[])[]; isWholeSide?: boolean }> {
+  for (const unit of left) yield { taken: [unit] };
+  for (const [k, one] of left.entries())
+    for (const other of left.slice(k + 1)) yield { taken: [one, other] };
+  const unitOf = new Map(left.flatMap((unit) => unit.map((name) => [name, unit])));
+  const open = seams.filter(
+    ({ above, below }) =>
+      unitOf.has(above) && unitOf.has(below) && unitOf.get(above) !== unitOf.get(below),
+  );
+  for (const { normal } of open) {
+    const along = open.filter((seam) => dot(seam.normal, normal) >= SAME_COS);
+    for (const side of ['above', 'below'] as const)
+      yield {
+        taken: [...new Set(along.map(({ [side]: name }) => unitOf.get(name)!))],
+        isWholeSide: true,
+      };
+  }
 }
 
 /** A move that cannot be made as it is told, with the seams that it would close. */

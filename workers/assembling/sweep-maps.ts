@@ -20,6 +20,8 @@ const TOUCH_MM = 0.02;
 export class SweepMaps {
   private readonly grids = new Map<string, ColumnCrossings>();
   private readonly maps = new Map<string, SweepMap>();
+  /** Where what stands ends in each column; filled anew for every question. */
+  private tops = new Float64Array(0);
 
   constructor(
     private readonly pieces: ReadonlyMap<string, TriangleMesh>,
@@ -36,20 +38,21 @@ export class SweepMaps {
 
   /** The most by which something standing is in the way, mm; −Infinity when they share no column. */
   overlapMm(moved: Iterable<string>, standing: Iterable<string>, direction: Vector3): number {
-    const tops = new Map<number, number>();
+    const { across, along } = this.gridFor(direction);
+    if (this.tops.length < across * along) this.tops = new Float64Array(across * along);
+    const { tops } = this;
+    tops.fill(-Infinity);
     for (const name of standing) {
       const { columns, highest } = this.mapOf(name, direction);
-      for (let k = 0; k < columns.length; k++) {
-        const known = tops.get(columns[k]);
-        if (known === undefined || highest[k] > known) tops.set(columns[k], highest[k]);
-      }
+      for (let k = 0; k < columns.length; k++)
+        if (highest[k] > tops[columns[k]]) tops[columns[k]] = highest[k];
     }
     let most = -Infinity;
     for (const name of moved) {
       const { columns, lowest } = this.mapOf(name, direction);
       for (let k = 0; k < columns.length; k++) {
-        const top = tops.get(columns[k]);
-        if (top !== undefined && top - lowest[k] > most) most = top - lowest[k];
+        const over = tops[columns[k]] - lowest[k];
+        if (over > most) most = over;
       }
     }
     return most;

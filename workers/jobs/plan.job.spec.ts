@@ -61,6 +61,7 @@ describe('makePlan', { timeout: 180_000 }, () => {
     expect(output.seams.length).toBeGreaterThan(0);
     expect(output.files.archive.map((entry) => entry.name)).toEqual([
       ...output.pieces.map((piece) => piece.file),
+      ...output.parts.flatMap(({ file }) => (file === null ? [] : [file])),
       'manifest.json',
       'cut-list.csv',
     ]);
