@@ -1,7 +1,7 @@
 import { Injectable, type OnDestroy, computed, inject, linkedSignal, signal } from '@angular/core';
 import { type Subscription } from 'rxjs';
 import { type JobResponse } from '../../../shared/api/jobs.contract.js';
-import { type PlanResponse } from '../../../shared/api/plans.contract.js';
+import { type PlanRequest, type PlanResponse } from '../../../shared/api/plans.contract.js';
 import { isFinal } from '../../../shared/jobs/job-map.js';
 import { sentenceFor } from '../core/http/api-failure';
 import { JobWatcher } from '../core/jobs/job-watcher';
@@ -123,6 +123,21 @@ export class PlanStore implements OnDestroy {
     if (!plan) throw new Error('There is no plan whose offers could be made.');
     return (await this.api.make({ modelId: plan.modelId, fromOffer: { planId: plan.id, offer } }))
       .id;
+  }
+
+  /** Makes the same cuts with other joints or orientations. Returns the new plan's identifier. */
+  async remake(changes: Omit<NonNullable<PlanRequest['fromPlan']>, 'planId'>): Promise<string> {
+    const plan = this._plan();
+    if (!plan) throw new Error('There is no plan to make another way.');
+    const { id: planId, modelId } = plan;
+    return (await this.api.make({ modelId, fromPlan: { planId, ...changes } })).id;
+  }
+
+  /** Records why the files are wanted although a check failed. */
+  async release(reason: string): Promise<void> {
+    const plan = await this.api.release(this.openId, reason);
+    if (this.openId === plan.id)
+      this._plan.update((now) => now && { ...now, release: plan.release });
   }
 
   async remove(): Promise<void> {

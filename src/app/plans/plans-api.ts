@@ -31,6 +31,13 @@ export class PlansApi {
     return firstValueFrom(this.http.post('/api/plans', request).pipe(parseAnswer(planResponse)));
   }
 
+  /** Records that the files are wanted although a check failed. */
+  release(id: string, reason: string): Promise<PlanResponse> {
+    return firstValueFrom(
+      this.http.post(`/api/plans/${id}/release`, { reason }).pipe(parseAnswer(planResponse)),
+    );
+  }
+
   async remove(id: string): Promise<void> {
     await firstValueFrom(this.http.delete(`/api/plans/${id}`));
   }

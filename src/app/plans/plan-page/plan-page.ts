@@ -11,10 +11,13 @@ import {
   viewChild,
 } from '@angular/core';
 import { MatButton, MatIconButton } from '@angular/material/button';
+import { MatDialog } from '@angular/material/dialog';
 import { MatIcon } from '@angular/material/icon';
 import { MatMenu, MatMenuItem, MatMenuTrigger } from '@angular/material/menu';
 import { MatProgressBar } from '@angular/material/progress-bar';
 import { Router, RouterLink } from '@angular/router';
+import { firstValueFrom } from 'rxjs';
+import { type OrientationWish } from '../../../../shared/jobs/recipe.js';
 import { SessionStore } from '../../core/auth/session-store';
 import { FailureNotes } from '../../core/errors/failure-notes';
 import { PageTitle } from '../../core/layout/page-title';
@@ -25,12 +28,17 @@ import { Notice } from '../../ui/notice/notice';
 import { TitleBlock, type TitleBlockField } from '../../ui/title-block/title-block';
 import { Viewer } from '../../viewer/viewer';
 import { CutsList } from '../cuts-list/cuts-list';
+import { GlueUp } from '../glue-up/glue-up';
+import { JointForm } from '../joint-form/joint-form';
+import { JointsList } from '../joints-list/joints-list';
 import { OffersTable } from '../offers-table/offers-table';
 import { PartsList } from '../parts-list/parts-list';
 import { boundsSentence, envelopeInWords, listCuts, scaleInWords } from '../plan-sentences';
+import { PieceSheet } from '../piece-sheet/piece-sheet';
 import { PlanStore } from '../plan-store';
 import { PlansApi } from '../plans-api';
 import { ProofTable } from '../proof-table/proof-table';
+import { ReleaseDialog } from '../release-dialog/release-dialog';
 import { SeamsList } from '../seams-list/seams-list';
 import { wishesInWords } from '../../ui/wishes/wishes-words';
 import { ViewControls } from '../view-controls/view-controls';
@@ -40,7 +48,10 @@ import { ViewControls } from '../view-controls/view-controls';
   selector: 'sw-plan-page',
   imports: [
     CutsList,
+    GlueUp,
     JobProgress,
+    JointForm,
+    JointsList,
     MatButton,
     MatIcon,
     MatIconButton,
@@ -51,6 +62,7 @@ import { ViewControls } from '../view-controls/view-controls';
     Notice,
     OffersTable,
     PartsList,
+    PieceSheet,
     ProofTable,
     RouterLink,
     SeamsList,
@@ -70,6 +82,7 @@ export class PlanPage {
   private readonly notes = inject(FailureNotes);
   private readonly pageTitle = inject(PageTitle);
   private readonly api = inject(PlansApi);
+  private readonly dialog = inject(MatDialog);
   protected readonly store = inject(PlanStore);
 
   /** From the address. */
@@ -106,7 +119,12 @@ export class PlanPage {
   protected readonly archive = computed(() => {
     const result = this.result();
     if (!result) return null;
-    return { url: this.api.downloadUrl(this.planId()), size: writeBytes(result.archiveBytes) };
+    const mustAsk = this.store.failedChecks() > 0 && !this.plan()?.release;
+    return {
+      url: this.api.downloadUrl(this.planId()),
+      size: writeBytes(result.archiveBytes),
+      mustAsk,
+    };
   });
   protected readonly known = computed((): TitleBlockField[] => {
     const plan = this.plan();
@@ -131,6 +149,9 @@ export class PlanPage {
         : [{ name: 'Found by', value: `the search of plan ${plan.fromPlan}`, wide: true }]),
     ];
   });
+  protected readonly hasJoints = computed(
+    () => this.result()?.seams.some((seam) => seam.joint !== null) ?? false,
+  );
   protected readonly isMaking = signal(false);
   /** Names to say where a piece goes; empty with one envelope. */
   protected readonly envelopeNames = computed(() => {
@@ -179,6 +200,32 @@ export class PlanPage {
       await this.router.navigate(['/plans', id]);
     });
     this.isMaking.set(false);
+  }
+
+  protected async remake(changes: Parameters<PlanStore['remake']>[0]): Promise<void> {
+    this.isMaking.set(true);
+    await this.tell(async () => {
+      const id = await this.store.remake(changes);
+      await this.router.navigate(['/plans', id]);
+    });
+    this.isMaking.set(false);
+  }
+
+  protected async lie(wish: OrientationWish): Promise<void> {
+    const others = this.result()?.recipe.orientations ?? [];
+    const orientations = [...others.filter(({ piece }) => piece !== wish.piece), wish];
+    await this.remake({ orientations });
+  }
+
+  /** Asks why, records it, then lets the browser fetch the files. */
+  protected async downloadAnyway(): Promise<void> {
+    const open = this.dialog.open<ReleaseDialog, void, string>(ReleaseDialog, { maxWidth: 520 });
+    const reason = await firstValueFrom(open.afterClosed(), { defaultValue: undefined });
+    if (!reason) return;
+    await this.tell(async () => {
+      await this.store.release(reason);
+      this.document.location.assign(this.api.downloadUrl(this.planId()));
+    });
   }
 
   protected async makeAgain(): Promise<void> {
