@@ -62,31 +62,34 @@ export function findFlats(mesh: TriangleMesh, diagonal: number): FlatArea[] {
 }
 
 /** Samples of the surface: on a flat area of the least size there are this many. */
-const samplesAFlat = 80;
-
-/** Bins of the distance of a facet's plane from the middle of the box, over the box's diagonal. Own
- *  choice; much wider than a flat's planes differ in it by the tolerances above. */
-const offsetBins = 64;
-/** A plane may straddle two bins in each of three directions and in its distance, 16 together; of 80
- *  samples the fullest has 5. One fewer, because samples fall a little unevenly. */
-const leastInOneBin = 4;
+const samplesAFlat = 160;
+/** Bins for the samples, a little wider than the samples of one flat differ: in each part of the normal by
+ *  twice `sineTolerance`, in the distance from the middle of the box by that much of half its diagonal. */
+const sampleSine = 0.004;
+const sampleOffsetShare = 0.004;
+/** A flat may straddle two bins in each part of the normal and in the distance, 16 together, which leaves
+ *  10 samples in the fullest. A few fewer, because samples fall a little unevenly. */
+const leastInOneBin = 8;
 
 /**
  * A quick look before all facets are gone through: on every flat area some samples have one direction
- * and lie in one plane. May say yes where there are none, never no where there is one.
+ * and lie in one plane. It may say yes where there are none.
  */
 function mayHaveFlats(mesh: TriangleMesh, diagonal: number): boolean {
   const { count, points, triangles } = sampleSurface(mesh, samplesAFlat / leastShare);
   const { min, max } = boundingBox(mesh.positions);
+  const side = Math.ceil(2 / sampleSine) + 1;
   const bins = new Map<number, number>();
   const normal = new Float64Array(3);
   for (let i = 0; i < count; i++) {
     facetNormal(mesh.positions, mesh.indices, 3 * triangles[i], normal, 0);
     let offset = 0;
-    for (let axis = 0; axis < 3; axis++)
+    let key = 0;
+    for (let axis = 0; axis < 3; axis++) {
       offset += normal[axis] * (points[3 * i + axis] - (min[axis] + max[axis]) / 2);
-    const key =
-      offsetBins * directionBin(normal) + Math.floor((offset / diagonal + 0.5) * offsetBins);
+      key = side * key + Math.floor((normal[axis] + 1) / sampleSine);
+    }
+    key = side * key + Math.floor((offset / diagonal + 1) / sampleOffsetShare);
     const found = (bins.get(key) ?? 0) + 1;
     if (found >= leastInOneBin) return true;
     bins.set(key, found);
@@ -107,18 +110,14 @@ function sortByDirection({ positions, indices }: TriangleMesh, workspace: Worksp
   let total = 0;
   for (let triangle = 0; triangle < triangles; triangle++) {
     const area = facetNormal(positions, indices, 3 * triangle, normal, 0);
-    bins[triangle] = directionBin(normal);
+    const x = Math.floor((normal[0] + 1) / binSine);
+    const y = Math.floor((normal[1] + 1) / binSine);
+    const z = Math.floor((normal[2] + 1) / binSine);
+    bins[triangle] = (x * binsASide + y) * binsASide + z;
     areas[triangle] = area;
     total += area;
   }
   return { bins, areas, total };
-}
-
-function directionBin(normal: Float64Array): number {
-  const x = Math.floor((normal[0] + 1) / binSine);
-  const y = Math.floor((normal[1] + 1) / binSine);
-  const z = Math.floor((normal[2] + 1) / binSine);
-  return (x * binsASide + y) * binsASide + z;
 }
 
 function facetNormals({ positions, indices }: TriangleMesh, workspace: Workspace): Float64Array {

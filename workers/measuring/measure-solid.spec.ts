@@ -217,7 +217,7 @@ describe('flat areas', () => {
 
   it('include a cap of 1.2 % of a ball that is pressed flat, wherever it lies (seed 7)', () => {
     const random = seededRandom(7);
-    for (let turn = 0; turn < 24; turn++) {
+    for (let turn = 0; turn < 12; turn++) {
       const normal = randomDirection(random);
       const { mesh } = sphere(50, 240, 120);
       // A disc of 1.2 % of the surface: π (50² − height²) of about 4 π 50².
@@ -227,7 +227,14 @@ describe('flat areas', () => {
         const above = normal[0] * p[i]! + normal[1] * p[i + 1]! + normal[2] * p[i + 2]! - height;
         if (above > 0) for (let k = 0; k < 3; k++) p[i + k] -= above * normal[k]!;
       }
-      const flats = findFlats(mesh, Math.hypot(...boundingBox(p).size));
+      const inOrder = Array.from({ length: mesh.indices.length / 3 }, (_, i) => i);
+      const places = inOrder.map(random);
+      // Samples follow the list of facets; in any other order they fall less evenly.
+      const order = turn % 2 === 0 ? inOrder : inOrder.toSorted((a, b) => places[a]! - places[b]!);
+      const indices = Uint32Array.from(
+        order.flatMap((i) => [...mesh.indices.subarray(3 * i, 3 * i + 3)]),
+      );
+      const flats = findFlats({ positions: p, indices }, Math.hypot(...boundingBox(p).size));
       expect(flats.length).toBe(1);
       const [flat] = flats;
       const [x, y, z] = flat!.normal;
