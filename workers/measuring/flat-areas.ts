@@ -79,21 +79,21 @@ function mayHaveFlats(mesh: TriangleMesh, diagonal: number): boolean {
   const { count, points, triangles } = sampleSurface(mesh, samplesAFlat / leastShare);
   const { min, max } = boundingBox(mesh.positions);
   const side = Math.ceil(2 / sampleSine) + 1;
-  const bins = new Map<number, number>();
+  const bins = new Float64Array(count);
   const normal = new Float64Array(3);
   for (let i = 0; i < count; i++) {
     facetNormal(mesh.positions, mesh.indices, 3 * triangles[i], normal, 0);
     let offset = 0;
-    let key = 0;
+    let bin = 0;
     for (let axis = 0; axis < 3; axis++) {
       offset += normal[axis] * (points[3 * i + axis] - (min[axis] + max[axis]) / 2);
-      key = side * key + Math.floor((normal[axis] + 1) / sampleSine);
+      bin = side * bin + Math.floor((normal[axis] + 1) / sampleSine);
     }
-    key = side * key + Math.floor((offset / diagonal + 1) / sampleOffsetShare);
-    const found = (bins.get(key) ?? 0) + 1;
-    if (found >= leastInOneBin) return true;
-    bins.set(key, found);
+    bins[i] = side * bin + Math.floor((offset / diagonal + 1) / sampleOffsetShare);
   }
+  bins.sort();
+  for (let i = leastInOneBin - 1; i < count; i++)
+    if (bins[i] === bins[i - leastInOneBin + 1]) return true;
   return false;
 }
 
