@@ -6,6 +6,8 @@ import { createJobMonitor } from './modules/jobs/job-monitor.js';
 import { createJobSettler } from './modules/jobs/job-settler.js';
 import { createJobsRoutes } from './modules/jobs/jobs.router.js';
 import type { FinalJob } from './modules/jobs/jobs.repository.js';
+import { createMaterialsRoutes } from './modules/materials/materials.router.js';
+import { createMaterialsService } from './modules/materials/materials.service.js';
 import { settleInspection } from './modules/models/inspect-settlement.js';
 import { createModelsRoutes } from './modules/models/models.router.js';
 import { createModelsService } from './modules/models/models.service.js';
@@ -46,6 +48,7 @@ export function compose(deps: Dependencies) {
 
   const sessions = createSessionService({ ...repos, secret, clock, createId });
   const envelopes = createEnvelopesService({ envelopes: repos.envelopes, clock, createId });
+  const materials = createMaterialsService({ materials: repos.materials, clock, createId });
   const models = createModelsService({
     models: repos.models,
     jobs: repos.jobs,
@@ -63,6 +66,7 @@ export function compose(deps: Dependencies) {
     models: repos.models,
     findModel: models.find,
     findEnvelope: envelopes.get,
+    findMaterial: materials.get,
     transact,
     storage,
     namesOf,
@@ -105,10 +109,22 @@ export function compose(deps: Dependencies) {
       }),
     }),
     ...createEnvelopesRoutes({ envelopes }),
+    ...createMaterialsRoutes({ materials }),
     ...createPlansRoutes({ plans, storage }),
     ...createJobsRoutes({ jobs: repos.jobs, monitor, isStillLive: sessions.isStillLive }),
   ];
-  return { repos, transact, sessions, envelopes, models, plans, settler, monitor, routes };
+  return {
+    repos,
+    transact,
+    sessions,
+    envelopes,
+    materials,
+    models,
+    plans,
+    settler,
+    monitor,
+    routes,
+  };
 }
 
 /** The folder of a record that was deleted while its job ran. */

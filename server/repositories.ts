@@ -1,6 +1,7 @@
 import { createAccountsRepository } from './modules/accounts/accounts.repository.js';
 import { createEnvelopesRepository } from './modules/envelopes/envelopes.repository.js';
 import { createJobsRepository } from './modules/jobs/jobs.repository.js';
+import { createMaterialsRepository } from './modules/materials/materials.repository.js';
 import { createModelsRepository } from './modules/models/models.repository.js';
 import { createPlansRepository } from './modules/plans/plans.repository.js';
 import { createSessionRepository } from './modules/session/session.repository.js';
@@ -17,6 +18,7 @@ export function createRepositories(db: Db) {
     workshops: createWorkshopsRepository({ db }),
     sessions: createSessionRepository({ db }),
     envelopes: createEnvelopesRepository({ db }),
+    materials: createMaterialsRepository({ db }),
     models: createModelsRepository({ db }),
     plans: createPlansRepository({ db }),
     jobs: createJobsRepository({ db }),

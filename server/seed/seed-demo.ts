@@ -1,5 +1,6 @@
 import { mkdir, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
+import { materialPresets } from '../../shared/jobs/material-profile.js';
 import type { EnvelopeData } from '../modules/envelopes/envelopes.model.js';
 import { createModelsService } from '../modules/models/models.service.js';
 import { hashPassword } from '../modules/accounts/passwords.js';
@@ -78,6 +79,8 @@ export async function seedDemo(deps: SeedDependencies): Promise<boolean> {
       const designerId = await addPeople(repos, workshopId, deps);
       for (const envelope of demoEnvelopes)
         await repos.envelopes.add({ id: createId(), workshopId }, envelope, createdAt);
+      for (const material of materialPresets)
+        await repos.materials.add({ id: createId(), workshopId }, material, createdAt);
       await mkdir(making, { recursive: true });
       await addModels(repos, { workshopId, userId: designerId, making }, deps);
       return true;

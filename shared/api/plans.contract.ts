@@ -19,6 +19,8 @@ const planOrder = z.object({
    * wishes and seed of that plan.
    */
   fromOffer: z.object({ planId: recordId, offer: z.number().int().min(0).max(99) }).optional(),
+  /** What is printed and glued with; absent: PLA and five-minute epoxy as they usually are. */
+  materialId: recordId.optional(),
   /** Joints as the walls allow unless asked for otherwise. */
   joints: jointWishes.optional(),
   /**

@@ -21,6 +21,8 @@ export const permissions = {
   'model.write': ['owner', 'shopLead', 'designer'],
   'envelope.read': ['owner', 'shopLead', 'designer', 'maker'],
   'envelope.write': ['owner', 'shopLead'],
+  'material.read': ['owner', 'shopLead', 'designer', 'maker'],
+  'material.write': ['owner', 'shopLead'],
   'plan.read': ['owner', 'shopLead', 'designer', 'maker'],
   'plan.write': ['owner', 'shopLead', 'designer'],
   'job.read': ['owner', 'shopLead', 'designer', 'maker'],

@@ -33,6 +33,10 @@ export const routes: Routes = [
         loadChildren: () => import('./envelopes/envelopes.routes').then((m) => m.envelopesRoutes),
       },
       {
+        path: 'materials',
+        loadChildren: () => import('./materials/materials.routes').then((m) => m.materialsRoutes),
+      },
+      {
         path: 'plans',
         loadChildren: () => import('./plans/plans.routes').then((m) => m.plansRoutes),
       },

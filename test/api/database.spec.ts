@@ -13,11 +13,11 @@ describe('the database', () => {
     const database = await createTestDatabase(inject('mariadbUrl'));
     await database.pool.query('DROP TABLE jobs');
     await database.pool.query('DROP TABLE memberships, refresh_tokens, sessions, plans, revisions');
-    await database.pool.query('DROP TABLE models, envelopes, users, workshops');
+    await database.pool.query('DROP TABLE models, envelopes, materials, users, workshops');
     await database.pool.query('DROP TABLE __drizzle_migrations');
     await Promise.all([1, 2, 3].map(() => migrateDatabase(database.url, migrationsFolder)));
     const [tables] = await database.pool.query<RowDataPacket[]>('SHOW TABLES');
-    expect(tables.length).toBe(11);
+    expect(tables.length).toBe(12);
     await database.drop();
   });
 

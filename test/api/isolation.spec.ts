@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, describe, expect, inject, it } from 'vitest';
+import { usualMaterial } from '../../shared/jobs/material-profile.js';
 import { boxEnvelope, finishJob, inspectedModel, planResult } from './support/worker-results.js';
 import { startTestProduct, type TestProduct } from './support/test-product.js';
 import type { ApiClient } from './support/api-client.js';
@@ -22,12 +23,21 @@ beforeAll(async () => {
   const jobId = plan.body.job.id as string;
   await finishJob(product, jobId, { state: 'done', output: await planResult(product, jobId) });
   await product.product.settler.settleAll();
-  ids = { models: model.id, envelopes: envelope.body.id, plans: plan.body.id, jobs: jobId };
+  const material = await mine.send('post', '/api/materials', { profile: usualMaterial });
+  ids = {
+    models: model.id,
+    envelopes: envelope.body.id,
+    materials: material.body.id,
+    plans: plan.body.id,
+    jobs: jobId,
+  };
 });
 afterAll(() => product.stop());
 
 const bodies: Record<string, object> = {
   'put /api/envelopes/:id': { ...boxEnvelope, name: 'Taken over' },
+  'put /api/materials/:id': { profile: { ...usualMaterial, name: 'Taken over' } },
+  'post /api/plans/:id/release': { reason: 'Taken over' },
   'patch /api/models/:id': { name: 'Taken over' },
   'post /api/models/:id/mending': { choices: { remeshCells: 100 } },
 };

@@ -70,6 +70,8 @@ export function createPlansService(deps: {
   models: Pick<ModelsRepository, 'describeRevisions'>;
   findModel: (key: Key) => Promise<ModelRow>;
   findEnvelope: (key: Key) => Promise<Envelope>;
+  /** @throws material.notFound */
+  findMaterial: (key: Key) => Promise<{ readonly profile: MaterialProfile }>;
   namesOf: (userIds: readonly string[]) => Promise<Map<string, string>>;
   transact: Transact<{ plans: PlansRepository; models: ModelsRepository; jobs: JobsRepository }>;
   storage: FileStorage;
@@ -108,14 +110,21 @@ export function createPlansService(deps: {
     const envelopes: EnvelopeResponse[] = [];
     for (const id of ids)
       envelopes.push(toEnvelopeResponse(await deps.findEnvelope({ id, workshopId })));
+    const material = order.materialId
+      ? (await deps.findMaterial({ id: order.materialId, workshopId })).profile
+      : usualMaterial;
     return {
       envelopes,
-      wishes,
+      // What leans too far is the material's to say, unless the person said otherwise.
+      wishes:
+        wishes.overhangDegrees === usualWishes.overhangDegrees
+          ? { ...wishes, overhangDegrees: material.overhangDegrees }
+          : wishes,
       seed,
       tree: null,
       fromPlan: null,
       joints: order.joints ?? usualJoints,
-      material: usualMaterial,
+      material,
       orientations: [],
     };
   }

@@ -12,6 +12,10 @@ import {
   type PlanResponse,
   type PlanSummary,
 } from '../../../shared/api/plans.contract.js';
+import {
+  materialListResponse,
+  type MaterialResponse,
+} from '../../../shared/api/materials.contract.js';
 import { parseAnswer } from '../core/http/parse-answer';
 
 /** What a model's page needs to order a plan: the envelopes to choose from and the plans there are. */
@@ -22,6 +26,11 @@ export class PlanOrdersApi {
   async envelopes(): Promise<readonly EnvelopeResponse[]> {
     const answer = this.http.get('/api/envelopes').pipe(parseAnswer(envelopeListResponse));
     return (await firstValueFrom(answer)).envelopes;
+  }
+
+  async materials(): Promise<readonly MaterialResponse[]> {
+    const answer = this.http.get('/api/materials').pipe(parseAnswer(materialListResponse));
+    return (await firstValueFrom(answer)).materials;
   }
 
   async plans(modelId: string): Promise<readonly PlanSummary[]> {

@@ -41,7 +41,7 @@ describe('Shell', () => {
     const { fixture, host } = await setUp();
     expect(host.querySelector('.workshop')?.textContent).toMatch(/Lantern Lane Props\s*Demo/);
     const places = [...host.querySelectorAll('nav a')].map((link) => link.getAttribute('href'));
-    expect(places).toEqual(['/models', '/envelopes']);
+    expect(places).toEqual(['/models', '/envelopes', '/materials']);
     fixture.destroy();
   });
 

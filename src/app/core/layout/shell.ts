@@ -38,6 +38,7 @@ export class Shell {
   protected readonly places = [
     { path: '/models', name: 'Models', icon: 'deployed_code' },
     { path: '/envelopes', name: 'Envelopes', icon: 'select_all' },
+    { path: '/materials', name: 'Materials', icon: 'inventory_2' },
   ];
   protected readonly themes: readonly { choice: ThemeChoice; name: string; icon: string }[] = [
     { choice: 'system', name: 'As the system', icon: 'contrast' },

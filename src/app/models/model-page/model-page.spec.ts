@@ -56,6 +56,7 @@ async function setUp(
         useValue: {
           plans: () => Promise.resolve([]),
           envelopes: () => Promise.resolve([makeRectangular()]),
+          materials: () => Promise.resolve([]),
           order,
         },
       },

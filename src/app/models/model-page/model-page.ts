@@ -87,6 +87,7 @@ export class ModelPage {
   protected readonly isCancelling = this.store.isCancelling;
   protected readonly plans = this.desk.plans;
   protected readonly envelopes = this.desk.envelopes;
+  protected readonly materials = this.desk.materials;
   protected readonly suggestedEnvelopeId = this.desk.suggestedEnvelopeId;
   protected readonly planProblem = this.desk.problem;
   protected readonly isOrdering = this.desk.isOrdering;

@@ -14,6 +14,8 @@ import { MatInput } from '@angular/material/input';
 import { MatOption, MatSelect, MatSelectTrigger } from '@angular/material/select';
 import { RouterLink } from '@angular/router';
 import { type EnvelopeResponse } from '../../../../shared/api/envelopes.contract.js';
+import { type MaterialResponse } from '../../../../shared/api/materials.contract.js';
+import { usualMaterial } from '../../../../shared/jobs/material-profile.js';
 import { writeGivenMm } from '../../ui/format/quantities';
 import { Notice } from '../../ui/notice/notice';
 import { type PlanWishes } from '../../../../shared/jobs/plan-wishes.js';
@@ -28,6 +30,8 @@ export interface PlanOrder {
   readonly otherEnvelopeIds: string[];
   readonly seed: number;
   readonly wishes: PlanWishes;
+  /** Absent while the workshop has none. */
+  readonly materialId?: string;
 }
 
 /** Orders a plan: for which envelope, by what matters, and for those who want it in more detail. */
@@ -55,6 +59,7 @@ export interface PlanOrder {
 })
 export class PlanStarter {
   readonly envelopes = input.required<readonly EnvelopeResponse[]>();
+  readonly materials = input<readonly MaterialResponse[]>([]);
   /** The envelope to start with, for example that of the latest plan. */
   readonly suggestedId = input<string | null>(null);
   readonly mayEditEnvelopes = input(false);
@@ -67,6 +72,11 @@ export class PlanStarter {
     const ids = this.envelopes().map((envelope) => envelope.id);
     const suggested = this.suggestedId();
     return suggested && ids.includes(suggested) ? suggested : (ids[0] ?? '');
+  });
+  protected readonly materialId = linkedSignal(() => {
+    const materials = this.materials();
+    const usual = materials.find(({ profile }) => profile.name === usualMaterial.name);
+    return (usual ?? materials[0])?.id ?? '';
   });
   protected readonly options = computed(() =>
     this.envelopes().map((envelope) => ({
@@ -98,7 +108,14 @@ export class PlanStarter {
     const { seed, others } = this.form.getRawValue();
     const otherEnvelopeIds = others.filter((id) => id !== envelopeId);
     const wishes = wishesOf(this.wishes);
-    this.ordered.emit({ envelopeId, otherEnvelopeIds, seed: seed ?? 1, wishes });
+    const materialId = this.materialId();
+    this.ordered.emit({
+      envelopeId,
+      otherEnvelopeIds,
+      seed: seed ?? 1,
+      wishes,
+      ...(materialId && { materialId }),
+    });
   }
 }
 
