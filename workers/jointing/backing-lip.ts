@@ -138,7 +138,7 @@ function wallsOver(
   { seam, near, heightMm }: LipTask,
 ): CrossSection {
   let walls = region;
-  for (const share of [-1, -0.7, -0.35, -0.02, 0.02, 0.35, 0.7, 1])
+  for (const share of [-1, -0.5, -0.02, 0.02, 0.5, 1])
     for (const mesh of near) {
       const loops = sectionLoops(mesh, seam.plane, seam.normal, share * heightMm);
       if (loops.length > 0) walls = scope.keep(walls.add(regionOf(scope, loops)));

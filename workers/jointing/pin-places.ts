@@ -8,12 +8,13 @@ const RINGS = 4;
 
 /** The smallest distance inside a region's edge at which nothing is left of it, mm. */
 export function halfWidth(scope: SolidScope, region: CrossSection): number {
+  if (region.isEmpty()) return 0;
   const { min, max } = region.bounds();
   let low = 0;
   let high = Math.min(max[0] - min[0], max[1] - min[1]) / 2;
-  for (let step = 0; step < 9; step++) {
+  for (let step = 0; step < 14 && high - low > 0.03; step++) {
     const middle = (low + high) / 2;
-    if (scope.keep(region.offset(-middle, 'Round', 2, 32)).isEmpty()) high = middle;
+    if (scope.keep(region.offset(-middle, 'Miter', 2)).isEmpty()) high = middle;
     else low = middle;
   }
   return low;

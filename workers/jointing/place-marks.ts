@@ -9,6 +9,8 @@ import { type PlanePoint } from './outlines.js';
 /** Marks are so deep, mm; capitals so high at least and at most (common practice, from memory). */
 const DEPTH_MM = 0.4;
 const HEIGHTS_MM = [9, 7.5, 6];
+/** Outlines of letters are that exact, mm. */
+const LETTER_SIMPLE_MM = 0.03;
 /** Marks keep clear of the face's edge and of sockets by this, mm. */
 const CLEAR_MM = 1;
 /** A face turned less than this out of the level has no "up" in it: its arrow becomes a word. */
@@ -177,9 +179,10 @@ class FreeRoom {
   /** The contours placed, in the cap's coordinates; null when they do not quite have room. */
   engraved(contours: Layout['contours'], at: PlanePoint): Float64Array[] | null {
     const { scope } = this;
+    if (contours.length === 0) return null;
     const letters = scope.keep(new scope.CrossSection(shifted(contours, at.x, at.y), 'NonZero'));
     if (scope.keep(letters.subtract(this.free)).area() > 1e-6) return null;
-    return loopsOf(scope, letters).map((loop) => this.toCap(loop));
+    return loopsOf(scope, letters, LETTER_SIMPLE_MM).map((loop) => this.toCap(loop));
   }
 
   private isFree(column: number, row: number, wide: number, high: number): boolean {

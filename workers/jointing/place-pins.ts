@@ -1,16 +1,12 @@
-import { type CapFrame } from '../../shared/geometry/features/cap-frame.js';
-import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { fromPlane, type SeamPlane } from '../../shared/geometry/sections/seam-plane.js';
 import { type Coverage, type PatternPin, wrongFits } from './one-way.js';
 import { type PlanePoint } from './outlines.js';
 import { type PinMeasures, roomsMeet, type SeamPin, type TakenRoom } from './seam-pin.js';
-import { type Disc, solidDepths } from './solid-depth.js';
+import { type Disc, type NearCap } from './solid-depth.js';
 
 /** One of the two pieces at a seam. */
 export interface PinSide {
-  readonly mesh: TriangleMesh;
-  readonly tag: number;
-  readonly frame: CapFrame;
+  readonly near: NearCap;
   /** What other joints of the piece need already. */
   readonly taken: readonly TakenRoom[];
 }
@@ -94,9 +90,9 @@ function depthsAt(task: PinTask, places: readonly PlanePoint[], radiusMm: number
   const discs: Disc[] = places.map(({ x, y }) => ({ x, y, radiusMm }));
   const mirrored = discs.map((disc) => ({ ...disc, y: -disc.y }));
   const { above: a, below: b } = task;
-  const inAbove = solidDepths(a.mesh, a.tag, a.frame, mirrored, deepest);
-  const inBelow = solidDepths(b.mesh, b.tag, b.frame, discs, deepest);
-  return places.map((_, k) => Math.min(inAbove[k], inBelow[k]) - below);
+  const inAbove = a.near.depths(mirrored);
+  const inBelow = b.near.depths(discs);
+  return places.map((_, k) => Math.min(deepest, inAbove[k], inBelow[k]) - below);
 }
 
 function socketRadius({ diameterMm, clearanceMm, measures }: PinTask): number {

@@ -1,4 +1,4 @@
-import { capFrame } from '../../shared/geometry/features/cap-frame.js';
+import { capFrame, mirrorLoop } from '../../shared/geometry/features/cap-frame.js';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import {
@@ -14,6 +14,7 @@ import { type CrossSection, type Solids, type SolidScope } from '../solids/solid
 import { makeLips, type Lip } from './backing-lip.js';
 import { type Coverage } from './one-way.js';
 import { halfWidth, placesInside } from './pin-places.js';
+import { NearCap } from './solid-depth.js';
 import { type PinSide, type PinTask, type PlacedPins, placePins, roomsOf } from './place-pins.js';
 import { pinMeasures, type SeamPin, type TakenRoom } from './seam-pin.js';
 
@@ -44,6 +45,10 @@ const LIP_BELOW_MM = 4.5;
 const LIP_HEIGHTS_MM = [8, 5];
 /** How far beyond its height and wall a lip looks for other pieces, mm. */
 const LIP_ROOM_MM = 5;
+/** Twice the thickest pin, mm. */
+const DEEPEST_PIN_MM = 24;
+/** Faces smaller than this get no joint, mm². */
+const LEAST_JOINED_MM2 = 12;
 /** Printed pins are no thinner, mm; what is thinner is cut from rod (common practice, from memory). */
 const LEAST_PRINTED_MM = 3;
 /** A pin's diameter to the square root of the joined area (common practice, no source). */
@@ -73,7 +78,8 @@ export function planJoints(task: JointTask): SeamJoint[] {
     task.onSeam?.(done, order.length);
     const seam = task.seams[k];
     joints[k] = task.solids.withSolids((scope) => {
-      const region = regionOf(scope, seam.region);
+      // Pins and lips keep farther from the edge than this takes off it.
+      const region = scope.keep(regionOf(scope, seam.region).simplify(0.03));
       return new SeamPlanner(scope, region, seam, task, roomsFor, lipRooms, middle).plan();
     });
   }
@@ -113,6 +119,7 @@ class SeamPlanner {
 
   plan(): SeamJoint {
     const { kind } = this.choice;
+    if (this.seam.areaMm2 < LEAST_JOINED_MM2) return this.none('that is too little');
     if (kind === 'none') return this.result('none', 'No joint was wanted here.');
     if (kind === 'backing-lip') return this.lip() ?? this.none('no lip can stand behind its wall');
     if (kind !== null)
@@ -170,24 +177,18 @@ class SeamPlanner {
   }
 
   private pinTask(kind: JointKind, diameterMm: number): PinTask {
-    const { material, bodies, wishes } = this.task;
+    const { material, wishes } = this.task;
     const { seam, scope, region } = this;
     const measures = pinMeasures(diameterMm, {
       lineWidthMm: material.lineWidthMm,
       edgeBevelMm: wishes.edgeBevelMm,
     });
     const clearanceMm = material.clearances.locatingMm;
-    const side = (name: string, isAlong: boolean): PinSide => ({
-      mesh: bodies.get(name)!,
-      tag: seam.cut,
-      frame: capFrame(seam.plane, seam.normal, isAlong),
-      taken: this.roomsFor(name),
-    });
     const fromEdge = (diameterMm + clearanceMm) / 2 + measures.wallMm;
     const depthMm = this.choice.depthMm ?? Math.max(2 * diameterMm, 5);
     return {
-      above: side(seam.above, false),
-      below: side(seam.below, true),
+      above: this.side(seam.above, false),
+      below: this.side(seam.below, true),
       plane: seam.plane,
       normal: seam.normal,
       places: placesInside(scope, region, fromEdge + 0.02, Math.max(2, diameterMm)),
@@ -202,6 +203,21 @@ class SeamPlanner {
       isFixed: kind === 'fixed-pin',
     };
   }
+
+  private side(name: string, isAlong: boolean): PinSide {
+    const { seam, task, choice } = this;
+    let near = this.nearCaps.get(name);
+    if (!near) {
+      const outline = seam.region.map((loop) => (isAlong ? loop : mirrorLoop(loop)));
+      const deepestMm = (choice.depthMm ?? DEEPEST_PIN_MM) + 4;
+      const frame = capFrame(seam.plane, seam.normal, isAlong);
+      const within = Float64Array.from(outline.flatMap((loop) => [...loop]));
+      near = new NearCap(task.bodies.get(name)!, seam.cut, frame, deepestMm, within);
+      this.nearCaps.set(name, near);
+    }
+    return { near, taken: this.roomsFor(name) };
+  }
+  private readonly nearCaps = new Map<string, NearCap>();
 
   private take(
     kind: JointKind,

@@ -4,7 +4,7 @@ import { cutMesh } from '../../shared/geometry/cutting/cut-mesh.js';
 import { seamPlane } from '../../shared/geometry/sections/seam-plane.js';
 import { box, boxWithCavity, sphere } from '../../test/support/shapes.js';
 import { loadSolids, type Solids } from '../solids/solid-kernel.js';
-import { solidDepths } from './solid-depth.js';
+import { NearCap } from './solid-depth.js';
 
 let solids: Solids;
 beforeAll(async () => {
@@ -17,7 +17,7 @@ const below = (mesh: Parameters<typeof cutMesh>[0], offset: number) =>
 const frameAt = (offset: number) =>
   capFrame(seamPlane(level(offset), [0, 0, offset]), [0, 0, 1], true);
 
-describe('solidDepths', () => {
+describe('NearCap', () => {
   it('reaches the floor of a box, and nothing where the disc is over the side', () => {
     const half = below(box([-20, -20, 0], [20, 20, 60]).mesh, 25);
     const discs = [
@@ -25,13 +25,13 @@ describe('solidDepths', () => {
       { x: 16.9, y: 0, radiusMm: 3 },
       { x: 17.5, y: 0, radiusMm: 3 },
     ];
-    expect([...solidDepths(half, 1, frameAt(25), discs, 100)]).toEqual([25, 25, 0]);
-    expect([...solidDepths(half, 1, frameAt(25), discs.slice(0, 1), 10)]).toEqual([10]);
+    expect([...new NearCap(half, 1, frameAt(25), 100).depths(discs)]).toEqual([25, 25, 0]);
+    expect([...new NearCap(half, 1, frameAt(25), 10).depths(discs.slice(0, 1))]).toEqual([10]);
   });
 
   it('stops at the roof of a hollow', () => {
     const half = below(boxWithCavity(30, 20).mesh, 29);
-    const [depth] = solidDepths(half, 1, frameAt(29), [{ x: 15, y: 15, radiusMm: 2 }], 100);
+    const [depth] = new NearCap(half, 1, frameAt(29), 100).depths([{ x: 15, y: 15, radiusMm: 2 }]);
     expect(depth).toBeCloseTo(4, 9);
   });
 
@@ -42,7 +42,7 @@ describe('solidDepths', () => {
       [20, 4],
       [33, 6],
     ] as const) {
-      const [depth] = solidDepths(half, 1, frameAt(0), [{ x, y: 0, radiusMm }], 100);
+      const [depth] = new NearCap(half, 1, frameAt(0), 100).depths([{ x, y: 0, radiusMm }]);
       expect(depth).toBeCloseTo(Math.sqrt(40 ** 2 - (x + radiusMm) ** 2), 1);
     }
   });

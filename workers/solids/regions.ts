@@ -5,6 +5,8 @@ export type Loops = readonly Float64Array[];
 
 /** Points of an outline closer to its neighbours' line than this are left out, mm. */
 const SIMPLE_MM = 2e-3;
+/** The edge of a bevelled face need not follow every facet, mm. */
+const INSET_SIMPLE_MM = 0.02;
 /** Corners sharper than this are cut off when a region is shrunk. */
 const MITER_LIMIT = 2;
 /** Parts of a region smaller than this are crumbs of rounding, mm². */
@@ -14,13 +16,16 @@ const CRUMB_MM2 = 1e-3;
 export function insetOverlap(solids: Solids, one: Loops, other: Loops, byMm: number) {
   return solids.withSolids((scope) => {
     const shared = scope.keep(regionOf(scope, one).intersect(regionOf(scope, other)));
-    return loopsOf(scope, scope.keep(shared.offset(-byMm, 'Miter', MITER_LIMIT)));
+    const inset = scope.keep(shared.offset(-byMm, 'Miter', MITER_LIMIT));
+    return loopsOf(scope, inset, INSET_SIMPLE_MM);
   });
 }
 
 /** A region of the plane in a scope, from loops of either direction. */
 export function regionOf(scope: SolidScope, loops: Loops): CrossSection {
-  const polygons = loops.map((loop) =>
+  // The constructor cannot take an empty list; a point bounds nothing as well.
+  const drawn = loops.length > 0 ? loops : [new Float64Array(6)];
+  const polygons = drawn.map((loop) =>
     Array.from({ length: loop.length / 2 }, (_, i): [number, number] => [
       loop[2 * i],
       loop[2 * i + 1],
@@ -30,9 +35,13 @@ export function regionOf(scope: SolidScope, loops: Loops): CrossSection {
 }
 
 /** The outlines of a region without crumbs and needless points. */
-export function loopsOf(scope: SolidScope, region: CrossSection): Float64Array[] {
+export function loopsOf(
+  scope: SolidScope,
+  region: CrossSection,
+  simpleMm = SIMPLE_MM,
+): Float64Array[] {
   return scope
-    .keep(region.simplify(SIMPLE_MM))
+    .keep(region.simplify(simpleMm))
     .toPolygons()
     .filter((polygon) => polygon.length >= 3)
     .map((polygon) => Float64Array.from(polygon.flat()))

@@ -55,7 +55,7 @@ const BEVEL_TAG = 0x7fffffff;
  * bevel are tagged 0. A face that the mesh does not have changes nothing. O(triangles).
  */
 export function reworkCap(mesh: TriangleMesh, change: CapChange, tools: CapTools): ReworkedCap {
-  const cap = capsOf(mesh).find(({ cut }) => cut === change.tag);
+  const [cap] = capsOf(mesh, change.tag);
   if (!cap) return { mesh, isBevelled: false, featuresMm3: 0, bevelMm3: 0 };
   const featuresMm3 = change.features.reduce((sum, one) => sum + featureVolume(one), 0);
   const bevelled = change.bevelMm > 0 ? withBevel(mesh, cap, change, tools) : null;
@@ -115,7 +115,7 @@ function withBevel(mesh: TriangleMesh, cap: Cap, change: CapChange, tools: CapTo
     { triangulate: tools.triangulate, capTag: BEVEL_TAG },
   );
   if (rest.indices.length === 0 || slab.indices.length === 0) return null;
-  const section = capsOf(rest).find(({ cut }) => cut === BEVEL_TAG);
+  const [section] = capsOf(rest, BEVEL_TAG);
   if (!section) return null;
   const bumps = bumpsOf(slab, tag);
   const rim = section.loops.filter((loop) => !bumps.has(pointKey(rest.positions, loop[0])));

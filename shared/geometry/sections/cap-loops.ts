@@ -14,14 +14,15 @@ export interface Cap {
  * The caps of a body, by rising number of the cut. A cap's loops are the edges that only one of its
  * triangles uses; where loops touch in a vertex they may be chained either way, which bounds the same
  * region under the even-odd rule. Edges that do not close a loop (an open mesh) are left out.
+ * @param only the number of one cut; absent: all
  */
-export function capsOf(mesh: TriangleMesh): Cap[] {
+export function capsOf(mesh: TriangleMesh, only?: number): Cap[] {
   const { tags } = mesh;
   if (!tags) return [];
   const byCut = new Map<number, number[]>();
   for (let triangle = 0; triangle < tags.length; triangle++) {
     const cut = tags[triangle];
-    if (cut <= 0) continue;
+    if (cut <= 0 || (only !== undefined && cut !== only)) continue;
     const triangles = byCut.get(cut);
     if (triangles) triangles.push(triangle);
     else byCut.set(cut, [triangle]);

@@ -68,6 +68,8 @@ export class ColumnCrossings {
       const a = indices[t];
       const b = indices[t + 1];
       const c = indices[t + 2];
+      if (!this.hasMiddle(x[a], x[b], x[c], this.x0) || !this.hasMiddle(y[a], y[b], y[c], this.y0))
+        continue;
       const ux = x[b] - x[a];
       const uy = y[b] - y[a];
       const uz = z[b] - z[a];
@@ -87,6 +89,13 @@ export class ColumnCrossings {
       const slopeY = (vz * ux - uz * vx) / nz;
       this.addTriangle(a, b, c, x, y, z[a], slopeX, slopeY, step);
     }
+  }
+
+  /** Whether the middle of any column lies between three coordinates. */
+  private hasMiddle(a: number, b: number, c: number, first: number): boolean {
+    const low = a < b ? (a < c ? a : c) : b < c ? b : c;
+    const high = a > b ? (a > c ? a : c) : b > c ? b : c;
+    return Math.ceil((low - first) / this.pitch) <= Math.floor((high - first) / this.pitch);
   }
 
   private addTriangle(

@@ -18,19 +18,19 @@ const normals: readonly Vector3[] = [
   normalize([-0.019, 1, 0.023]),
 ];
 
-/** 15 cuts on 4 levels: halves, quarters, then each quarter across and along. */
-export function benchTree(): PlaneTree {
-  return branch(0, 0, 0);
+/** 15 cuts on 4 levels: halves, quarters, then each quarter across and along; fewer on fewer. */
+export function benchTree(levels = normals.length): PlaneTree {
+  return branch(0, 0, 0, levels);
 }
 
-function branch(level: number, alongX: number, alongY: number): PlaneTree {
-  if (level === normals.length) return { kind: 'leaf' };
+function branch(level: number, alongX: number, alongY: number, levels: number): PlaneTree {
+  if (level === levels) return { kind: 'leaf' };
   const isAcrossX = level % 2 === 0;
   const step = level < 2 ? 140 : 70;
   const next = (sign: number) =>
     isAcrossX
-      ? branch(level + 1, alongX + sign * step, alongY)
-      : branch(level + 1, alongX, alongY + sign * step);
+      ? branch(level + 1, alongX + sign * step, alongY, levels)
+      : branch(level + 1, alongX, alongY + sign * step, levels);
   return {
     kind: 'cut',
     plane: { normal: normals[level]!, offset: isAcrossX ? alongX : alongY },
