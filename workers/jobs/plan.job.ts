@@ -1,6 +1,7 @@
 import { scaleMesh } from '../../shared/geometry/mesh/measure.js';
 import { makePieces } from '../building/make-pieces.js';
 import { decodeMesh } from '../intake/mesh-file.js';
+import { supportLines } from '../picturing/support-lines.js';
 import { makeViewGlb } from '../picturing/view-glb.js';
 import { type JobHandler } from '../runtime/job-handler.js';
 import { loadSolids } from '../solids/solid-kernel.js';
@@ -42,10 +43,15 @@ export const makePlan: JobHandler<'plan.make'> = async (input, { storage }, cont
   context.progress('Drawing the plan', 0.95);
   const view = await makeViewGlb({
     meshes: made.bodies,
-    lines: made.seams.map((seam, index) => ({
-      name: `seam-${index + 1}`,
-      positions: seam.outline,
-    })),
+    lines: [
+      ...made.seams.map((seam, index) => ({
+        name: `seam-${index + 1}`,
+        positions: seam.outline,
+      })),
+      ...made.plan.pieces.flatMap((piece, index) =>
+        supportLines(piece, made.bodies[index].mesh, input.material),
+      ),
+    ],
     triangleBudget: VIEW_TRIANGLES,
   });
   await storage.write(keyOf('view.glb'), view);

@@ -22,7 +22,8 @@ export function pictureOf(
       const surface = surfaces.get(piece.name);
       if (!surface) return [];
       const { item, name, centreMm, placement } = piece;
-      return [{ item, name, surface, centreMm, placement }];
+      const support = lines.get(`support-${name}`)?.positions;
+      return [{ item, name, surface, centreMm, placement, ...(support && { support }) }];
     }),
     seams: result.seams.map(({ between }, index) => ({
       between,

@@ -3,6 +3,8 @@ import {
   BufferGeometry,
   FrontSide,
   Group,
+  LineBasicMaterial,
+  LineSegments,
   Mesh,
   MeshLambertMaterial,
   Vector3,
@@ -65,6 +67,21 @@ function extremePoints(positions: Float32Array): Vector3[] {
   return points;
 }
 
+/** Hidden until the piece lies on its bed. */
+function supportLines(
+  positions: Float32Array | undefined,
+): LineSegments<BufferGeometry, LineBasicMaterial> | null {
+  if (!positions || positions.length === 0) return null;
+  const geometry = new BufferGeometry();
+  geometry.setAttribute('position', new BufferAttribute(positions, 3));
+  const lines = new LineSegments(
+    geometry,
+    new LineBasicMaterial({ transparent: true, opacity: 0.55 }),
+  );
+  lines.visible = false;
+  return lines;
+}
+
 /** A piece in the scene: its surface, its place and where it is going. */
 export class PieceBody {
   readonly group = new Group();
@@ -73,6 +90,7 @@ export class PieceBody {
   /** Flat xyz, two points a segment, in the assembled model. */
   readonly featureEdges: Float32Array;
   readonly mesh: Mesh<BufferGeometry, MeshLambertMaterial>;
+  private readonly support: LineSegments<BufferGeometry, LineBasicMaterial> | null;
   private readonly pose: Pose;
   private tint = '#ffffff';
   private from = identityPose();
@@ -98,11 +116,20 @@ export class PieceBody {
     this.mesh.raycast = acceleratedRaycast;
     this.mesh.name = piece.name;
     this.group.add(this.mesh);
+    this.support = supportLines(piece.support);
+    if (this.support) this.group.add(this.support);
     this.pose = { position: this.group.position, rotation: this.group.quaternion };
   }
 
   get isShown(): boolean {
     return this.group.visible;
+  }
+
+  /** Draws the columns of support in a colour, or nothing of them. */
+  setSupport(colour: string | null): void {
+    if (!this.support) return;
+    this.support.visible = colour !== null;
+    if (colour !== null) this.support.material.color.set(colour);
   }
 
   setColour(tint: string): void {

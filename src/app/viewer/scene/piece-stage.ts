@@ -121,6 +121,7 @@ export class PieceStage {
       body.aim(pose);
     });
     this.setBodiesDrawn(this.areBodiesDrawn);
+    this.drawSupport();
     if (this.envelope) {
       this.envelope.group.visible = isOnBed;
       this.envelope.group.position.copy(bed);
@@ -236,9 +237,16 @@ export class PieceStage {
     });
   }
 
+  /** Support belongs to a piece on its bed. */
+  private drawSupport(): void {
+    const colour = this.theme && this.isOnBed() ? this.theme.copper : null;
+    for (const body of this._bodies) body.setSupport(colour);
+  }
+
   private applyTheme(): void {
     const { theme } = this;
     if (!theme) return;
+    this.drawSupport();
     for (const body of this._bodies) {
       const tint = this.isOneBody ? bodyTint(theme.isDark) : pieceTint(body.colour, theme.isDark);
       body.setColour(tint);

@@ -33,6 +33,8 @@ export interface ScenePiece {
   readonly centreMm: Triple;
   /** Assembled model to bed: 12 numbers, rows of a 3×4 matrix. Null when it is never laid down. */
   readonly placement: readonly number[] | null;
+  /** Columns of support under it as it lies: flat xyz, foot and head, in the assembled model. */
+  readonly support?: Float32Array;
 }
 
 /** Where two pieces meet; its outline travels with both. */
