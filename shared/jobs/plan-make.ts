@@ -104,8 +104,10 @@ export const pieceSchema = z.object({
   /** The one that is used, then others nearly as good; empty for plans of before. */
   orientations: z.array(orientationSchema).default([]),
   estimate: estimateSchema.nullable().default(null),
-  /** What could not be done and why. */
+  /** What could not be done and why; skins to be cut out after printing. */
   notes: z.array(z.string()).default([]),
+  /** Openings in thin walls that a skin could close, so that they need no support. */
+  openings: z.number().int().default(0),
 });
 
 export const seamSchema = z.object({

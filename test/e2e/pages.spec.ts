@@ -98,6 +98,8 @@ describe('every page at 390 and 1440 px, light and dark', () => {
         ['cut-preview', `/models/${made.model}/cut-preview`, 'canvas'],
         ['envelopes', '/envelopes', 'table'],
         ['envelope-new', '/envelopes/new', 'form'],
+        ['materials', '/materials', 'table'],
+        ['material-new', '/materials/new', 'form'],
         ['plans', `/plans?modelId=${made.model}`, 'table'],
         ['plan', `/plans/${made.plan}`, 'sw-proof-table'],
         ['not-found', '/nowhere', 'h1'],

@@ -298,6 +298,7 @@ function pieceRow(
       material,
     ),
     notes: [...common.notes[index], ...piece.version.notes],
+    openings: common.openings[index],
   };
 }
 

@@ -18,6 +18,8 @@ import {
 } from '../orienting/orient-piece.js';
 import { type JobContext, portionOf } from '../runtime/job-context.js';
 import { type Solids } from '../solids/solid-kernel.js';
+import { addSkins } from '../skinning/add-skins.js';
+import { findSkins, type Skin } from '../skinning/find-skins.js';
 import { type NamedBody, type Outfit, type Version } from './finish-bodies.js';
 import { findSeams, type SeamRegion } from './seam-areas.js';
 
@@ -45,10 +47,14 @@ export interface PlanOutfit {
   readonly joints: readonly SeamJoint[];
   /** In the order of the bodies: the one that is used first, then others that were nearly as good. */
   readonly orientations: readonly (readonly Orientation[])[];
+  /** In the order of the bodies: openings that a skin could close. */
+  readonly openings: readonly number[];
   /** In the order of the bodies: what could not be done as asked. */
   readonly notes: readonly (readonly string[])[];
 }
 
+/** Support below that is no reason for a skin, mm³. */
+const LEAST_SUPPORT_MM3 = 200;
 /** Pieces are written plain only when nothing else can be: joints would then not meet. */
 const FINISHES: readonly Finish[] = [
   { isBevelled: true, isMarked: true },
@@ -86,6 +92,7 @@ export async function outfitPieces(
   const outfits: Outfit[] = [];
   const orientations: Orientation[][] = [];
   const notes: string[][] = [];
+  const openings: number[] = [];
   const orienting = portionOf(context, 0.5, 1);
   for (const [k, named] of bodies.entries()) {
     context.throwIfCancelled();
@@ -102,6 +109,12 @@ export async function outfitPieces(
     orientations.push(laid.list.length > 0 ? laid.list : [asItLies(mesh, orientTask, pose, space)]);
     notes.push(laid.notes);
     const up: Vector3 = [0 - pose.down[0], 0 - pose.down[1], 0 - pose.down[2]];
+    const { overhangDegrees, bridgeMm } = material;
+    const needsSupport = (laid.list[0]?.supportMm3 ?? Infinity) > LEAST_SUPPORT_MM3;
+    const skins = needsSupport
+      ? findSkins(solids, mesh, up, { overhangDegrees, bridgeMm, skinMm: wishes.skinMm })
+      : [];
+    openings.push(skins.length);
     const dress = (finish: Finish): Version => {
       const { name } = named;
       const dressed = dressBody({
@@ -116,14 +129,18 @@ export async function outfitPieces(
         finish,
       });
       const laid = poseOn(dressed.mesh.positions, task.spaces[space], pose.down)!;
-      return enlarged({ ...dressed, pose: laid }, task.enlargement);
+      const version = { ...dressed, pose: laid };
+      return enlarged(
+        wishes.skins.includes(name) ? withSkins(version, up, skins, task) : version,
+        task.enlargement,
+      );
     };
     outfits.push({
       space,
       versions: FINISHES.map((finish) => () => dress(finish)),
     });
   }
-  return { outfits, common: { seams, joints, orientations, notes } };
+  return { outfits, common: { seams, joints, orientations, notes, openings } };
 }
 
 function orientTaskFor(
@@ -223,6 +240,29 @@ function withEnds(points: Float64Array, ends: Float64Array | undefined): Float64
   all.set(points);
   all.set(ends, points.length);
   return all;
+}
+
+/** The piece with its openings closed; skins count as added, and each is told. */
+function withSkins(
+  version: Version,
+  up: Vector3,
+  skins: readonly Skin[],
+  { solids, joints: { skinMm } }: OutfitTask,
+): Version {
+  const { positions } = version.mesh;
+  let plateMm = Infinity;
+  for (let k = 0; k < positions.length; k += 3)
+    plateMm = Math.min(
+      plateMm,
+      positions[k] * up[0] + positions[k + 1] * up[1] + positions[k + 2] * up[2],
+    );
+  const { mesh, addedMm3, notes } = addSkins(solids, version.mesh, up, skins, { skinMm, plateMm });
+  return {
+    ...version,
+    mesh,
+    featuresMm3: version.featuresMm3 + addedMm3,
+    notes: [...version.notes, ...notes],
+  };
 }
 
 function enlarged(version: Version, factor: number): Version {

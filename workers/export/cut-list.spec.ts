@@ -17,6 +17,7 @@ const piece = (item: number): Piece => ({
   orientations: [],
   estimate: null,
   notes: [],
+  openings: 0,
 });
 
 describe('cutListCsv', () => {
@@ -37,9 +38,9 @@ describe('cutListCsv', () => {
       ],
     );
     expect(csv.split('\r\n')).toEqual([
-      'item,piece,model,width_mm,depth_mm,height_mm,volume_mm3,triangles,fits,meets,file',
-      '1,P01,bell,10.000,20.250,5.003,1000.500,12,yes,P02,pieces/P01.stl',
-      '2,P02,bell,10.000,20.250,5.003,1000.500,12,no,P01,pieces/P02.stl',
+      'item,piece,model,width_mm,depth_mm,height_mm,volume_mm3,triangles,fits,meets,file,notes',
+      '1,P01,bell,10.000,20.250,5.003,1000.500,12,yes,P02,pieces/P01.stl,',
+      '2,P02,bell,10.000,20.250,5.003,1000.500,12,no,P01,pieces/P02.stl,',
       '',
     ]);
   });

@@ -12,6 +12,7 @@ const HEADER = [
   'fits',
   'meets',
   'file',
+  'notes',
 ];
 
 /**
@@ -34,6 +35,7 @@ export function cutListCsv(
     piece.fits ? 'yes' : 'no',
     neighboursOf(piece.name, seams).join(' '),
     piece.file,
+    piece.notes.join(' '),
   ]);
   return [HEADER, ...rows].map((row) => row.map(csvField).join(',') + '\r\n').join('');
 }

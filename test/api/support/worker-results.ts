@@ -151,6 +151,7 @@ export async function planResult(
     orientations: [],
     estimate: null,
     notes: [],
+    openings: 0,
   });
   return {
     recipe: {

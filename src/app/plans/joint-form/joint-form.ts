@@ -15,6 +15,7 @@ import { type Seam } from '../../../../shared/jobs/plan-make.js';
 import { jointNames } from '../joint-words';
 
 const ALL = 'all';
+const AUTO = 'auto';
 
 /** Chooses another joint for one seam or for all, and asks for the plan to be made with it. */
 @Component({
@@ -34,7 +35,7 @@ const ALL = 'all';
       <mat-form-field>
         <mat-label>Joint</mat-label>
         <mat-select [value]="kind()" (valueChange)="kind.set($event)">
-          <mat-option [value]="null">As the walls allow</mat-option>
+          <mat-option [value]="auto">As the walls allow</mat-option>
           @for (one of kinds; track one.kind) {
             <mat-option [value]="one.kind">{{ one.name }}</mat-option>
           }
@@ -43,7 +44,7 @@ const ALL = 'all';
       <mat-form-field>
         <mat-label>Diameter</mat-label>
         <mat-select [value]="diameterMm()" (valueChange)="diameterMm.set($event)">
-          <mat-option [value]="null">As the walls allow</mat-option>
+          <mat-option [value]="auto">As the walls allow</mat-option>
           @for (one of diameters; track one) {
             <mat-option [value]="one">{{ one }} mm</mat-option>
           }
@@ -81,17 +82,23 @@ export class JointForm {
   readonly asked = output<JointWishes>();
 
   protected readonly all = ALL;
+  protected readonly auto = AUTO;
   protected readonly kinds = jointKinds.map((kind) => ({ kind, name: jointNames[kind] }));
   protected readonly diameters = pinDiametersMm;
   protected readonly seam = signal<number | typeof ALL>(ALL);
-  protected readonly kind = signal<JointKind | null>(null);
-  protected readonly diameterMm = signal<JointChoice['diameterMm']>(null);
+  protected readonly kind = signal<JointKind | typeof AUTO>(AUTO);
+  protected readonly diameterMm = signal<NonNullable<JointChoice['diameterMm']> | typeof AUTO>(
+    AUTO,
+  );
   protected readonly seamNames = computed(() =>
     this.seams().map(({ between }) => between.join(' and ')),
   );
 
   protected ask(): void {
-    const choice = jointChoice.parse({ kind: this.kind(), diameterMm: this.diameterMm() });
+    const choice = jointChoice.parse({
+      kind: givenOrNull(this.kind()),
+      diameterMm: givenOrNull(this.diameterMm()),
+    });
     const joints = this.joints();
     const seam = this.seam();
     if (seam === ALL) {
@@ -104,4 +111,8 @@ export class JointForm {
     );
     this.asked.emit({ ...joints, seams: [...others, { between, cut, choice }] });
   }
+}
+
+function givenOrNull<T>(value: T | typeof AUTO): T | null {
+  return value === AUTO ? null : value;
 }

@@ -32,6 +32,16 @@ const SHAKY = 4;
     @for (note of piece().notes; track $index) {
       <p class="sw-quiet">{{ note }}</p>
     }
+    @if (piece().openings > 0 && mayMake() && !hasSkins()) {
+      <p>
+        {{ piece().openings === 1 ? 'One opening' : piece().openings + ' openings' }} in a thin wall
+        could be closed by a wall one line wide that you cut out after printing; nothing above it
+        then needs support.
+      </p>
+      <button matButton="outlined" type="button" [disabled]="isMaking()" (click)="skinned.emit()">
+        Make the plan with such skins in {{ piece().name }}
+      </button>
+    }
     @if (piece().orientations.length > 0) {
       <h3 id="lies-heading">How it lies</h3>
       <mat-radio-group
@@ -84,6 +94,9 @@ export class PieceSheet {
   readonly mayMake = input(false);
   readonly isMaking = input(false);
   readonly asked = output<OrientationWish>();
+  /** Whether its openings are closed already. */
+  readonly hasSkins = input(false);
+  readonly skinned = output<void>();
 
   protected readonly chosen = linkedSignal<Piece, number>({
     source: this.piece,

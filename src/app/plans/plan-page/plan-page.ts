@@ -143,6 +143,7 @@ export class PlanPage {
         value: [plan.envelope, ...plan.otherEnvelopes].map(envelopeInWords).join('; '),
         wide: true,
       },
+      ...this.materialField(),
       { name: 'Asked for', value: wishesInWords(plan.wishes), wide: true },
       ...(plan.fromPlan === null
         ? []
@@ -217,6 +218,11 @@ export class PlanPage {
     await this.remake({ orientations });
   }
 
+  protected async skin(piece: string): Promise<void> {
+    const joints = this.result()?.recipe.joints;
+    if (joints) await this.remake({ joints: { ...joints, skins: [...joints.skins, piece] } });
+  }
+
   /** Asks why, records it, then lets the browser fetch the files. */
   protected async downloadAnyway(): Promise<void> {
     const open = this.dialog.open<ReleaseDialog, void, string>(ReleaseDialog, { maxWidth: 520 });
@@ -258,6 +264,11 @@ export class PlanPage {
       // Expected: the server refuses or cannot be reached.
       this.notes.show(error);
     }
+  }
+
+  private materialField(): TitleBlockField[] {
+    const material = this.result()?.recipe.material;
+    return material ? [{ name: 'Material', value: material.name, wide: true }] : [];
   }
 
   private scaleField(): TitleBlockField[] {

@@ -50,6 +50,7 @@ export function samplePiece(item: number, changes: Partial<Piece> = {}): Piece {
     orientations: [],
     estimate: null,
     notes: [],
+    openings: 0,
     ...changes,
   };
 }
