@@ -112,7 +112,7 @@ function withBevel(mesh: TriangleMesh, cap: Cap, change: CapChange, tools: CapTo
   const { above: slab, below: rest } = cutMesh(
     mesh,
     { normal: outward, offset: height - bevelMm },
-    { triangulate: tools.triangulate, capTag: BEVEL_TAG },
+    { triangulate: fans, capTag: BEVEL_TAG },
   );
   if (rest.indices.length === 0 || slab.indices.length === 0) return null;
   const [section] = capsOf(rest, BEVEL_TAG);
@@ -141,6 +141,21 @@ function withBevel(mesh: TriangleMesh, cap: Cap, change: CapChange, tools: CapTo
     bevelMm3: signedVolume(slab) - bumps.volumeMm3 - replaced - areaOf(face) * bevelMm,
   };
 }
+
+/**
+ * Each loop as a fan from its first point: not a filling that could be written, but one with the
+ * loop as its border and the right volume below it. Of the section only the border is kept.
+ */
+const fans: PolygonTriangulator = (loops) => {
+  const corners: number[] = [];
+  let first = 0;
+  for (const loop of loops) {
+    const points = loop.length / 2;
+    for (let k = 1; k + 1 < points; k++) corners.push(first, first + k, first + k + 1);
+    first += points;
+  }
+  return Uint32Array.from(corners);
+};
 
 /** Volume under a lifted triangulation, mm³. */
 function climbVolume(

@@ -165,6 +165,8 @@ export class ColumnCrossings {
   visit(see: (crossings: Crossings, column: number) => void): void {
     let heights = new Float64Array(32);
     let steps = new Int8Array(32);
+    // One object for all visits: there are tens of thousands.
+    const crossings = { count: 0, heights, steps };
     for (let column = 0; column < this.heads.length; column++) {
       let count = 0;
       for (let at = this.heads[column]; at >= 0; at = this.next[at]) {
@@ -189,7 +191,11 @@ export class ColumnCrossings {
         heights[to] = height;
         steps[to] = step;
       }
-      if (count > 0) see({ count, heights, steps }, column);
+      if (count === 0) continue;
+      crossings.count = count;
+      crossings.heights = heights;
+      crossings.steps = steps;
+      see(crossings, column);
     }
   }
 }
