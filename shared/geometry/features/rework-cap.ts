@@ -7,6 +7,7 @@ import { type Cap, capsOf } from '../sections/cap-loops.js';
 import { toPlane } from '../sections/seam-plane.js';
 import { type CapFeature, featureVolume } from './cap-feature.js';
 import { type CapFrame, reverseLoop } from './cap-frame.js';
+import { zipLoops } from './zip-loops.js';
 import { MeshDraft } from './mesh-draft.js';
 
 export interface CapChange {
@@ -128,7 +129,7 @@ function withBevel(mesh: TriangleMesh, cap: Cap, change: CapChange, tools: CapTo
   draft.addTriangles(rest, (triangle) => rest.tags![triangle] !== BEVEL_TAG);
   bumps.addTo(draft, rest);
   const faceRim = face.map((xy) => ({ xy, vertices: draft.addLoop(frame, xy, 0) }));
-  const bevel = tools.triangulate([...rimXy, ...face.map(reverseLoop)]);
+  const bevel = zipLoops(rimXy, face) ?? tools.triangulate([...rimXy, ...face.map(reverseLoop)]);
   const bevelVertices = [...rim.flat(), ...faceRim.flatMap((loop) => [...loop.vertices].reverse())];
   draft.addFace(bevel, bevelVertices, 0);
   fillFace(draft, faceRim, change, tools);
