@@ -4,7 +4,7 @@ import { restingDirections } from '../../shared/geometry/fitting/candidate-downs
 import { convexHull3d, cornerPoints } from '../../shared/geometry/fitting/convex-hull-3d.js';
 import { diagonalDowns, poseOn } from '../../shared/geometry/fitting/lay-on-bed.js';
 import { outerVertices } from '../../shared/geometry/fitting/outer-vertices.js';
-import { boundingBox } from '../../shared/geometry/mesh/measure.js';
+import { boundingBox, signedVolume } from '../../shared/geometry/mesh/measure.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { planeFrame } from '../../shared/geometry/vectors/plane-frame.js';
@@ -43,8 +43,9 @@ const OFFERED = 4;
 /** Orientations nearer than this are one (cosine of 6°), and start tilting alike (of 16°). */
 const ALIKE_COS = 0.9945;
 const SAME_VALLEY_COS = 0.961;
-/** Support below that is none worth tilting a piece for, mm³. */
+/** Support below that, mm³ or share of the piece, is none worth tilting a piece for. */
 const NEXT_TO_NOTHING_MM3 = 60;
+const NEXT_TO_NOTHING_SHARE = 0.004;
 
 /**
  * The best orientations of a piece, the best first, at most four, each in a space that holds it.
@@ -80,9 +81,10 @@ export async function orientPiece(mesh: TriangleMesh, task: OrientTask): Promise
   const roughMm = Math.max(FINEST_MM, longest / ROUGH_COLUMNS);
   const measured = bounded.map(({ down }) => rough.rate(down, roughMm));
   const best = sorted(measured);
+  const worthTilting = Math.max(NEXT_TO_NOTHING_MM3, NEXT_TO_NOTHING_SHARE * signedVolume(mesh));
   const tilted = distinct(best, SAME_VALLEY_COS)
     .slice(0, TILTED)
-    .filter((rating) => rating.supportMm3 > NEXT_TO_NOTHING_MM3)
+    .filter((rating) => rating.supportMm3 > worthTilting)
     .map((rating) => tilt(rating, rough, roughMm, (down) => fits(down) >= 0));
   const finalists = distinct(sorted([...best, ...tilted])).slice(0, FINALISTS);
   const upright: Vector3 = [0, 0, -1];
