@@ -3,6 +3,7 @@ import { type BedPose } from '../../shared/geometry/fitting/lay-on-bed.js';
 import { type Vector3 } from '../../shared/geometry/vectors/plane.js';
 import { type Body } from '../../shared/geometry/cutting/apply-tree.js';
 import { boundingBox } from '../../shared/geometry/mesh/measure.js';
+import { connectedShells } from '../../shared/geometry/mesh/shells.js';
 import { type TriangleMesh } from '../../shared/geometry/mesh/triangle-mesh.js';
 import { type JobContext } from '../runtime/job-context.js';
 import { PLACES_TRIED, roundOnBed, type RoundedPiece } from './round-on-bed.js';
@@ -126,11 +127,24 @@ function finishOne(
     const version = make();
     const { pose } = version;
     const rounded = roundOnBed(version.mesh, pose, spaces[space]);
-    const piece = { ...body, ...rounded, version, fits: pose.fits, space, down: pose.down };
+    const isOfOneKind = shellsOf(version.mesh) === shellsOf(body.body.mesh);
+    const piece = {
+      ...body,
+      ...rounded,
+      ...(!isOfOneKind && { sound: false, fault: 'a joint parts or closes its surface' }),
+      version,
+      fits: pose.fits,
+      space,
+      down: pose.down,
+    };
     if (piece.sound) return piece;
     first ??= piece;
   }
   return first!;
+}
+
+function shellsOf(mesh: TriangleMesh): number {
+  return connectedShells(mesh).count;
 }
 
 function isUnsound(piece: RoundedPiece): boolean {

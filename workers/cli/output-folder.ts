@@ -27,6 +27,8 @@ export interface PieceFolder {
 
 /** What a result consists of; the manifest last, because its presence says the result is whole. */
 const RESULT = ['pieces', 'pins', 'lips', 'cut-list.csv', 'manifest.json'] as const;
+/** Not every plan has pins or lips. */
+const OPTIONAL: readonly string[] = ['pins', 'lips'];
 /** Files that each of the folders may hold. */
 const FOLDERS = {
   pieces: /^P\d{2,3}\.stl$/,
@@ -132,8 +134,8 @@ async function exchange(folder: string, fresh: string, old: string): Promise<voi
         movedAway.push(name);
       }
     for (const name of RESULT) {
-      // Not every plan has pins or lips.
-      if (!(await stat(join(fresh, name)).catch(absent))) continue;
+      const mayBeMissing = OPTIONAL.includes(name);
+      if (mayBeMissing && !(await stat(join(fresh, name)).catch(absent))) continue;
       await rename(join(fresh, name), join(folder, name));
       movedIn.push(name);
     }

@@ -46,4 +46,12 @@ describe('NearCap', () => {
       expect(depth).toBeCloseTo(Math.sqrt(40 ** 2 - (x + radiusMm) ** 2), 1);
     }
   });
+
+  it('does not miss walls on the very edge of the face that it looks within', () => {
+    const half = below(box([-20, -20, 0], [20, 20, 60]).mesh, 25);
+    // A little smaller than the face, as a rounded outline is.
+    const outline = Float64Array.of(-20, -20, 19.999, -20, 19.999, 19.999, -20, 19.999);
+    const near = new NearCap(half, 1, frameAt(25), 30, outline);
+    expect([...near.depths([{ x: 17.5, y: 0, radiusMm: 3 }])]).toEqual([0]);
+  });
 });

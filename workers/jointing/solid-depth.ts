@@ -9,6 +9,9 @@ export interface Disc {
   readonly radiusMm: number;
 }
 
+/** Walls that stand on a face's very edge must not be missed by rounding, mm. */
+const BESIDE_MM = 2;
+
 /**
  * What of a body lies near one of its caps, in the cap's coordinates with the depth below it: made
  * once, asked for many discs. O(vertices + triangles) to make, O(near triangles · discs) to ask.
@@ -29,7 +32,7 @@ export class NearCap {
     private readonly deepestMm: number,
     within?: Float64Array,
   ) {
-    const box = within ? boundsOf(within) : null;
+    const box = within ? boundsOf(within, BESIDE_MM) : null;
     const count = p.length / 3;
     const zs = new Float64Array(count);
     for (let k = 0, at = 0; k < count; k++, at += 3)
@@ -136,13 +139,13 @@ function leastInside(all: readonly number[], from: number, { x, y, radiusMm }: D
   return least;
 }
 
-function boundsOf(points: Float64Array) {
+function boundsOf(points: Float64Array, byMm: number) {
   const box = { minX: Infinity, maxX: -Infinity, minY: Infinity, maxY: -Infinity };
   for (let k = 0; k < points.length; k += 2) {
-    box.minX = Math.min(box.minX, points[k]);
-    box.maxX = Math.max(box.maxX, points[k]);
-    box.minY = Math.min(box.minY, points[k + 1]);
-    box.maxY = Math.max(box.maxY, points[k + 1]);
+    box.minX = Math.min(box.minX, points[k] - byMm);
+    box.maxX = Math.max(box.maxX, points[k] + byMm);
+    box.minY = Math.min(box.minY, points[k + 1] - byMm);
+    box.maxY = Math.max(box.maxY, points[k + 1] + byMm);
   }
   return box;
 }
