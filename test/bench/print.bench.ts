@@ -67,7 +67,7 @@ export async function bench(): Promise<BenchTable> {
 
 async function supportAgainstRays() {
   // A knot within an envelope: 100,000 triangles.
-  const mesh = torusKnot(62, 30, 1250, 40);
+  const mesh = torusKnot(33, 15, 1250, 40);
   const built = await timeRuns(3, () => buildBvh(mesh));
   const bvh = built.result;
   const question = { mesh, up: [0, 0, 1] as const, pitchMm: PITCH_MM, overhangDegrees: 45 };
